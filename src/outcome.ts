@@ -33,7 +33,10 @@ export function succeed<T>(value: T, notices: readonly Notice[] = []): Outcome<T
 }
 
 /** Wraps the problems that stood in the way. */
-export function fail(...problems: readonly Problem[]): { readonly ok: false; readonly problems: readonly Problem[] } {
+export function fail(...problems: readonly Problem[]): {
+  readonly ok: false;
+  readonly problems: readonly Problem[];
+} {
   return { ok: false, problems };
 }
 

@@ -27,7 +27,8 @@ export function complexSubtract(a: ComplexArray, b: ComplexArray): ComplexArray 
 /** Sum of |value|² over the array. */
 export function complexEnergy(values: ComplexArray): number {
   let sum = 0;
-  for (let i = 0; i < values.re.length; i++) sum += values.re[i]! * values.re[i]! + values.im[i]! * values.im[i]!;
+  for (let i = 0; i < values.re.length; i++)
+    sum += values.re[i]! * values.re[i]! + values.im[i]! * values.im[i]!;
   return sum;
 }
 
