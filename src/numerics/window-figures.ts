@@ -1,0 +1,83 @@
+/** What a window does to a lone line in the transform: width of its main lobe, height of its side lobes. */
+import { complexZeros } from './complex.ts';
+import { createFft, nextPowerOfTwo } from './fft.ts';
+import { refineTip } from './peaks.ts';
+
+/** Figures of a window, in bins of a transform as long as the window. */
+export type WindowFigures = {
+  readonly width3DbBins: number;
+  readonly width6DbBins: number;
+  readonly sideLobeDb: number;
+};
+
+/**
+ * Measures a window's main lobe and side lobes.
+ *
+ * Widths come from bisection on the direct sum, side lobes from a transform padded sixteenfold.
+ *
+ * @param values The window, length n ≥ 1.
+ * @source Definitions of Harris 1978, section IV.
+ */
+export function windowFigures(values: Float64Array): WindowFigures {
+  return {
+    width3DbBins: 2 * halfWidth(values, Math.SQRT1_2),
+    width6DbBins: 2 * halfWidth(values, 0.5),
+    sideLobeDb: highestSideLobeDb(values),
+  };
+}
+
+/** Bins from the middle of the main lobe to where it has fallen to `share` of its height. */
+function halfWidth(values: Float64Array, share: number): number {
+  const target = share * spectrumSize(values, 0);
+  let inside = 0;
+  let outside = 0.25;
+  while (outside < values.length && spectrumSize(values, outside) > target) {
+    inside = outside;
+    outside += 0.25;
+  }
+  for (let step = 0; step < 40; step++) {
+    const middle = (inside + outside) / 2;
+    if (spectrumSize(values, middle) > target) inside = middle;
+    else outside = middle;
+  }
+  return (inside + outside) / 2;
+}
+
+/** |Σ w·e^{−2πi·bins·k/n}|, the rotation carried along by recurrence. */
+function spectrumSize(values: Float64Array, bins: number): number {
+  const angle = (2 * Math.PI * bins) / values.length;
+  const stepRe = Math.cos(angle);
+  const stepIm = Math.sin(angle);
+  let turnRe = 1;
+  let turnIm = 0;
+  let sumRe = 0;
+  let sumIm = 0;
+  for (const value of values) {
+    sumRe += value * turnRe;
+    sumIm += value * turnIm;
+    const next = turnRe * stepRe - turnIm * stepIm;
+    turnIm = turnRe * stepIm + turnIm * stepRe;
+    turnRe = next;
+  }
+  return Math.hypot(sumRe, sumIm);
+}
+
+function highestSideLobeDb(values: Float64Array): number {
+  const size = nextPowerOfTwo(16 * values.length);
+  const input = new Float64Array(2 * size);
+  for (let k = 0; k < values.length; k++) input[2 * k] = values[k]!;
+  const output = new Float64Array(2 * size);
+  createFft(size).forward(input, output);
+  const spectrum = complexZeros(size / 2).re;
+  for (let i = 0; i < spectrum.length; i++) spectrum[i] = Math.hypot(output[2 * i]!, output[2 * i + 1]!);
+
+  let firstMinimum = 1;
+  while (firstMinimum < spectrum.length && spectrum[firstMinimum]! < spectrum[firstMinimum - 1]!)
+    firstMinimum++;
+  let highest = 0;
+  for (let i = firstMinimum + 1; i < spectrum.length - 1; i++) {
+    const isTip = spectrum[i]! > spectrum[i - 1]! && spectrum[i]! >= spectrum[i + 1]!;
+    if (isTip) highest = Math.max(highest, refineTip(spectrum, i).value);
+  }
+  return highest > 0 ? 20 * Math.log10(highest / spectrum[0]!) : Number.NEGATIVE_INFINITY;
+}
