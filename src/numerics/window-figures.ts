@@ -1,7 +1,6 @@
 /** What a window does to a lone line in the transform: width of its main lobe, height of its side lobes. */
 import { complexZeros } from './complex.ts';
 import { createFft, nextPowerOfTwo } from './fft.ts';
-import { refineTip } from './peaks.ts';
 
 /** Figures of a window, in bins of a transform as long as the window. */
 export type WindowFigures = {
@@ -13,7 +12,8 @@ export type WindowFigures = {
 /**
  * Measures a window's main lobe and side lobes.
  *
- * Widths come from bisection on the direct sum, side lobes from a transform padded sixteenfold.
+ * Widths come from bisection on the direct sum, side lobes from a transform padded sixteenfold and
+ * a search around its highest sample.
  *
  * @param values The window, length n ≥ 1.
  * @source Definitions of Harris 1978, section IV.
@@ -75,9 +75,24 @@ function highestSideLobeDb(values: Float64Array): number {
   while (firstMinimum < spectrum.length && spectrum[firstMinimum]! < spectrum[firstMinimum - 1]!)
     firstMinimum++;
   let highest = 0;
+  let place = 0;
   for (let i = firstMinimum + 1; i < spectrum.length - 1; i++) {
-    const isTip = spectrum[i]! > spectrum[i - 1]! && spectrum[i]! >= spectrum[i + 1]!;
-    if (isTip) highest = Math.max(highest, refineTip(spectrum, i).value);
+    if (spectrum[i]! <= highest || spectrum[i]! < spectrum[i + 1]!) continue;
+    highest = spectrum[i]!;
+    place = i;
   }
-  return highest > 0 ? 20 * Math.log10(highest / spectrum[0]!) : Number.NEGATIVE_INFINITY;
+  if (place === 0) return Number.NEGATIVE_INFINITY;
+  const binsPerSample = values.length / size;
+  const tip = highestBetween(values, (place - 1) * binsPerSample, (place + 1) * binsPerSample);
+  return 20 * Math.log10(tip / spectrum[0]!);
+}
+
+/** Greatest spectrum size between two places with one top between them, by ternary search. */
+function highestBetween(values: Float64Array, low: number, high: number): number {
+  for (let step = 0; step < 25; step++) {
+    const third = (high - low) / 3;
+    if (spectrumSize(values, low + third) < spectrumSize(values, high - third)) low += third;
+    else high -= third;
+  }
+  return spectrumSize(values, (low + high) / 2);
 }
