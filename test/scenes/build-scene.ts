@@ -54,6 +54,7 @@ export function buildScene(recipe: Recipe, name: SceneName, draws: Draws): Scene
       plan: recipe.plan.name,
       points: frequencyHz.length,
       even: recipe.plan.even,
+      spanHz: frequencyHz.at(-1)! - frequencyHz[0]!,
       resolutionM: fourierResolutionM(longest.figures, frequencyHz),
       noiseDb: recipe.noiseDb,
       structuralReturnLossDb: recipe.ripple?.returnLossDb ?? null,

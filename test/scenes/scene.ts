@@ -44,6 +44,7 @@ export type SceneTruth = {
   readonly plan: PlanName;
   readonly points: number;
   readonly even: boolean;
+  readonly spanHz: number;
   /** Fourier resolution c·vf/(2·B) in the longest section, m. */
   readonly resolutionM: number;
   readonly noiseDb: number;
