@@ -1,0 +1,151 @@
+/**
+ * A line as it was built, not as it was drawn: cable whose impedance wanders, connectors that reflect a little,
+ * samples that differ from their type. All of it drawn from one seed, and none of it a fault.
+ *
+ * The figures are common practice for sound lines; they make simulated sweeps look like the field.
+ */
+
+import type { CoaxSection, Line } from '../line/line.ts';
+import { coaxMedium } from '../line/medium.ts';
+import { gammaOfReturnLoss } from '../line/reflection.ts';
+import { createRandom, type Random } from '../numerics/random.ts';
+
+/** One slab of a section: length and impedance against its type. */
+export type Slab = { readonly lengthM: number; readonly ratio: number };
+
+export type SectionAsBuilt = {
+  /** Velocity factor, impedance and losses of this sample over those of its type. */
+  readonly velocity: number;
+  readonly impedance: number;
+  readonly loss: number;
+  /** From the port's side; the lengths add up to the section's. */
+  readonly slabs: readonly Slab[];
+};
+
+/** A connector as L/2 – C – L/2, both as times in the line's own impedance (L/z0 and C·z0), s. */
+export type JointAsBuilt = { readonly inductiveS: number; readonly capacitiveS: number };
+
+export type AsBuilt = {
+  readonly sections: readonly SectionAsBuilt[];
+  /** One more than sections. */
+  readonly joints: readonly JointAsBuilt[];
+  /** Stray reactance of the end, s: fringe of an open, inductance of a short. */
+  readonly endStrayS: number;
+};
+
+const SLAB_M = [0.05, 0.25] as const;
+/** Structural return loss of a section, dB, RMS of the band. */
+const STRUCTURAL_DB = [35, 45] as const;
+/** Return loss of a sound connector at the top of the band, dB. */
+const JOINT_DB = [30, 40] as const;
+/** 1σ of a sample against its type. */
+const VELOCITY_SPREAD = 0.002;
+const IMPEDANCE_SPREAD = 0.006;
+const LOSS_SPREAD = 0.02;
+/** Fringe capacitance of a cut 50 Ω line is some 0.05 pF, a soldered short some 0.1 nH: both about 2 ps. */
+const END_STRAY_S = [1e-12, 3e-12] as const;
+/** Frequencies at which loss is looked at when the ripple is scaled. */
+const RIPPLE_POINTS = 16;
+
+/** The ideal line: exactly its description. */
+export function asDrawn(line: Line): AsBuilt {
+  return {
+    sections: line.sections.map((section) => ({
+      velocity: 1,
+      impedance: 1,
+      loss: 1,
+      slabs: [{ lengthM: section.lengthM ?? 0, ratio: 1 }],
+    })),
+    joints: Array.from({ length: line.sections.length + 1 }, () => ({ inductiveS: 0, capacitiveS: 0 })),
+    endStrayS: 0,
+  };
+}
+
+/**
+ * Draws a sound line.
+ *
+ * @param line Every length known.
+ * @param band Over which ripple and connectors are judged.
+ * @param seed Same seed and line, same line as built.
+ */
+export function drawAsBuilt(
+  line: Line,
+  band: { readonly startHz: number; readonly stopHz: number },
+  seed: number,
+): AsBuilt {
+  const random = createRandom(seed);
+  const sections = line.sections.map((section): SectionAsBuilt => {
+    const lengthM = section.lengthM ?? 0;
+    if (section.type !== 'coax')
+      return { velocity: 1, impedance: 1, loss: 1, slabs: [{ lengthM, ratio: 1 }] };
+    return {
+      velocity: 1 + VELOCITY_SPREAD * random.normal(),
+      impedance: 1 + IMPEDANCE_SPREAD * random.normal(),
+      loss: 1 + LOSS_SPREAD * random.normal(),
+      slabs: drawSlabs(section, lengthM, band, line.temperatureC, random),
+    };
+  });
+  const joints = Array.from({ length: sections.length + 1 }, (_, i) => {
+    const described = i === 0 ? null : (line.sections[i - 1]?.jointAfter.returnLossDb ?? null);
+    return drawJoint(described ?? between(JOINT_DB, random), band.stopHz, random);
+  });
+  return { sections, joints, endStrayS: between(END_STRAY_S, random) };
+}
+
+/**
+ * Slabs whose impedance deviates by a heavy-tailed (double exponential) draw, as real cable does: mostly very little,
+ * now and then a lot. Scaled so that their reflections, added at random phase through the section's own loss, have
+ * the drawn structural return loss.
+ */
+function drawSlabs(
+  section: CoaxSection,
+  lengthM: number,
+  band: { readonly startHz: number; readonly stopHz: number },
+  temperatureC: number,
+  random: Random,
+): Slab[] {
+  const shapes: { lengthM: number; shape: number }[] = [];
+  for (let left = lengthM; left > 0; ) {
+    const drawn = between(SLAB_M, random);
+    const slabM = left - drawn < SLAB_M[0] ? left : drawn;
+    shapes.push({ lengthM: slabM, shape: doubleExponential(random) });
+    left -= slabM;
+  }
+  const target = gammaOfReturnLoss(between(STRUCTURAL_DB, random));
+  const frequencyHz = Float64Array.from(
+    { length: RIPPLE_POINTS },
+    (_, i) => band.startHz + ((band.stopHz - band.startHz) * (i + 0.5)) / RIPPLE_POINTS,
+  );
+  const alpha = coaxMedium(section.cable, frequencyHz, { temperatureC }).gamma.re;
+  let energy = 0;
+  let before = 0;
+  let distanceM = 0;
+  for (const { lengthM: slabM, shape } of shapes) {
+    const step = (shape - before) / 2;
+    for (const a of alpha) energy += (step * step * Math.exp(-4 * a * distanceM)) / RIPPLE_POINTS;
+    before = shape;
+    distanceM += slabM;
+  }
+  const scale = energy > 0 ? target / Math.sqrt(energy) : 0;
+  return shapes.map(({ lengthM: slabM, shape }) => ({ lengthM: slabM, ratio: Math.exp(scale * shape) }));
+}
+
+/** A connector whose inductance and capacitance partly cancel; what is left has the given return loss at the top. */
+function drawJoint(returnLossDb: number, topHz: number, random: Random): JointAsBuilt {
+  // |Γ| = ω·|L/z0 − C·z0|/2 for a small L/2 – C – L/2.
+  const net = (2 * gammaOfReturnLoss(returnLossDb)) / (2 * Math.PI * topHz);
+  const cancelled = net * random.uniform();
+  return random.uniform() < 0.5
+    ? { inductiveS: net + cancelled, capacitiveS: cancelled }
+    : { inductiveS: cancelled, capacitiveS: net + cancelled };
+}
+
+/** Mean 0, standard deviation 1. */
+function doubleExponential(random: Random): number {
+  const u = random.uniform() - 0.5;
+  return (-Math.sign(u) * Math.log(1 - 2 * Math.abs(u))) / Math.SQRT2;
+}
+
+function between(range: readonly [number, number], random: Random): number {
+  return range[0] + (range[1] - range[0]) * random.uniform();
+}

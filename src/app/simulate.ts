@@ -1,0 +1,379 @@
+/**
+ * A sweep of a described line with chosen faults: the what-if of the tool, and the source of its samples.
+ *
+ * The line becomes a chain of parts in order from the port (stretches of one medium and impedance, lumped elements),
+ * the parts become stages of the cascade, and the instrument adds what it adds: residual directivity and noise.
+ */
+import { createCascade, type Stage } from '../line/cascade.ts';
+import { strengthOf } from '../line/discontinuity.ts';
+import type { EndModel } from '../line/end.ts';
+import { describedLengthM, type EndKind, type Line, type Section } from '../line/line.ts';
+import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
+import { gammaOfReturnLoss } from '../line/reflection.ts';
+import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
+import { createRandom } from '../numerics/random.ts';
+import { assertNever, fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import type { Sweep } from '../sweep/sweep.ts';
+import { type AsBuilt, asDrawn, drawAsBuilt } from './as-built.ts';
+import { FAULT_FORMS, type Fault, type FaultPlace, type LumpedFaultKind } from './fault-text.ts';
+
+export type SimulateRequest = {
+  /** Every length known, end known. */
+  readonly line: Line;
+  readonly faults: readonly Fault[];
+  /** Start above 0. */
+  readonly range: { readonly startHz: number; readonly stopHz: number; readonly points: number };
+  readonly portOhm: number;
+  /** Seed of the line as built; null for the ideal line, exactly its description. */
+  readonly asBuilt: number | null;
+  /** Complex RMS of the noise per point, dB; null for none. */
+  readonly noiseDb: number | null;
+  /** RMS of the residual directivity, dB; null for none. */
+  readonly residueDb: number | null;
+  /** Seed of noise and residue. */
+  readonly seed: number;
+};
+
+/** Γ is kept to so many decimals, −180 dB: below any instrument, and the same digits on every machine. */
+const GAMMA_DECIMALS = 9;
+
+/** Frequencies worked on at once: bounds the memory of a line of many slabs. */
+const FREQUENCIES_AT_ONCE = 256;
+
+/** Residual directivity: so many terms within this round-trip delay. */
+const RESIDUE_TERMS = 4;
+const RESIDUE_SPAN_S = 1e-9;
+
+/** Where a line file names no band: fraction of the swept span around its middle in which an antenna is matched. */
+const ANTENNA_BAND = 0.2;
+/** Return loss of the simulated antenna at the edges of its bands, dB. Common practice: 14 dB are accepted. */
+const ANTENNA_EDGE_DB = 18;
+/** Match of a simulated load of a line as built, dB. Common practice. */
+const LOAD_DB = 32;
+
+/** Simulates one sweep. */
+export function simulate(request: SimulateRequest): Outcome<Sweep> {
+  const problems = refuse(request);
+  if (problems.length > 0) return fail(...problems);
+  const { line, range } = request;
+  const frequencyHz = Float64Array.from(
+    { length: range.points },
+    (_, i) => range.startHz + ((range.stopHz - range.startHz) * i) / (range.points - 1),
+  );
+  const built = request.asBuilt === null ? asDrawn(line) : drawAsBuilt(line, range, request.asBuilt);
+  const chain = chainOf(request, built);
+  const gamma = reflectionOf(chain, request, frequencyHz);
+  addInstrument(gamma, frequencyHz, request);
+  round(gamma);
+  return succeed({
+    frequencyHz,
+    gamma,
+    portOhm: request.portOhm,
+    port: 1,
+    ports: 1,
+    file: '',
+    comments: [],
+  });
+}
+
+/** One sample of cable or device: the parts that share it share its medium. */
+type Material = { readonly section: Section };
+
+type Part =
+  /** `ratio`: impedance over that of the material. */
+  | { readonly type: 'line'; readonly material: Material; readonly lengthM: number; readonly ratio: number }
+  | { readonly type: 'fault'; readonly kind: LumpedFaultKind; readonly value: number }
+  /** A reactance as time in the line's own impedance, s: series above 0, shunt below. */
+  | { readonly type: 'reactive'; readonly strengthS: number };
+
+type Chain = { readonly parts: readonly Part[]; readonly end: EndModel };
+
+function refuse(request: SimulateRequest): Problem[] {
+  const { line, range, faults } = request;
+  const problems: Problem[] = [];
+  const lengthM = describedLengthM(line);
+  if (lengthM === null)
+    problems.push({
+      code: 'simulate-length',
+      what: 'the length of the last section is not known',
+      mend: 'give its "lengthM" in the line file',
+    });
+  if (line.end === 'unknown')
+    problems.push({
+      code: 'simulate-end',
+      what: 'the end of the line is not known',
+      mend: 'give --end open, short, load or antenna, or "end" in the line file',
+    });
+  if (!(range.startHz > 0))
+    problems.push({
+      code: 'simulate-start',
+      what: 'a sweep of a lossy line cannot be computed at 0 Hz',
+      mend: 'start above 0, for example --sweep 2MHz-2700MHz:1350',
+    });
+  for (const fault of faults) problems.push(...refuseFault(fault, line, lengthM ?? Number.POSITIVE_INFINITY));
+  return problems;
+}
+
+function refuseFault(fault: Fault, line: Line, lengthM: number): Problem[] {
+  const outside = (what: string): Problem => ({
+    code: 'fault-place',
+    what,
+    found: FAULT_FORMS[fault.kind].replace(/@.*/u, '@…'),
+    mend: `the line has ${line.sections.length + 1} joints and is ${Number(lengthM.toFixed(2))} m long`,
+  });
+  switch (fault.kind) {
+    case 'section':
+    case 'wet':
+      return fault.toM <= lengthM
+        ? []
+        : [outside(`the stretch ends at ${fault.toM} m, beyond the end of the line`)];
+    default:
+      if (fault.place.at === 'joint')
+        return fault.place.joint <= line.sections.length + 1
+          ? []
+          : [outside(`there is no joint ${fault.place.joint}`)];
+      return fault.place.distanceM <= lengthM
+        ? []
+        : [outside(`${fault.place.distanceM} m is beyond the end of the line`)];
+  }
+}
+
+/** The line as parts, with its faults in place and cut off behind an open or a short. */
+function chainOf(request: SimulateRequest, built: AsBuilt): Chain {
+  const { line, faults } = request;
+  const jointsM = [0];
+  for (const section of line.sections) jointsM.push(jointsM.at(-1)! + (section.lengthM ?? 0));
+  const placeM = (place: FaultPlace): number =>
+    place.at === 'joint' ? jointsM[place.joint - 1]! : place.distanceM;
+
+  const cut = faults
+    .flatMap((fault) => (fault.kind === 'open' || fault.kind === 'short' ? [fault] : []))
+    .sort((a, b) => placeM(a.place) - placeM(b.place))[0];
+  const cutM = cut ? placeM(cut.place) : Number.POSITIVE_INFINITY;
+  const lumps = faults
+    .flatMap((fault) => ('value' in fault ? [{ ...fault, atM: placeM(fault.place) }] : []))
+    .filter((lump) => lump.atM <= cutM);
+  const stretches = faults.filter((fault) => fault.kind === 'section' || fault.kind === 'wet');
+  const edgesM = [...stretches.flatMap((s) => [s.fromM, s.toM]), ...lumps.map((lump) => lump.atM), cutM];
+
+  const parts: Part[] = [];
+  const placed = new Set<(typeof lumps)[number]>();
+  const addLumpsUpTo = (atM: number): void => {
+    for (const lump of lumps)
+      if (!placed.has(lump) && lump.atM <= atM + 1e-9) {
+        parts.push({ type: 'fault', kind: lump.kind, value: lump.value });
+        placed.add(lump);
+      }
+  };
+  const addJoint = (index: number): void => {
+    const joint = built.joints[index]!;
+    if (joint.inductiveS === 0 && joint.capacitiveS === 0) return;
+    parts.push({ type: 'reactive', strengthS: joint.inductiveS / 2 });
+    parts.push({ type: 'reactive', strengthS: -joint.capacitiveS });
+    parts.push({ type: 'reactive', strengthS: joint.inductiveS / 2 });
+  };
+
+  const materials = createMaterials();
+  line.sections.forEach((section, s) => {
+    const startM = jointsM[s]!;
+    if (startM > cutM) return;
+    addJoint(s);
+    addLumpsUpTo(startM);
+    let slabStartM = startM;
+    for (const slab of built.sections[s]!.slabs) {
+      const slabEndM = slabStartM + slab.lengthM;
+      const inside = edgesM.filter((m) => m > slabStartM && m < slabEndM).sort((a, b) => a - b);
+      let fromM = slabStartM;
+      for (const toM of [...inside, slabEndM]) {
+        if (fromM < cutM && toM > fromM) {
+          const middleM = (fromM + toM) / 2;
+          const within = stretches.filter((stretch) => stretch.fromM < middleM && middleM < stretch.toM);
+          const material = materials.of(section, built.sections[s]!, within);
+          parts.push({ type: 'line', material, lengthM: toM - fromM, ratio: slab.ratio });
+        }
+        if (toM <= cutM) addLumpsUpTo(toM);
+        fromM = toM;
+      }
+      slabStartM = slabEndM;
+    }
+  });
+  if (cutM > jointsM.at(-1)!) addJoint(line.sections.length);
+  addLumpsUpTo(Number.POSITIVE_INFINITY);
+  return {
+    parts,
+    end: cut ? { type: cut.kind, parameters: [built.endStrayS] } : endOf(request, built),
+  };
+}
+
+/** Samples of cable by section and by what was done to them, each made once. */
+function createMaterials() {
+  const known = new Map<string, Material>();
+  const numbers = new Map<Section, number>();
+  return {
+    of(
+      section: Section,
+      sample: AsBuilt['sections'][number],
+      stretches: readonly Extract<Fault, { kind: 'section' | 'wet' }>[],
+    ): Material {
+      if (!numbers.has(section)) numbers.set(section, numbers.size);
+      const key = JSON.stringify([numbers.get(section), stretches]);
+      let material = known.get(key);
+      if (!material) {
+        material = { section: alter(section, sample, stretches) };
+        known.set(key, material);
+      }
+      return material;
+    },
+  };
+}
+
+function alter(
+  section: Section,
+  sample: AsBuilt['sections'][number],
+  stretches: readonly Extract<Fault, { kind: 'section' | 'wet' }>[],
+): Section {
+  if (section.type !== 'coax') return section;
+  let { z0Ohm, velocityFactor, k1, k2 } = section.cable;
+  z0Ohm *= sample.impedance;
+  velocityFactor *= sample.velocity;
+  k1 *= sample.loss;
+  k2 *= sample.loss;
+  for (const stretch of stretches) {
+    if (stretch.kind === 'section') z0Ohm = stretch.impedanceOhm;
+    else {
+      // C grows with the permittivity: z0 and velocity both fall by its root.
+      const root = Math.sqrt(stretch.permittivityFactor);
+      z0Ohm /= root;
+      velocityFactor /= root;
+      k2 *= stretch.k2Factor;
+    }
+  }
+  return { ...section, cable: { ...section.cable, z0Ohm, velocityFactor, k1, k2 } };
+}
+
+function endOf(request: SimulateRequest, built: AsBuilt): EndModel {
+  const end: EndKind = request.line.end;
+  switch (end) {
+    case 'open':
+    case 'short':
+      return { type: end, parameters: [built.endStrayS] };
+    case 'load': {
+      const off = request.asBuilt === null ? 0 : gammaOfReturnLoss(LOAD_DB);
+      return { type: 'load', parameters: [(1 + off) / (1 - off), built.endStrayS] };
+    }
+    case 'antenna':
+      return antennaOf(request);
+    case 'unknown':
+      throw new TypeError('an unknown end cannot be simulated');
+    default:
+      return assertNever(end);
+  }
+}
+
+/**
+ * An antenna at DC ground (common practice), matched in each band of the line's limits: Γ = −1 + Σ a/(1 + jQ·δ).
+ * Each term lies in a circle of diameter a, so the sum is passive as long as the a add up to 2 at most.
+ */
+function antennaOf(request: SimulateRequest): EndModel {
+  const { startHz, stopHz } = request.range;
+  const middle = (startHz + stopHz) / 2;
+  const half = ((stopHz - startHz) * ANTENNA_BAND) / 2;
+  const described = request.line.limits.bands;
+  const bands = described.length > 0 ? described : [{ fromHz: middle - half, toHz: middle + half }];
+  const edge = gammaOfReturnLoss(ANTENNA_EDGE_DB);
+  const size = Math.min(1, 2 / bands.length);
+  const parameters = [-1];
+  for (const { fromHz, toHz } of bands) {
+    const centre = Math.sqrt(fromHz * toHz);
+    // |Γ| at the edge is about Q·δ of one resonance alone.
+    const q = edge / Math.max(toHz / centre - centre / toHz, 1e-6);
+    parameters.push(size, 0, q, centre);
+  }
+  return { type: 'antenna', parameters };
+}
+
+function reflectionOf(chain: Chain, request: SimulateRequest, frequencyHz: Float64Array): ComplexArray {
+  const gamma = complexZeros(frequencyHz.length);
+  for (let from = 0; from < frequencyHz.length; from += FREQUENCIES_AT_ONCE) {
+    const piece = frequencyHz.subarray(from, from + FREQUENCIES_AT_ONCE);
+    const seen = createCascade(piece).gamma(stagesOf(chain.parts, request, piece), chain.end);
+    gamma.re.set(seen.re, from);
+    gamma.im.set(seen.im, from);
+  }
+  return gamma;
+}
+
+function stagesOf(parts: readonly Part[], request: SimulateRequest, frequencyHz: Float64Array): Stage[] {
+  const media = new Map<Material, Medium>();
+  const mediumOf = (material: Material): Medium => {
+    let medium = media.get(material);
+    if (!medium) {
+      medium = sectionMedium(material.section, frequencyHz, {
+        temperatureC: request.line.temperatureC,
+        z0Ohm: request.portOhm,
+      });
+      media.set(material, medium);
+    }
+    return medium;
+  };
+  const stages: Stage[] = [];
+  let medium = portMedium(request.portOhm, frequencyHz.length);
+  let ratio = 1;
+  for (const part of parts) {
+    switch (part.type) {
+      case 'line': {
+        const next = mediumOf(part.material);
+        if (next !== medium || part.ratio !== ratio)
+          stages.push({ type: 'step', before: medium, after: next, ratio: part.ratio / ratio });
+        medium = next;
+        ratio = part.ratio;
+        stages.push({ type: 'line', medium, lengthM: part.lengthM, conductor: 0, dielectric: 0 });
+        break;
+      }
+      case 'fault':
+        stages.push({ ...strengthOf(part.kind, part.value, medium.z0Ohm), medium });
+        break;
+      case 'reactive':
+        stages.push({ type: 'reactive', medium, strength: part.strengthS });
+        break;
+      default:
+        assertNever(part);
+    }
+  }
+  return stages;
+}
+
+/** Adds residual directivity and noise, in this order of draws. */
+function addInstrument(gamma: ComplexArray, frequencyHz: Float64Array, request: SimulateRequest): void {
+  const random = createRandom(request.seed);
+  if (request.residueDb !== null) {
+    const terms = Array.from({ length: RESIDUE_TERMS }, () => ({
+      size: 0.3 + 0.7 * random.uniform(),
+      phase: 2 * Math.PI * random.uniform(),
+      delayS: RESIDUE_SPAN_S * random.uniform(),
+    }));
+    const total = Math.sqrt(terms.reduce((sum, term) => sum + term.size * term.size, 0));
+    for (const { size, phase, delayS } of terms) {
+      const level = (gammaOfReturnLoss(-request.residueDb) * size) / total;
+      for (let i = 0; i < frequencyHz.length; i++) {
+        const angle = phase - 2 * Math.PI * frequencyHz[i]! * delayS;
+        gamma.re[i]! += level * Math.cos(angle);
+        gamma.im[i]! += level * Math.sin(angle);
+      }
+    }
+  }
+  if (request.noiseDb !== null) {
+    const sigma = gammaOfReturnLoss(-request.noiseDb) / Math.SQRT2;
+    for (let i = 0; i < frequencyHz.length; i++) {
+      gamma.re[i]! += sigma * random.normal();
+      gamma.im[i]! += sigma * random.normal();
+    }
+  }
+}
+
+/** Rounds in place; adding 0 turns a negative zero into a plain one. */
+function round(gamma: ComplexArray): void {
+  const scale = 10 ** GAMMA_DECIMALS;
+  for (const part of [gamma.re, gamma.im])
+    for (let i = 0; i < part.length; i++) part[i] = Math.round(part[i]! * scale) / scale + 0;
+}
