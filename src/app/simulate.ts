@@ -7,7 +7,7 @@
 import { createCascade, type Stage } from '../line/cascade.ts';
 import { strengthOf } from '../line/discontinuity.ts';
 import type { EndModel } from '../line/end.ts';
-import { describedLengthM, type EndKind, type Line, type Section } from '../line/line.ts';
+import { describedLengthM, type EndKind, type Line } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
@@ -15,7 +15,8 @@ import { createRandom } from '../numerics/random.ts';
 import { assertNever, fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { type AsBuilt, asDrawn, drawAsBuilt } from './as-built.ts';
-import { FAULT_FORMS, type Fault, type FaultPlace, type LumpedFaultKind } from './fault-text.ts';
+import { FAULT_FORMS, type Fault } from './fault-text.ts';
+import { linePartsOf, type Material, type Part } from './line-parts.ts';
 
 export type SimulateRequest = {
   /** Every length known, end known. */
@@ -61,8 +62,9 @@ export function simulate(request: SimulateRequest): Outcome<Sweep> {
     (_, i) => range.startHz + ((range.stopHz - range.startHz) * i) / (range.points - 1),
   );
   const built = request.asBuilt === null ? asDrawn(line) : drawAsBuilt(line, range, request.asBuilt);
-  const chain = chainOf(request, built);
-  const gamma = reflectionOf(chain, request, frequencyHz);
+  const { parts, cut } = linePartsOf(line, request.faults, built);
+  const end: EndModel = cut ? { type: cut, parameters: [built.endStrayS] } : endOf(request, built);
+  const gamma = reflectionOf(parts, end, request, frequencyHz);
   addInstrument(gamma, frequencyHz, request);
   round(gamma);
   return succeed({
@@ -75,18 +77,6 @@ export function simulate(request: SimulateRequest): Outcome<Sweep> {
     comments: [],
   });
 }
-
-/** One sample of cable or device: the parts that share it share its medium. */
-type Material = { readonly section: Section };
-
-type Part =
-  /** `ratio`: impedance over that of the material. */
-  | { readonly type: 'line'; readonly material: Material; readonly lengthM: number; readonly ratio: number }
-  | { readonly type: 'fault'; readonly kind: LumpedFaultKind; readonly value: number }
-  /** A reactance as time in the line's own impedance, s: series above 0, shunt below. */
-  | { readonly type: 'reactive'; readonly strengthS: number };
-
-type Chain = { readonly parts: readonly Part[]; readonly end: EndModel };
 
 function refuse(request: SimulateRequest): Problem[] {
   const { line, range, faults } = request;
@@ -138,119 +128,6 @@ function refuseFault(fault: Fault, line: Line, lengthM: number): Problem[] {
   }
 }
 
-/** The line as parts, with its faults in place and cut off behind an open or a short. */
-function chainOf(request: SimulateRequest, built: AsBuilt): Chain {
-  const { line, faults } = request;
-  const jointsM = [0];
-  for (const section of line.sections) jointsM.push(jointsM.at(-1)! + (section.lengthM ?? 0));
-  const placeM = (place: FaultPlace): number =>
-    place.at === 'joint' ? jointsM[place.joint - 1]! : place.distanceM;
-
-  const cut = faults
-    .flatMap((fault) => (fault.kind === 'open' || fault.kind === 'short' ? [fault] : []))
-    .sort((a, b) => placeM(a.place) - placeM(b.place))[0];
-  const cutM = cut ? placeM(cut.place) : Number.POSITIVE_INFINITY;
-  const lumps = faults
-    .flatMap((fault) => ('value' in fault ? [{ ...fault, atM: placeM(fault.place) }] : []))
-    .filter((lump) => lump.atM <= cutM);
-  const stretches = faults.filter((fault) => fault.kind === 'section' || fault.kind === 'wet');
-  const edgesM = [...stretches.flatMap((s) => [s.fromM, s.toM]), ...lumps.map((lump) => lump.atM), cutM];
-
-  const parts: Part[] = [];
-  const placed = new Set<(typeof lumps)[number]>();
-  const addLumpsUpTo = (atM: number): void => {
-    for (const lump of lumps)
-      if (!placed.has(lump) && lump.atM <= atM + 1e-9) {
-        parts.push({ type: 'fault', kind: lump.kind, value: lump.value });
-        placed.add(lump);
-      }
-  };
-  const addJoint = (index: number): void => {
-    const joint = built.joints[index]!;
-    if (joint.inductiveS === 0 && joint.capacitiveS === 0) return;
-    parts.push({ type: 'reactive', strengthS: joint.inductiveS / 2 });
-    parts.push({ type: 'reactive', strengthS: -joint.capacitiveS });
-    parts.push({ type: 'reactive', strengthS: joint.inductiveS / 2 });
-  };
-
-  const materials = createMaterials();
-  line.sections.forEach((section, s) => {
-    const startM = jointsM[s]!;
-    if (startM > cutM) return;
-    addJoint(s);
-    addLumpsUpTo(startM);
-    let slabStartM = startM;
-    for (const slab of built.sections[s]!.slabs) {
-      const slabEndM = slabStartM + slab.lengthM;
-      const inside = edgesM.filter((m) => m > slabStartM && m < slabEndM).sort((a, b) => a - b);
-      let fromM = slabStartM;
-      for (const toM of [...inside, slabEndM]) {
-        if (fromM < cutM && toM > fromM) {
-          const middleM = (fromM + toM) / 2;
-          const within = stretches.filter((stretch) => stretch.fromM < middleM && middleM < stretch.toM);
-          const material = materials.of(section, built.sections[s]!, within);
-          parts.push({ type: 'line', material, lengthM: toM - fromM, ratio: slab.ratio });
-        }
-        if (toM <= cutM) addLumpsUpTo(toM);
-        fromM = toM;
-      }
-      slabStartM = slabEndM;
-    }
-  });
-  if (cutM > jointsM.at(-1)!) addJoint(line.sections.length);
-  addLumpsUpTo(Number.POSITIVE_INFINITY);
-  return {
-    parts,
-    end: cut ? { type: cut.kind, parameters: [built.endStrayS] } : endOf(request, built),
-  };
-}
-
-/** Samples of cable by section and by what was done to them, each made once. */
-function createMaterials() {
-  const known = new Map<string, Material>();
-  const numbers = new Map<Section, number>();
-  return {
-    of(
-      section: Section,
-      sample: AsBuilt['sections'][number],
-      stretches: readonly Extract<Fault, { kind: 'section' | 'wet' }>[],
-    ): Material {
-      if (!numbers.has(section)) numbers.set(section, numbers.size);
-      const key = JSON.stringify([numbers.get(section), stretches]);
-      let material = known.get(key);
-      if (!material) {
-        material = { section: alter(section, sample, stretches) };
-        known.set(key, material);
-      }
-      return material;
-    },
-  };
-}
-
-function alter(
-  section: Section,
-  sample: AsBuilt['sections'][number],
-  stretches: readonly Extract<Fault, { kind: 'section' | 'wet' }>[],
-): Section {
-  if (section.type !== 'coax') return section;
-  let { z0Ohm, velocityFactor, k1, k2 } = section.cable;
-  z0Ohm *= sample.impedance;
-  velocityFactor *= sample.velocity;
-  k1 *= sample.loss;
-  k2 *= sample.loss;
-  for (const stretch of stretches) {
-    if (stretch.kind === 'section') z0Ohm = stretch.impedanceOhm;
-    else {
-      // C grows with the permittivity: z0 and velocity both fall by its root.
-      const root = Math.sqrt(stretch.permittivityFactor);
-      z0Ohm /= root;
-      velocityFactor /= root;
-      k2 *= stretch.k2Factor;
-    }
-  }
-  return { ...section, cable: { ...section.cable, z0Ohm, velocityFactor, k1, k2 } };
-}
-
 function endOf(request: SimulateRequest, built: AsBuilt): EndModel {
   const end: EndKind = request.line.end;
   switch (end) {
@@ -292,11 +169,16 @@ function antennaOf(request: SimulateRequest): EndModel {
   return { type: 'antenna', parameters };
 }
 
-function reflectionOf(chain: Chain, request: SimulateRequest, frequencyHz: Float64Array): ComplexArray {
+function reflectionOf(
+  parts: readonly Part[],
+  end: EndModel,
+  request: SimulateRequest,
+  frequencyHz: Float64Array,
+): ComplexArray {
   const gamma = complexZeros(frequencyHz.length);
   for (let from = 0; from < frequencyHz.length; from += FREQUENCIES_AT_ONCE) {
     const piece = frequencyHz.subarray(from, from + FREQUENCIES_AT_ONCE);
-    const seen = createCascade(piece).gamma(stagesOf(chain.parts, request, piece), chain.end);
+    const seen = createCascade(piece).gamma(stagesOf(parts, request, piece), end);
     gamma.re.set(seen.re, from);
     gamma.im.set(seen.im, from);
   }
