@@ -4,6 +4,7 @@
  */
 import type { ComplexArray } from '../numerics/complex.ts';
 import type { Notice } from '../outcome.ts';
+import { createFloatColumn } from './float-column.ts';
 import type { FileProblem, ProblemList } from './problem-list.ts';
 import { formatFrequency } from './quantity-format.ts';
 
@@ -44,8 +45,10 @@ export function createSweepPoints(
   problems: ProblemList,
   options: { readonly transmission: boolean; readonly scaleHint: string },
 ): SweepPointsBuilder {
-  const frequency = createColumn();
-  const columns = options.transmission ? [0, 1, 2, 3].map(createColumn) : [0, 1].map(createColumn);
+  const frequency = createFloatColumn();
+  const columns = options.transmission
+    ? [0, 1, 2, 3].map(() => createFloatColumn())
+    : [0, 1].map(() => createFloatColumn());
   const faults = new Map<string, { problem: FileProblem; more: number }>();
   const repeats = { firstLine: 0, frequencyHz: 0, rows: 0, largest: 0 };
   let rows = 0;
@@ -115,38 +118,6 @@ export function createSweepPoints(
         notices: repeats.rows === 0 ? [] : [repeatNotice(repeats)],
       };
     },
-  };
-}
-
-type Column = {
-  readonly length: number;
-  push(value: number): void;
-  get(index: number): number;
-  set(index: number, value: number): void;
-  values(): Float64Array;
-};
-
-/** A float array that grows by doubling. */
-function createColumn(): Column {
-  let buffer = new Float64Array(1024);
-  let length = 0;
-  return {
-    get length() {
-      return length;
-    },
-    push(value) {
-      if (length === buffer.length) {
-        const larger = new Float64Array(2 * length);
-        larger.set(buffer);
-        buffer = larger;
-      }
-      buffer[length++] = value;
-    },
-    get: (index) => buffer[index]!,
-    set(index, value) {
-      buffer[index] = value;
-    },
-    values: () => buffer.slice(0, length),
   };
 }
 
