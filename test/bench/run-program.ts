@@ -8,8 +8,11 @@ import type { Outcome } from '../../src/outcome.ts';
 import type { Scene } from '../scenes/scene.ts';
 import { type Answer, failedAnswer } from './answer.ts';
 
+/** A sweep and the description of its line, as texts. */
+export type SweepAndLine = Pick<Scene, 'sweepText' | 'lineText' | 'lineDescribed'>;
+
 /** The request that the command line would make of a scene's two files. */
-export function requestOf(scene: Scene, cables: CableTable): Outcome<AnalyseRequest> {
+export function requestOf(scene: SweepAndLine, cables: CableTable): Outcome<AnalyseRequest> {
   const line = readLine(scene.lineText, 'scene.line.json', cables);
   if (!line.ok) return line;
   return {
@@ -29,7 +32,7 @@ export function requestOf(scene: Scene, cables: CableTable): Outcome<AnalyseRequ
 }
 
 /** The program's answer to a scene, and how long it took, reading of the sweep included. */
-export function runProgram(scene: Scene, cables: CableTable): Answer {
+export function runProgram(scene: SweepAndLine, cables: CableTable): Answer {
   const request = requestOf(scene, cables);
   if (!request.ok) return failedAnswer(request.problems.map((p) => p.what).join('; '), 0);
   const started = performance.now();
