@@ -1,0 +1,50 @@
+/** The cable table from its files: what ships with the program, and the user's own over it. */
+import { readdir } from 'node:fs/promises';
+import { join } from 'node:path';
+import type { CableEntry } from '../line/cable.ts';
+import { type CableTable, createCableTable } from '../line/cable-table.ts';
+import { readCables } from '../line/read-cables.ts';
+import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import { bundledPath } from './bundled.ts';
+import { readText, shownName } from './files.ts';
+
+/** Largest cable file that is read, bytes. */
+const MOST_CABLE_BYTES = 4 * 1024 * 1024;
+
+/**
+ * Loads the bundled cables and those of further folders; each later folder wins over the earlier ones.
+ *
+ * @param folders Folders of `*.json` cable files.
+ * @returns The joined table, or every problem of every file.
+ */
+export async function loadCableTable(folders: readonly string[] = []): Promise<Outcome<CableTable>> {
+  const tables: CableEntry[][] = [];
+  const problems: Problem[] = [];
+  for (const folder of [bundledPath('cables'), ...folders]) {
+    const entries = await readFolder(folder);
+    if (entries.ok) tables.push(entries.value);
+    else problems.push(...entries.problems);
+  }
+  return problems.length > 0 ? fail(...problems) : succeed(createCableTable(...tables));
+}
+
+async function readFolder(folder: string): Promise<Outcome<CableEntry[]>> {
+  const names = await readdir(folder).catch(() => null);
+  if (names === null)
+    return fail({
+      code: 'cables-folder',
+      file: shownName(folder),
+      what: 'there is no such folder of cable files',
+      mend: 'give --cables the folder that holds your *.json cable files',
+    });
+  const entries: CableEntry[] = [];
+  const problems: Problem[] = [];
+  for (const name of names.filter((one) => one.endsWith('.json')).sort()) {
+    const path = join(folder, name);
+    const text = await readText(path, MOST_CABLE_BYTES);
+    const cables = text.ok ? readCables(text.value, shownName(path)) : text;
+    if (cables.ok) entries.push(...cables.value);
+    else problems.push(...cables.problems);
+  }
+  return problems.length > 0 ? fail(...problems) : succeed(entries);
+}
