@@ -4,7 +4,13 @@
  * How a figure came to be known: read in a text, recalled from a text, worked out from others, a habit of
  * the trade, or given by the user's own file without a word on where it comes from.
  */
-export const FIGURE_STATUSES = ['confirmed', 'from memory', 'computed', 'common practice', 'as given'] as const;
+export const FIGURE_STATUSES = [
+  'confirmed',
+  'from memory',
+  'computed',
+  'common practice',
+  'as given',
+] as const;
 
 export type FigureStatus = (typeof FIGURE_STATUSES)[number];
 

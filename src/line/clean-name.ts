@@ -38,5 +38,10 @@ export function cleanName(text: string, longest: number = LONGEST_NAME): string 
     .replace(/\s+/gu, ' ')
     .trim();
   const points = Array.from(plain);
-  return points.length <= longest ? plain : `${points.slice(0, longest - 1).join('').trimEnd()}…`;
+  return points.length <= longest
+    ? plain
+    : `${points
+        .slice(0, longest - 1)
+        .join('')
+        .trimEnd()}…`;
 }
