@@ -1,0 +1,37 @@
+/** Kinds and sizes of echoes in plain words, the same in both front doors. */
+import type { Echo, EchoKind, EchoValue, StretchKind } from '../locate/echo.ts';
+import { digitsText, ohmText } from '../plot/quantity-text.ts';
+import type { Analysis } from './analysis.ts';
+
+export const KIND_WORDS: Readonly<Record<EchoKind, string>> = {
+  open: 'open',
+  short: 'short',
+  termination: 'termination',
+  'series-resistance': 'series resistance',
+  'shunt-leakage': 'shunt leakage',
+  'series-inductance': 'series inductance',
+  'shunt-capacitance': 'shunt capacitance',
+  'impedance-step': 'impedance step',
+  joint: 'joint',
+  unresolved: 'unresolved',
+};
+
+export const STRETCH_WORDS: Readonly<Record<StretchKind, string>> = {
+  wet: 'wet stretch',
+  'wrong-cable': 'stretch of another cable',
+  sound: 'sound stretch',
+};
+
+/** "series resistance 9.1 Ω", "joint", "end: antenna". */
+export function echoWords(analysis: Analysis, echo: Echo): string {
+  const { echoes, end } = analysis.solution;
+  const isEnd = echo === echoes.at(-1) && end !== 'unknown';
+  if (isEnd && (echo.kind === 'open' || echo.kind === 'short' || echo.kind === 'termination'))
+    return `end: ${echo.kind === 'termination' ? end : echo.kind}`;
+  const value = echo.value && echo.kind !== 'joint' ? ` ${valueText(echo.value)}` : '';
+  return `${KIND_WORDS[echo.kind]}${value}`;
+}
+
+function valueText({ value, unit }: EchoValue): string {
+  return unit === 'ohm' ? ohmText(value) : `${digitsText(value, 2)} ${unit}`;
+}

@@ -1,0 +1,174 @@
+/** An analysis as text for a terminal or a pipe: the verdict first, then what it rests on. */
+import type { Analysis } from '../app/analysis.ts';
+import { CAUTIONS } from '../app/cautions.ts';
+import { echoWords } from '../app/echo-words.ts';
+import type { Finding } from '../assess/finding.ts';
+import { describedLengthM } from '../line/line.ts';
+import type { Echo, Severity } from '../locate/echo.ts';
+import type { Ghost } from '../locate/solution.ts';
+import type { Notice } from '../outcome.ts';
+import { cutText, fitText, wrapText } from '../plot/cells.ts';
+import {
+  decibelText,
+  frequencySpanText,
+  lengthText,
+  lengthWithSigmaText,
+  levelText,
+  percentText,
+  temperatureText,
+  type Units,
+} from '../plot/quantity-text.ts';
+import type { Paint } from './paint.ts';
+
+export type TextOptions = {
+  readonly columns: number;
+  readonly units: Units;
+  readonly paint: Paint;
+  /** What the reading of files had to say. */
+  readonly notices: readonly Notice[];
+};
+
+const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
+
+/** Widths of the table's columns; the last one takes what is left. */
+const MARK_WIDTH = 2;
+const DISTANCE_WIDTH = 17;
+const LEVEL_WIDTH = 10;
+const WORDS_WIDTH = 26;
+const SURE_WIDTH = 5;
+
+/** Writes it all; every line at most `columns` wide. */
+export function locateText(analysis: Analysis, options: TextOptions): string {
+  const { columns, paint } = options;
+  const findings = analysis.findings.flatMap((finding) => ['', ...findingLines(finding, options)]);
+  const ghosts = analysis.solution.ghosts.flatMap((ghost) => ghostLines(ghost, options));
+  const notices = [...options.notices, ...analysis.notices].flatMap(({ what }) =>
+    hanging('note  ', what, columns),
+  );
+  return [
+    ...verdictLines(analysis, options),
+    ...summaryLines(analysis, options),
+    '',
+    ...echoTable(analysis, options),
+    ...findings,
+    ...(ghosts.length > 0 ? ['', ...ghosts] : []),
+    ...(notices.length > 0 ? ['', ...notices] : []),
+    '',
+    ...wrapText(CAUTIONS.short, columns).map((line) => paint('dim', line)),
+    '',
+  ].join('\n');
+}
+
+function verdictLines(analysis: Analysis, { paint, columns }: TextOptions): string[] {
+  const count = (severity: Severity): number =>
+    analysis.findings.filter((finding) => finding.severity === severity).length;
+  const faults = count('fault');
+  const watches = count('watch');
+  const worst: Severity = faults > 0 ? 'fault' : watches > 0 ? 'watch' : 'sound';
+  const words = [
+    ...(faults > 0 ? [`${faults} fault${faults === 1 ? '' : 's'}`] : []),
+    ...(watches > 0 ? [`${watches} to watch`] : []),
+  ];
+  const verdict = words.length > 0 ? words.join(', ') : 'no fault found';
+  const name = cutText(analysis.line.name || analysis.sweep.file, columns - verdict.length - 4);
+  return [`${paint(worst, `${MARKS[worst]} ${name}: ${verdict}`)}`];
+}
+
+function summaryLines(analysis: Analysis, { units, columns }: TextOptions): string[] {
+  const { sweep, line, reach, solution } = analysis;
+  const last = sweep.frequencyHz.at(-1) ?? 0;
+  const described = describedLengthM(line);
+  const port = sweep.ports > 1 ? `, port ${sweep.port} of ${sweep.ports}` : '';
+  const end = solution.end === 'unknown' ? 'end' : solution.end;
+  return [
+    ...hanging(
+      'sweep ',
+      `${sweep.file}, ${frequencySpanText(sweep.frequencyHz[0] ?? 0, last)}, ${sweep.frequencyHz.length} points${port}`,
+      columns,
+    ),
+    ...hanging(
+      'line  ',
+      `${line.sections.map((section) => section.label).join(' + ')}` +
+        `${described === null ? '' : `, ${lengthText(described, units)} described`}` +
+        `${line.temperatureKnown ? `, ${temperatureText(line.temperatureC, units)}` : ''}`,
+      columns,
+    ),
+    ...hanging(
+      'end   ',
+      `${end} at ${lengthWithSigmaText(solution.lengthM, solution.lengthSigmaM, units)}, distances scaled to ` +
+        (solution.scaledTo === 'description' ? 'the described length' : 'the velocity factor'),
+      columns,
+    ),
+    ...hanging(
+      'reach ',
+      `resolution ${lengthText(reach.resolutionM, units)}, unambiguous to ${lengthText(reach.unambiguousM, units, 1)}, ` +
+        `weakest echo seen at the end ${levelText(reach.weakestReturnLossDb)}`,
+      columns,
+    ),
+    ...hanging('fit   ', `${solution.elements} elements leave ${decibelText(solution.residualDb)}`, columns),
+  ];
+}
+
+function echoTable(analysis: Analysis, options: TextOptions): string[] {
+  const placeWidth =
+    options.columns - MARK_WIDTH - DISTANCE_WIDTH - 2 * LEVEL_WIDTH - 2 - WORDS_WIDTH - SURE_WIDTH - 2;
+  const header =
+    ' '.repeat(MARK_WIDTH) +
+    fitText('distance', DISTANCE_WIDTH) +
+    fitText('seen', LEVEL_WIDTH, 'right') +
+    fitText('corrected', LEVEL_WIDTH, 'right') +
+    `  ${fitText('what', WORDS_WIDTH)}${fitText('sure', SURE_WIDTH, 'right')}`;
+  const rows = analysis.solution.echoes.map((echo, i) => {
+    const severity = analysis.severities[i] ?? 'sound';
+    const row =
+      fitText(MARKS[severity], MARK_WIDTH) +
+      fitText(lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, options.units), DISTANCE_WIDTH) +
+      fitText(levelText(echo.returnLossDb), LEVEL_WIDTH, 'right') +
+      fitText(levelText(echo.correctedReturnLossDb), LEVEL_WIDTH, 'right') +
+      `  ${fitText(echoWords(analysis, echo), WORDS_WIDTH)}` +
+      fitText(percentText(echo.confidence), SURE_WIDTH, 'right') +
+      `  ${cutText(shortPlace(analysis, echo), placeWidth)}`;
+    const trimmed = row.trimEnd();
+    return severity === 'sound' ? trimmed : options.paint(severity, trimmed);
+  });
+  return [options.paint('dim', header), ...rows];
+}
+
+function shortPlace(analysis: Analysis, echo: Echo): string {
+  if (echo.joint) return `joint ${echo.joint.index}`;
+  return analysis.line.sections[echo.section]?.label ?? '';
+}
+
+function findingLines(finding: Finding, { columns, units, paint }: TextOptions): string[] {
+  const head =
+    `${MARKS[finding.severity]} ${finding.severity} ${finding.where}, ` +
+    `${lengthWithSigmaText(finding.distanceM, finding.distanceSigmaM, units)}`;
+  return [
+    ...wrapText(head, columns).map((line) => paint(finding.severity, line)),
+    ...hanging('  ', `${finding.what}, ${percentText(finding.confidence)} sure`, columns),
+    ...listed('  likely       ', finding.causes, columns),
+    ...listed('  check first  ', finding.checks, columns),
+    ...listed('  bring        ', finding.bring, columns),
+  ];
+}
+
+/** A re-reflection that a reader of the plain trace could take for a fault. */
+function ghostLines(ghost: Ghost, { columns, units }: TextOptions): string[] {
+  const between = ghost.betweenM.map((m) => lengthText(m, units)).join(' and ');
+  return hanging(
+    'ghost ',
+    `${lengthText(ghost.distanceM, units)}, ${levelText(ghost.returnLossDb)}: a bounce between ${between}, not a fault`,
+    columns,
+  );
+}
+
+function listed(label: string, items: readonly string[], columns: number): string[] {
+  return items.length === 0 ? [] : hanging(label, items.join('; '), columns);
+}
+
+/** A label with its text beside it, further lines indented under the text. */
+function hanging(label: string, text: string, columns: number): string[] {
+  return wrapText(text, columns - label.length).map(
+    (line, i) => `${i === 0 ? label : ' '.repeat(label.length)}${line}`,
+  );
+}
