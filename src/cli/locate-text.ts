@@ -10,6 +10,7 @@ import type { Notice } from '../outcome.ts';
 import { cutText, fitText, wrapText } from '../plot/cells.ts';
 import {
   decibelText,
+  fixedText,
   frequencySpanText,
   lengthText,
   lengthWithSigmaText,
@@ -30,12 +31,14 @@ export type TextOptions = {
 
 const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
 
-/** Widths of the table's columns; the last one takes what is left. */
+/** Widths of the table's columns; the place takes what is left. */
 const MARK_WIDTH = 2;
 const DISTANCE_WIDTH = 17;
-const LEVEL_WIDTH = 10;
-const WORDS_WIDTH = 26;
+const SEEN_WIDTH = 7;
+const CORRECTED_WIDTH = 11;
+const WORDS_WIDTH = 25;
 const SURE_WIDTH = 5;
+const GAP = '  ';
 
 /** Writes it all; every line at most `columns` wide. */
 export function locateText(analysis: Analysis, options: TextOptions): string {
@@ -109,29 +112,35 @@ function summaryLines(analysis: Analysis, { units, columns }: TextOptions): stri
   ];
 }
 
-function echoTable(analysis: Analysis, options: TextOptions): string[] {
-  const placeWidth =
-    options.columns - MARK_WIDTH - DISTANCE_WIDTH - 2 * LEVEL_WIDTH - 2 - WORDS_WIDTH - SURE_WIDTH - 2;
-  const header =
-    ' '.repeat(MARK_WIDTH) +
-    fitText('distance', DISTANCE_WIDTH) +
-    fitText('seen', LEVEL_WIDTH, 'right') +
-    fitText('corrected', LEVEL_WIDTH, 'right') +
-    `  ${fitText('what', WORDS_WIDTH)}${fitText('sure', SURE_WIDTH, 'right')}`;
+function echoTable(analysis: Analysis, { columns, units, paint }: TextOptions): string[] {
+  const row = (cells: readonly [string, string, string, string, string, string, string]): string =>
+    cutText(
+      fitText(cells[0], MARK_WIDTH) +
+        fitText(cells[1], DISTANCE_WIDTH) +
+        fitText(cells[2], SEEN_WIDTH, 'right') +
+        fitText(cells[3], CORRECTED_WIDTH, 'right') +
+        GAP +
+        fitText(cells[4], WORDS_WIDTH) +
+        fitText(cells[5], SURE_WIDTH, 'right') +
+        GAP +
+        cells[6],
+      columns,
+    ).trimEnd();
+  const header = row(['', 'distance', 'seen dB', 'corrected', 'what', 'sure', 'place']);
   const rows = analysis.solution.echoes.map((echo, i) => {
     const severity = analysis.severities[i] ?? 'sound';
-    const row =
-      fitText(MARKS[severity], MARK_WIDTH) +
-      fitText(lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, options.units), DISTANCE_WIDTH) +
-      fitText(levelText(echo.returnLossDb), LEVEL_WIDTH, 'right') +
-      fitText(levelText(echo.correctedReturnLossDb), LEVEL_WIDTH, 'right') +
-      `  ${fitText(echoWords(analysis, echo), WORDS_WIDTH)}` +
-      fitText(percentText(echo.confidence), SURE_WIDTH, 'right') +
-      `  ${cutText(shortPlace(analysis, echo), placeWidth)}`;
-    const trimmed = row.trimEnd();
-    return severity === 'sound' ? trimmed : options.paint(severity, trimmed);
+    const text = row([
+      MARKS[severity],
+      lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, units),
+      fixedText(-echo.returnLossDb, 1),
+      fixedText(-echo.correctedReturnLossDb, 1),
+      echoWords(analysis, echo),
+      percentText(echo.confidence),
+      shortPlace(analysis, echo),
+    ]);
+    return severity === 'sound' ? text : paint(severity, text);
   });
-  return [options.paint('dim', header), ...rows];
+  return [paint('dim', header), ...rows];
 }
 
 function shortPlace(analysis: Analysis, echo: Echo): string {
