@@ -1,25 +1,44 @@
 // Bundles the program into dist/: one entry for the command line, one for the solve worker.
 // Splitting keeps the workspace (Ink, React) out of the path of every other verb.
-import { chmodSync, rmSync } from 'node:fs';
+import { chmodSync, rmSync, writeFileSync } from 'node:fs';
 import { build } from 'esbuild';
 
-rmSync('dist', { recursive: true, force: true });
-await build({
-  entryPoints: { cli: 'src/cli/main.ts', 'solve-worker': 'src/app/solve-worker.ts' },
-  outdir: 'dist',
+const common = {
   bundle: true,
-  splitting: true,
   format: 'esm',
   platform: 'node',
   target: 'node20',
-  minify: true,
-  keepNames: true,
-  legalComments: 'linked',
+  // Some libraries' "main" is a loader that no bundler sees through; their "module" is plain.
+  mainFields: ['module', 'main'],
   define: { 'process.env.NODE_ENV': '"production"' },
   // Ink loads its developer tools only when asked; they are no dependency of ours.
   alias: { 'react-devtools-core': './src/terminal/no-devtools.ts' },
   banner: {
     js: "import { createRequire as createRequireForBundle } from 'node:module'; const require = createRequireForBundle(import.meta.url);",
   },
+};
+
+rmSync('dist', { recursive: true, force: true });
+await build({
+  ...common,
+  entryPoints: { cli: 'src/cli/main.ts', 'solve-worker': 'src/app/solve-worker.ts' },
+  outdir: 'dist',
+  splitting: true,
+  minify: true,
+  keepNames: true,
+  legalComments: 'linked',
 });
+await writeCables();
 chmodSync('dist/cli.js', 0o755);
+
+/** Reads and checks cables/ once and for all, so that no start has to. */
+async function writeCables() {
+  const reader = 'dist/read-cables.js';
+  await build({ ...common, entryPoints: ['src/app/cable-files.ts'], outfile: reader });
+  const { loadCableTable } = await import(`./${reader}`);
+  const table = await loadCableTable();
+  rmSync(reader);
+  if (!table.ok)
+    throw new Error(table.problems.map(({ file, line, what }) => `${file}:${line} ${what}`).join('\n'));
+  writeFileSync('dist/built-cables.json', JSON.stringify(table.value.entries));
+}

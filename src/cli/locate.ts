@@ -8,7 +8,6 @@ import type { Settings } from '../app/settings.ts';
 import { traceCsv } from '../app/trace-export.ts';
 import type { Notice } from '../outcome.ts';
 import { type ExitStatus, type Io, textColumns, write } from './io.ts';
-import { locateText } from './locate-text.ts';
 import { createPaint } from './paint.ts';
 import type { Invocation } from './parse-arguments.ts';
 import { printProblems } from './print-problems.ts';
@@ -45,6 +44,8 @@ export async function printAnalysis(
   notices: readonly Notice[],
   io: Io,
 ): Promise<void> {
+  // Loaded here, for measuring the width of text takes longer to get ready than a script would wait.
+  const { locateText } = await import('./locate-text.ts');
   const text = locateText(analysis, {
     columns: textColumns(io),
     units: settings.units,
