@@ -10,11 +10,17 @@ const common = {
   target: 'node20',
   // Some libraries' "main" is a loader that no bundler sees through; their "module" is plain.
   mainFields: ['module', 'main'],
-  define: { 'process.env.NODE_ENV': '"production"' },
+  // Libraries of the older module kind ask for their own file's name and for require.
+  define: { 'process.env.NODE_ENV': '"production"', __filename: 'bundleFilename' },
   // Ink loads its developer tools only when asked; they are no dependency of ours.
   alias: { 'react-devtools-core': './src/terminal/no-devtools.ts' },
   banner: {
-    js: "import { createRequire as createRequireForBundle } from 'node:module'; const require = createRequireForBundle(import.meta.url);",
+    js: [
+      "import { createRequire as createRequireForBundle } from 'node:module';",
+      "import { fileURLToPath as fileURLToPathForBundle } from 'node:url';",
+      'const require = createRequireForBundle(import.meta.url);',
+      'const bundleFilename = fileURLToPathForBundle(import.meta.url);',
+    ].join('\n'),
   },
 };
 

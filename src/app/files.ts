@@ -152,9 +152,10 @@ function tooLarge(file: string, mostBytes: number): Problem {
   };
 }
 
-/** What the system said, in words said on site. */
+/** What the system said, in words said on site. Anything that the system did not say is a bug, and goes on. */
 function diskProblem(error: unknown, file: string, act: 'read' | 'write'): Problem {
-  const code = error instanceof Error && 'code' in error ? String(error.code) : '';
+  if (!(error instanceof Error && 'code' in error)) throw error;
+  const code = String(error.code);
   const known: Record<string, readonly [problem: string, what: string, mend: string]> = {
     ENOENT:
       act === 'read'
@@ -171,7 +172,7 @@ function diskProblem(error: unknown, file: string, act: 'read' | 'write'): Probl
   };
   const [problem, what, mend] = known[code] ?? [
     `file-not-${act}able`,
-    `it could not be ${act === 'read' ? 'read' : 'written'} (${code || cleanForDisplay(String(error), 120)})`,
+    `it could not be ${act === 'read' ? 'read' : 'written'} (${cleanForDisplay(code, 40)})`,
     'check the disk and the permissions',
   ];
   return { code: problem, file, what, mend };
