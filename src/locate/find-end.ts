@@ -1,0 +1,304 @@
+/**
+ * Where the line ends and how: the start of every solve.
+ *
+ * The end is not simply the strongest echo near the described length: a cut line ends early, a well matched load hardly
+ * shows, an antenna reflects in its own way. Candidates come from the corrected trace of the raw sweep; each is fitted
+ * on the cascade with its own kind, and the best by likelihood wins.
+ */
+import type { EndModel } from '../line/end.ts';
+import type { EndKind, Line } from '../line/line.ts';
+import { findPeaks } from '../numerics/peaks.ts';
+import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
+import {
+  ALL_FREE,
+  cloneModel,
+  createLineModel,
+  type Freedom,
+  type LineModel,
+  restoreModel,
+} from './line-model.ts';
+import { type ResidualTrace, residualTrace } from './residual-trace.ts';
+
+export type EndFound = {
+  readonly model: LineModel;
+  /** The line up to the end that was found; shorter than described when the line is cut. */
+  readonly line: Line;
+  readonly kind: Exclude<EndKind, 'unknown'>;
+  /** True when the line ends well before its description does. */
+  readonly cut: boolean;
+  /** Cost distance to the best other kind of end, in nats. */
+  readonly lead: number;
+};
+
+export type EndSearch = {
+  readonly line: Line;
+  readonly portOhm: number;
+  /** Taper for traces, length n. */
+  readonly taper: Float64Array;
+  /** 6 dB width of an echo, m. */
+  readonly resolutionM: number;
+  /** Farthest distance the sweep can tell apart, m. */
+  readonly unambiguousM: number;
+  readonly lossSigma: number;
+};
+
+/** A corrected level that only an open, a short or a cut can reach. */
+const FULL_REFLECTION_LEVEL = 0.75;
+
+/** A described open or short is looked for where the trace shows at least this level. */
+const FULL_END_LEVEL = 0.08;
+
+/**
+ * Finds the end.
+ *
+ * @param context Fit context on the sweep; its residual is overwritten.
+ */
+export function findEnd(context: FitContext, search: EndSearch): EndFound {
+  const { line } = search;
+  const unknownLength = line.sections.at(-1)!.lengthM === null;
+  return unknownLength ? findUnknownEnd(context, search) : findDescribedEnd(context, search);
+}
+
+function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
+  const { line } = search;
+  const lengths = line.sections.map((section) => section.lengthM!);
+  const total = lengths.reduce((a, b) => a + b, 0);
+  const base = createLineModel(line, context.frequencyHz, search.portOhm, lengths, {
+    lossSigma: search.lossSigma,
+  });
+  const slack = 0.03 * total + search.resolutionM;
+  const trace = measuredTrace(context, base, search, total + slack);
+  const cutAt = fullReflectionBefore(trace, total - slack, search.resolutionM);
+  const nearEnd = strongestBetween(trace, total - slack, total + slack);
+  if (cutAt !== null && !(nearEnd.level > 0.5)) {
+    const cutLine = truncateLine(line, cutAt);
+    const cutLengths = cutLine.sections.map((section) => section.lengthM!);
+    const model = createLineModel(cutLine, context.frequencyHz, search.portOhm, cutLengths, {
+      lossSigma: search.lossSigma,
+      lengthSigmaM: total,
+    });
+    const best = bestEnd(context, model, search, ['open', 'short'], [cutAt]);
+    return { ...best, line: cutLine, cut: true };
+  }
+  const kinds: Exclude<EndKind, 'unknown'>[] =
+    nearEnd.level > FULL_REFLECTION_LEVEL && line.end !== 'antenna'
+      ? ['open', 'short']
+      : nearEnd.level > FULL_END_LEVEL
+        ? ['open', 'short', 'load', 'antenna']
+        : ['load', 'antenna'];
+  const wanted = kinds.filter((kind) => compatible(kind, line.end, nearEnd.level));
+  const best = bestEnd(context, base, search, wanted.length > 0 ? wanted : kinds, [nearEnd.distanceM, total]);
+  return { ...best, line, cut: false };
+}
+
+/** A described end is believed unless the trace speaks against it. */
+function compatible(kind: EndKind, described: EndKind, level: number): boolean {
+  if (described === 'unknown') return true;
+  if (kind === described) return true;
+  const full = kind === 'open' || kind === 'short';
+  if (described === 'open' || described === 'short') return full || level < 0.3;
+  // A load or antenna that reflects everything is off or broken.
+  return full && level > FULL_REFLECTION_LEVEL;
+}
+
+function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
+  const { line } = search;
+  const known = line.sections.slice(0, -1).map((section) => section.lengthM!);
+  const knownM = known.reduce((a, b) => a + b, 0);
+  const guess = createLineModel(line, context.frequencyHz, search.portOhm, [...known, 1], {
+    lossSigma: search.lossSigma,
+  });
+  const trace = measuredTrace(context, guess, search, search.unambiguousM);
+  const start = Math.max(knownM, search.resolutionM * 0.75);
+  const at = lastOwnEcho(trace, start, search.resolutionM);
+  const lengthM = Math.max(0.05, at.distanceM - knownM);
+  const model = createLineModel(line, context.frequencyHz, search.portOhm, [...known, lengthM], {
+    lossSigma: search.lossSigma,
+    lengthSigmaM: Math.max(1, lengthM),
+  });
+  const kinds: Exclude<EndKind, 'unknown'>[] =
+    line.end !== 'unknown' ? [line.end] : at.level > 0.5 ? ['open', 'short'] : ['open', 'short', 'load'];
+  const best = bestEnd(context, model, search, kinds, [at.distanceM]);
+  const found: Line = {
+    ...line,
+    sections: line.sections.map((section, i) =>
+      i === line.sections.length - 1 ? { ...section, lengthM } : section,
+    ) as Line['sections'],
+  };
+  return { ...best, line: found, cut: false };
+}
+
+function measuredTrace(context: FitContext, model: LineModel, search: EndSearch, toM: number): ResidualTrace {
+  const stepM = search.resolutionM / 6;
+  const points = Math.max(8, Math.min(60_000, Math.ceil(toM / stepM)));
+  const weight = search.taper.map((w, i) => w * context.weight[i]!);
+  return residualTrace(model, context.measured, weight, { fromM: 0, stepM, points });
+}
+
+function strongestBetween(
+  trace: ResidualTrace,
+  fromM: number,
+  toM: number,
+): { distanceM: number; level: number } {
+  let best = { distanceM: (fromM + toM) / 2, level: 0 };
+  trace.level.forEach((level, k) => {
+    const distanceM = trace.fromM + k * trace.stepM;
+    if (distanceM >= fromM && distanceM <= toM && level > best.level) best = { distanceM, level };
+  });
+  return best;
+}
+
+/** Distance of the last full reflection before `beforeM`, or null. */
+function fullReflectionBefore(trace: ResidualTrace, beforeM: number, resolutionM: number): number | null {
+  const peaks = findPeaks(trace.level).filter((peak) => {
+    const distanceM = trace.fromM + peak.index * trace.stepM;
+    return (
+      distanceM > resolutionM * 0.5 &&
+      distanceM < beforeM &&
+      trace.level[peak.index]! > FULL_REFLECTION_LEVEL &&
+      trace.level[peak.index]! < 1.6
+    );
+  });
+  // Loss undone past a full reflection blows up its re-reflections, so the first one is the cut.
+  const first = peaks[0];
+  return first ? trace.fromM + first.index * trace.stepM : null;
+}
+
+/** The last echo that stands by itself: not a re-reflection between stronger ones before it. */
+function lastOwnEcho(
+  trace: ResidualTrace,
+  fromM: number,
+  resolutionM: number,
+): { distanceM: number; level: number } {
+  const first = Math.max(0, Math.ceil((fromM - trace.fromM) / trace.stepM));
+  // Loss undone raises noise with distance: the strongest by evidence, not by level, starts the search.
+  let strongest = first;
+  for (let k = first; k < trace.density.length; k++) {
+    if (trace.density[k]! > trace.density[strongest]!) strongest = k;
+  }
+  const at = (k: number): { distanceM: number; level: number } => ({
+    distanceM: trace.fromM + k * trace.stepM,
+    level: trace.level[k]!,
+  });
+  let chosen = at(strongest);
+  if (chosen.level > FULL_REFLECTION_LEVEL) return chosen;
+  const peaks = findPeaks(trace.density)
+    .filter((peak) => peak.index > strongest && trace.density[peak.index]! > 0.05 * trace.density[strongest]!)
+    .map((peak) => at(peak.index));
+  for (const peak of peaks) {
+    const bounce = Math.abs(peak.distanceM - 2 * chosen.distanceM) < resolutionM;
+    if (peak.distanceM - chosen.distanceM > resolutionM && !bounce) chosen = peak;
+  }
+  return chosen;
+}
+
+/** The described line up to a cut, its last section shortened. */
+export function truncateLine(line: Line, atM: number): Line {
+  const sections: Line['sections'][number][] = [];
+  let start = 0;
+  for (const section of line.sections) {
+    const length = section.lengthM ?? Number.POSITIVE_INFINITY;
+    if (start + length >= atM) {
+      sections.push({ ...section, lengthM: Math.max(0.01, atM - start) } as typeof section);
+      break;
+    }
+    sections.push(section);
+    start += length;
+  }
+  return { ...line, sections };
+}
+
+/** Fits each kind of end from each starting distance and leaves the best in the returned model. */
+function bestEnd(
+  context: FitContext,
+  base: LineModel,
+  search: EndSearch,
+  kinds: readonly Exclude<EndKind, 'unknown'>[],
+  startsM: readonly number[],
+): Pick<EndFound, 'model' | 'kind' | 'lead'> {
+  type Trial = { model: LineModel; kind: Exclude<EndKind, 'unknown'>; energy: number; size: number };
+  const freedom: Freedom = { ...ALL_FREE, impedances: false, lumps: new Set() };
+  const trials: Trial[] = [];
+  for (const kind of kinds) {
+    for (const start of phaseStarts(context, base, search, kind, startsM)) {
+      const model = cloneModel(base);
+      moveEnd(model, start.distanceM);
+      model.end = startingEnd(kind, start.value, context);
+      evaluateCost(context, model, freedom, 1);
+      const variance = Math.max(residualEnergy(context) / (2 * context.weight.length), 1e-10);
+      refine(context, model, freedom, { variance, maxIterations: kind === 'antenna' ? 25 : 10 });
+      trials.push({ model, kind, energy: residualEnergy(context), size: model.end.parameters.length });
+    }
+  }
+  const points = context.weight.reduce((a, b) => a + b, 0);
+  const least = Math.max(Math.min(...trials.map((trial) => trial.energy)), 1e-12);
+  const variance = least / (2 * points);
+  const cost = (trial: Trial): number =>
+    evaluateCost(context, trial.model, freedom, variance) + trial.size * Math.log(2 * points);
+  const ranked = trials.map((trial) => ({ trial, cost: cost(trial) })).sort((a, b) => a.cost - b.cost);
+  const best = ranked[0]!;
+  const rival = ranked.find((other) => other.trial.kind !== best.trial.kind);
+  restoreModel(base, best.trial.model);
+  return {
+    model: base,
+    kind: best.trial.kind,
+    lead: rival ? (rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY,
+  };
+}
+
+/** Moves the end, and with it the joints before it as far as their errors go together. */
+export function moveEnd(model: LineModel, distanceM: number): void {
+  const n = model.boundaryM.length;
+  const { boundaryMeanM: mean, boundaryCovariance: c } = model.priors;
+  const off = distanceM - mean[n - 1]!;
+  const own = c[n * n - 1]!;
+  for (let i = 0; i < n; i++) model.boundaryM[i] = mean[i]! + (c[i * n + n - 1]! / own) * off;
+  // A line cut short moves its end alone when the rest would run backward.
+  for (let i = n - 2; i >= 0; i--)
+    model.boundaryM[i] = Math.min(model.boundaryM[i]!, model.boundaryM[i + 1]!);
+}
+
+/** Starting distances whose phase fits the kind: the tips of the real part of the trace near each start. */
+function phaseStarts(
+  context: FitContext,
+  base: LineModel,
+  search: EndSearch,
+  kind: EndKind,
+  startsM: readonly number[],
+): { distanceM: number; value: number }[] {
+  const top = context.frequencyHz[context.frequencyHz.length - 1]!;
+  const beta = base.media.at(-1)!.gamma.im[context.frequencyHz.length - 1]!;
+  const stepM = Math.PI / beta / 24;
+  const starts: { distanceM: number; value: number }[] = [];
+  for (const startM of kind === 'load' || kind === 'antenna' ? startsM : startsM.slice(0, 1)) {
+    const fromM = Math.max(0, startM - search.resolutionM);
+    const points = Math.ceil((2 * search.resolutionM) / stepM) + 1;
+    const trace = residualTrace(base, context.measured, context.weight, { fromM, stepM, points });
+    const sign = kind === 'short' ? -1 : 1;
+    const real = trace.value.re.map((v) => (kind === 'load' || kind === 'antenna' ? Math.abs(v) : sign * v));
+    const tips = findPeaks(real)
+      .map((peak) => ({ distanceM: fromM + peak.index * stepM, value: trace.value.re[peak.index]! }))
+      .sort((a, b) => Math.abs(b.value) - Math.abs(a.value));
+    starts.push(...tips.slice(0, kind === 'antenna' ? 1 : 2));
+  }
+  if (starts.length === 0) starts.push({ distanceM: startsM[0]!, value: top > 0 ? 0.01 : 0 });
+  return starts;
+}
+
+function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number, context: FitContext): EndModel {
+  switch (kind) {
+    case 'open':
+    case 'short':
+      return { type: kind, parameters: [0] };
+    case 'load': {
+      const gamma = Math.max(-0.9, Math.min(0.9, value));
+      return { type: 'load', parameters: [(1 + gamma) / (1 - gamma), 0] };
+    }
+    case 'antenna': {
+      const f = context.frequencyHz;
+      const middle = (f[0]! + f[f.length - 1]!) / 2;
+      const gamma = Math.max(-0.9, Math.min(0.9, value));
+      return { type: 'antenna', parameters: [gamma, -0.9 * gamma, 0, 5, middle] };
+    }
+  }
+}

@@ -1,0 +1,285 @@
+/** Joint refinement of everything in the model against the sweep: damped least squares on the full cascade. */
+import { type Cascade, createCascade } from '../line/cascade.ts';
+import type { ComplexArray } from '../numerics/complex.ts';
+import { complexZeros } from '../numerics/complex.ts';
+import { invertSymmetric, solveSymmetric } from '../numerics/linear-solve.ts';
+import { type Freedom, type LineModel, type Parameter, type Translation, translate } from './line-model.ts';
+
+/** The sweep as the solver sees it, with buffers that every fit reuses. */
+export type FitContext = {
+  readonly frequencyHz: Float64Array;
+  readonly measured: ComplexArray;
+  /** Weight of each point: 0 leaves it out (interference, outside a device's pass band), 1 counts it. */
+  readonly weight: Float64Array;
+  readonly cascade: Cascade;
+  /** Measured − modelled of the last evaluation. */
+  readonly residual: ComplexArray;
+  readonly columns: ComplexArray[];
+  /** Phasors e^{−jωτ} of the correction residues. */
+  readonly calibrationPhasors: Map<number, ComplexArray>;
+};
+
+export type FitOptions = {
+  /** Variance of the residual per real component. */
+  readonly variance: number;
+  readonly maxIterations: number;
+  /** Relative fall of the cost below which the fit has settled. */
+  readonly tolerance?: number;
+};
+
+export type FitResult = {
+  /** Weighted residual energy over variance plus priors: −2 ln(likelihood × prior) up to a constant. */
+  readonly cost: number;
+  readonly iterations: number;
+  readonly settled: boolean;
+};
+
+/** Prepares buffers for fits to one sweep. */
+export function createFitContext(
+  frequencyHz: Float64Array,
+  measured: ComplexArray,
+  weight: Float64Array,
+): FitContext {
+  return {
+    frequencyHz,
+    measured,
+    weight,
+    cascade: createCascade(frequencyHz),
+    residual: complexZeros(frequencyHz.length),
+    columns: [],
+    calibrationPhasors: new Map(),
+  };
+}
+
+/**
+ * Moves the free parameters of `model` to the best fit, in place.
+ *
+ * Levenberg–Marquardt on normal equations scaled by their diagonal, with Gaussian priors and bounds.
+ *
+ * @source Marquardt, J. SIAM 11(2), 431–441, 1963; Madsen, Nielsen & Tingleff, Methods for Non-Linear Least Squares
+ *   Problems, 2004 (damping rule), from memory.
+ */
+export function refine(
+  context: FitContext,
+  model: LineModel,
+  freedom: Freedom,
+  options: FitOptions,
+): FitResult {
+  const tolerance = options.tolerance ?? 1e-4;
+  let linear = linearise(context, model, freedom, options.variance);
+  let damping = 1e-3;
+  let growth = 2;
+  let iterations = 0;
+  let settled = linear.translation.parameters.length === 0;
+  while (!settled && iterations < options.maxIterations) {
+    iterations++;
+    const { parameters } = linear.translation;
+    const before = parameters.map((parameter) => parameter.get());
+    const step = dampedStep(linear, damping);
+    if (step === null) {
+      damping *= 10;
+      if (damping > 1e9) break;
+      continue;
+    }
+    let predicted = 0;
+    parameters.forEach((parameter, k) => {
+      const limited = limitStep(parameter, before[k]!, step[k]!);
+      predicted += limited * linear.gradient[k]!;
+      parameter.set(before[k]! + limited);
+    });
+    const cost = evaluateCost(context, model, freedom, options.variance);
+    if (cost < linear.cost) {
+      const fall = linear.cost - cost;
+      settled = fall < tolerance * Math.max(1, cost * 0.01) && fall < 0.05;
+      linear = linearise(context, model, freedom, options.variance);
+      damping = Math.max(1e-9, damping / (predicted > 0 && fall > 0.5 * predicted ? 10 : 3));
+      growth = 2;
+    } else {
+      parameters.forEach((parameter, k) => {
+        parameter.set(before[k]!);
+      });
+      settled = cost - linear.cost < 1e-3 * tolerance * Math.max(1, linear.cost);
+      damping *= growth;
+      growth *= 2;
+      if (damping > 1e9) break;
+    }
+  }
+  // Leaves residual and cascade in the state of the answer.
+  evaluateResidual(context, model, linear.translation);
+  return { cost: linear.cost, iterations, settled };
+}
+
+/** Normal equations at the model as it stands. */
+export type Linearisation = {
+  readonly translation: Translation;
+  readonly cost: number;
+  /** JᵀW r / variance − prior gradient: the direction of descent. */
+  readonly gradient: Float64Array;
+  /** Row-major curvature, priors included. */
+  readonly curvature: Float64Array;
+};
+
+/** Residual, Jacobian and normal equations of the model as it stands. */
+export function linearise(
+  context: FitContext,
+  model: LineModel,
+  freedom: Freedom,
+  variance: number,
+): Linearisation {
+  const translation = translate(model, freedom);
+  const { parameters, slots, stages } = translation;
+  const p = parameters.length;
+  while (context.columns.length < p) context.columns.push(complexZeros(context.frequencyHz.length));
+  const columns = context.columns.slice(0, p);
+  const modelled = context.cascade.linearise(stages, model.end, slots, columns);
+  writeResidual(context, model, modelled);
+  if (freedom.calibration) {
+    model.calibration.forEach((term, k) => {
+      const phasor = calibrationPhasor(context, term.delayS);
+      const re = columns[translation.calibrationColumn + 2 * k]!;
+      const im = columns[translation.calibrationColumn + 2 * k + 1]!;
+      for (let i = 0; i < context.frequencyHz.length; i++) {
+        re.re[i] = phasor.re[i]!;
+        re.im[i] = phasor.im[i]!;
+        im.re[i] = -phasor.im[i]!;
+        im.im[i] = phasor.re[i]!;
+      }
+    });
+  }
+  for (const column of columns) applyWeight(column, context.weight);
+  const gradient = new Float64Array(p);
+  const curvature = new Float64Array(p * p);
+  const inverse = 1 / variance;
+  for (let a = 0; a < p; a++) {
+    gradient[a] = dot(columns[a]!, context.residual) * inverse;
+    for (let b = 0; b <= a; b++) {
+      const value = dot(columns[a]!, columns[b]!) * inverse;
+      curvature[a * p + b] = value;
+      curvature[b * p + a] = value;
+    }
+  }
+  const cost = residualEnergy(context) * inverse + addPriors(model, parameters, gradient, curvature);
+  return { translation, cost, gradient, curvature };
+}
+
+/** Cost of the model as it stands; leaves the residual in the context. */
+export function evaluateCost(
+  context: FitContext,
+  model: LineModel,
+  freedom: Freedom,
+  variance: number,
+): number {
+  const translation = translate(model, freedom);
+  evaluateResidual(context, model, translation);
+  return residualEnergy(context) / variance + addPriors(model, translation.parameters, null, null);
+}
+
+/** Writes measured − modelled into the context. */
+export function evaluateResidual(context: FitContext, model: LineModel, translation: Translation): void {
+  writeResidual(context, model, context.cascade.gamma(translation.stages, model.end));
+}
+
+/** Sum of |residual|² over the points that count. */
+export function residualEnergy(context: FitContext): number {
+  return dot(context.residual, context.residual);
+}
+
+/** Covariance of the free parameters at the model as it stands, row-major; null when they are not determined. */
+export function fitCovariance(linear: Linearisation): Float64Array | null {
+  return invertSymmetric(linear.curvature, linear.gradient.length);
+}
+
+function writeResidual(context: FitContext, model: LineModel, modelled: ComplexArray): void {
+  const { residual, measured, weight } = context;
+  for (let i = 0; i < residual.re.length; i++) {
+    residual.re[i] = measured.re[i]! - modelled.re[i]!;
+    residual.im[i] = measured.im[i]! - modelled.im[i]!;
+  }
+  for (const term of model.calibration) {
+    if (term.re === 0 && term.im === 0) continue;
+    const phasor = calibrationPhasor(context, term.delayS);
+    for (let i = 0; i < residual.re.length; i++) {
+      residual.re[i] = residual.re[i]! - (term.re * phasor.re[i]! - term.im * phasor.im[i]!);
+      residual.im[i] = residual.im[i]! - (term.re * phasor.im[i]! + term.im * phasor.re[i]!);
+    }
+  }
+  applyWeight(residual, weight);
+}
+
+function calibrationPhasor(context: FitContext, delayS: number): ComplexArray {
+  const known = context.calibrationPhasors.get(delayS);
+  if (known) return known;
+  const phasor = complexZeros(context.frequencyHz.length);
+  for (let i = 0; i < context.frequencyHz.length; i++) {
+    const angle = 2 * Math.PI * context.frequencyHz[i]! * delayS;
+    phasor.re[i] = Math.cos(angle);
+    phasor.im[i] = -Math.sin(angle);
+  }
+  context.calibrationPhasors.set(delayS, phasor);
+  return phasor;
+}
+
+function applyWeight(values: ComplexArray, weight: Float64Array): void {
+  for (let i = 0; i < weight.length; i++) {
+    values.re[i] = values.re[i]! * weight[i]!;
+    values.im[i] = values.im[i]! * weight[i]!;
+  }
+}
+
+/** Re Σ conj(a)·b. */
+function dot(a: ComplexArray, b: ComplexArray): number {
+  let sum = 0;
+  for (let i = 0; i < a.re.length; i++) sum += a.re[i]! * b.re[i]! + a.im[i]! * b.im[i]!;
+  return sum;
+}
+
+/** Adds the priors to gradient and curvature (when given) and returns their share of the cost. */
+function addPriors(
+  model: LineModel,
+  parameters: readonly Parameter[],
+  gradient: Float64Array | null,
+  curvature: Float64Array | null,
+): number {
+  const p = parameters.length;
+  let cost = 0;
+  parameters.forEach((parameter, k) => {
+    if (parameter.sigma === null) return;
+    const precision = 1 / (parameter.sigma * parameter.sigma);
+    const off = parameter.get() - parameter.mean;
+    cost += off * off * precision;
+    if (gradient && curvature) {
+      gradient[k] = gradient[k]! - off * precision;
+      curvature[k * p + k] = curvature[k * p + k]! + precision;
+    }
+  });
+  const { boundaryMeanM, boundaryPrecision } = model.priors;
+  const n = boundaryMeanM.length;
+  parameters.forEach((parameter, k) => {
+    if (parameter.boundary === null) return;
+    let pull = 0;
+    for (let j = 0; j < n; j++) {
+      pull += boundaryPrecision[parameter.boundary * n + j]! * (model.boundaryM[j]! - boundaryMeanM[j]!);
+    }
+    cost += pull * (model.boundaryM[parameter.boundary]! - boundaryMeanM[parameter.boundary]!);
+    if (!gradient || !curvature) return;
+    gradient[k] = gradient[k]! - pull;
+    parameters.forEach((other, j) => {
+      if (other.boundary === null) return;
+      curvature[k * p + j] =
+        curvature[k * p + j]! + boundaryPrecision[parameter.boundary! * n + other.boundary]!;
+    });
+  });
+  return cost;
+}
+
+function dampedStep(linear: Linearisation, damping: number): Float64Array | null {
+  const p = linear.gradient.length;
+  const damped = linear.curvature.slice();
+  for (let k = 0; k < p; k++) damped[k * p + k] = damped[k * p + k]! * (1 + damping) + 1e-300;
+  return solveSymmetric(damped, linear.gradient);
+}
+
+function limitStep(parameter: Parameter, from: number, step: number): number {
+  const limited = Math.max(-parameter.stepLimit, Math.min(parameter.stepLimit, step));
+  return Math.max(parameter.minimum, Math.min(parameter.maximum, from + limited)) - from;
+}

@@ -1,0 +1,195 @@
+/**
+ * Is a joint bad, and in what way?
+ *
+ * A bad joint is the commonest fault of all and must be told from a merely ordinary one. Size alone is a poor judge:
+ * each joint is fitted as sound (two small reactances a few centimetres apart, and the mismatch of two cables), with a
+ * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
+ */
+
+import { localVariance, residualVariance, type SearchSettings, traceResidual } from './extract-echoes.ts';
+import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
+import { ALL_FREE, addLump, boundaryAt, cloneModel, type LineModel, restoreModel } from './line-model.ts';
+
+export type JointState =
+  | 'sound'
+  | 'series-resistance'
+  | 'shunt-leakage'
+  | 'series-inductance'
+  | 'shunt-capacitance';
+
+export type JointVerdict = {
+  readonly boundary: number;
+  readonly state: JointState;
+  /** False when another faulty state explains the sweep about as well. */
+  readonly clear: boolean;
+  /** Nats by which the chosen fault beats a sound joint; 0 for a sound one. */
+  readonly odds: number;
+  /** Nats by which it beats the next faulty state. */
+  readonly lead: number;
+};
+
+/** Nats that a fault must have over a sound joint. */
+const FAULT_ODDS = 9;
+
+/** Nats between two kinds of fault below which it is a coin toss. */
+const KIND_ODDS = 2;
+
+/** Half the distance between the two faces of a connector, and its spread, m. From memory: a few centimetres. */
+const HALF_GAP_M = 0.012;
+const HALF_GAP_SIGMA_M = 0.01;
+
+/** Return loss of a sound joint at the top of the band, one standard deviation, dB. Common practice: 28 to 45 dB. */
+const SOUND_RETURN_LOSS_DB = 32;
+
+/** Return loss of a joint over the band below which its reactance is a fault, dB. Common practice. */
+export const REACTIVE_FAULT_RETURN_LOSS_DB = 25;
+
+/** Series resistance that a sound connector can mimic, relative to the line: 2 to 3 Ω in 50 Ω. */
+const MIMIC_STRENGTH = 0.06;
+
+/** Adds the two small reactances of a sound connector to every joint before the end. */
+export function addSoundJoints(model: LineModel): void {
+  const top = model.frequencyHz[model.frequencyHz.length - 1]!;
+  const sigma = soundStrength(top);
+  for (let boundary = 0; boundary < model.boundaryM.length; boundary++) {
+    // The first joint starts at the reference plane: both its faces lie on the line's side.
+    const faces = boundary === 0 ? [HALF_GAP_M, 3 * HALF_GAP_M] : [-HALF_GAP_M, HALF_GAP_M];
+    for (const offsetM of faces) {
+      addLump(model, {
+        type: 'reactive',
+        strength: 0,
+        strengthSigma: sigma,
+        section: offsetM < 0 ? boundary - 1 : boundary,
+        boundary,
+        offsetM,
+        offsetSigmaM: HALF_GAP_SIGMA_M,
+        offsetMeanM: offsetM,
+      });
+    }
+  }
+}
+
+function soundStrength(topHz: number): number {
+  return (2 * 10 ** (-SOUND_RETURN_LOSS_DB / 20)) / (2 * Math.PI * topHz);
+}
+
+/** Judges every joint before the end, leaving the best fit in the model. */
+export function judgeJoints(context: FitContext, model: LineModel, settings: SearchSettings): JointVerdict[] {
+  const verdicts: JointVerdict[] = [];
+  for (let boundary = 0; boundary < model.boundaryM.length; boundary++) {
+    verdicts.push(judgeJoint(context, model, settings, boundary));
+  }
+  return verdicts;
+}
+
+type Trial = {
+  readonly state: 'sound' | 'resistive' | 'reactive';
+  readonly model: LineModel;
+  readonly energy: number;
+};
+
+function judgeJoint(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  boundary: number,
+): JointVerdict {
+  evaluateCost(context, model, ALL_FREE, 1);
+  const mean = residualVariance(context);
+  const trace = traceResidual(context, model, settings);
+  const atM = boundaryAt(model, boundary);
+  const variance = localVariance(trace, atM, settings.resolutionM, mean);
+  const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
+  const trials: Trial[] = (['sound', 'resistive', 'reactive'] as const).map((state) => {
+    const trial = cloneModel(model);
+    dressJoint(trial, boundary, state, sigma);
+    const ids = new Set(trial.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id));
+    const freedom = { ...ALL_FREE, loss: false, calibration: boundary === 0, lumps: ids };
+    refine(context, trial, freedom, { variance, maxIterations: 10 });
+    const energy = evaluateCost(context, trial, ALL_FREE, variance);
+    return { state, model: trial, energy };
+  });
+  const [sound, resistive, reactive] = trials as [Trial, Trial, Trial];
+  const r = resistiveStrength(resistive.model, boundary);
+  const x = reactiveStrength(reactive.model, boundary);
+  const resistiveOdds = Math.abs(r) < MIMIC_STRENGTH ? 0 : (sound.energy - resistive.energy) / 2;
+  const reactiveBad = reactiveReturnLossDb(reactive.model, x) < REACTIVE_FAULT_RETURN_LOSS_DB;
+  const reactiveOdds = reactiveBad ? (sound.energy - reactive.energy) / 2 : 0;
+  const best = Math.max(resistiveOdds, reactiveOdds);
+  if (best < FAULT_ODDS) {
+    restoreModel(model, sound.model);
+    return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
+  }
+  const isResistive = resistiveOdds >= reactiveOdds;
+  restoreModel(model, isResistive ? resistive.model : reactive.model);
+  const state: JointState = isResistive
+    ? r > 0
+      ? 'series-resistance'
+      : 'shunt-leakage'
+    : x > 0
+      ? 'series-inductance'
+      : 'shunt-capacitance';
+  const lead = (isResistive ? reactive.energy - resistive.energy : resistive.energy - reactive.energy) / 2;
+  return { boundary, state, clear: lead >= KIND_ODDS, odds: best, lead };
+}
+
+/** Gives a joint the freedom of one hypothesis. */
+function dressJoint(
+  model: LineModel,
+  boundary: number,
+  state: 'sound' | 'resistive' | 'reactive',
+  sigma: number,
+): void {
+  const mine = model.lumps.filter((lump) => lump.boundary === boundary);
+  for (const lump of mine.filter((l) => l.type === 'resistive'))
+    model.lumps.splice(model.lumps.indexOf(lump), 1);
+  const faces = mine.filter((lump) => lump.type === 'reactive');
+  for (const face of faces) {
+    face.strengthSigma = sigma;
+    if (state !== 'reactive') face.strength = Math.max(-sigma, Math.min(sigma, face.strength));
+  }
+  if (state === 'reactive') faces[0]!.strengthSigma = null;
+  if (state === 'resistive') {
+    addLump(model, {
+      type: 'resistive',
+      strength: 0.01,
+      strengthSigma: null,
+      section: boundary === 0 ? 0 : boundary - 1,
+      boundary,
+      offsetM: 0,
+      offsetSigmaM: HALF_GAP_SIGMA_M,
+      offsetMeanM: 0,
+    });
+  }
+}
+
+/** Net resistive strength of a joint. */
+export function resistiveStrength(model: LineModel, boundary: number): number {
+  return model.lumps
+    .filter((lump) => lump.boundary === boundary && lump.type === 'resistive')
+    .reduce((sum, lump) => sum + lump.strength, 0);
+}
+
+/** Net reactive strength of a joint, s. */
+export function reactiveStrength(model: LineModel, boundary: number): number {
+  return model.lumps
+    .filter((lump) => lump.boundary === boundary && lump.type === 'reactive')
+    .reduce((sum, lump) => sum + lump.strength, 0);
+}
+
+/** RMS return loss over the band of a reactance, dB. */
+function reactiveReturnLossDb(model: LineModel, strength: number): number {
+  let power = 0;
+  for (const f of model.frequencyHz) {
+    const u = 2 * Math.PI * f * Math.abs(strength);
+    power += (u * u) / (4 + u * u);
+  }
+  return -10 * Math.log10(power / model.frequencyHz.length + 1e-30);
+}
+
+/** Energy of the residual per point that the last evaluation left, dB; −Infinity never occurs. */
+export function residualDb(context: FitContext): number {
+  let points = 0;
+  for (const w of context.weight) points += w;
+  return 10 * Math.log10(Math.max(residualEnergy(context) / points, 1e-15));
+}

@@ -1,0 +1,205 @@
+/**
+ * The solver: the smallest set of physical discontinuities along the described run whose complete cascade explains the
+ * sweep. In reading order: find the end, let the joints be ordinary, search what is left over, name every echo, decide
+ * what the distances are scaled to, and say how sure all of it is.
+ */
+import type { Line } from '../line/line.ts';
+import { describedLengthM } from '../line/line.ts';
+import { complexCopy, complexEnergy } from '../numerics/complex.ts';
+import { createWindow, parseWindow } from '../numerics/window.ts';
+import type { Notice } from '../outcome.ts';
+import type { Sweep } from '../sweep/sweep.ts';
+import { buildEchoes, type DistanceScale, type LumpVerdict } from './build-echoes.ts';
+import {
+  extractEchoes,
+  localVariance,
+  modelSize,
+  rankTypes,
+  residualVariance,
+  type SearchSettings,
+  traceResidual,
+} from './extract-echoes.ts';
+import { findEnd } from './find-end.ts';
+import { createFitContext, evaluateCost, type FitContext, refine } from './fit-cascade.ts';
+import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
+import { ALL_FREE, boundaryAt, type LineModel } from './line-model.ts';
+import type { Solution } from './solution.ts';
+
+export type SolveRequest = {
+  /** Frequencies all above 0. */
+  readonly sweep: Sweep;
+  readonly line: Line;
+  /** False when only a cable type was given. */
+  readonly lineDescribed: boolean;
+  /** 6 dB width of an echo with the search taper, m. */
+  readonly resolutionM: number;
+  readonly unambiguousM: number;
+};
+
+/** Taper of the search: side lobes under those of the weakest echoes looked for. */
+const SEARCH_WINDOW = 'kaiser:5';
+
+/** Prior of the loss factor for a described line, and where only a cable type was given. */
+const DESCRIBED_LOSS_SIGMA = 0.03;
+const TYPE_ONLY_LOSS_SIGMA = 0.5;
+
+/** Lead in nats that counts as certain. */
+const KIND_LEAD = 2;
+
+/** Solves for the line. */
+export function solveLine(
+  request: SolveRequest,
+  onProgress: (stage: string, fraction: number) => void = () => {},
+): Solution {
+  const { sweep, line } = request;
+  const n = sweep.frequencyHz.length;
+  const spec = parseWindow(SEARCH_WINDOW);
+  if (!spec.ok) throw new TypeError(`unknown window ${SEARCH_WINDOW}`);
+  const taper = Float64Array.from(createWindow(spec.value, n).values);
+  const context = createFitContext(sweep.frequencyHz, sweep.gamma, new Float64Array(n).fill(1));
+  const settings: SearchSettings = {
+    taper,
+    resolutionM: request.resolutionM,
+    onRound: (round, limit) => onProgress('searching echoes', 0.2 + (0.6 * round) / limit),
+  };
+  onProgress('finding the end', 0.05);
+  const end = findEnd(context, {
+    line,
+    portOhm: sweep.portOhm,
+    taper,
+    resolutionM: request.resolutionM,
+    unambiguousM: request.unambiguousM,
+    lossSigma: request.lineDescribed ? DESCRIBED_LOSS_SIGMA : TYPE_ONLY_LOSS_SIGMA,
+  });
+  const { model } = end;
+  addSoundJoints(model);
+  extractEchoes(context, model, settings);
+  onProgress('judging joints', 0.8);
+  const joints = judgeJoints(context, model, settings);
+  evaluateCost(context, model, ALL_FREE, 1);
+  refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
+  const lumps = nameLumps(context, model, settings);
+  onProgress('weighing what is known', 0.95);
+  evaluateCost(context, model, ALL_FREE, 1);
+  const variance = residualVariance(context);
+  const floor = traceResidual(context, model, settings);
+  const scaling = scaleTo(line, model, end.cut);
+  const echoes = buildEchoes(context, model, {
+    line: end.line,
+    joints,
+    lumps,
+    endKind: end.kind,
+    endConfidence: 1 / (1 + Math.exp(-Math.min(30, end.lead / 2))),
+    scale: scaling.scale,
+    varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
+  });
+  const endEcho = echoes.find((echo) => echo.joint?.index === model.boundaryM.length + 1)!;
+  const modelled = complexCopy(sweep.gamma);
+  for (let i = 0; i < n; i++) {
+    modelled.re[i] = sweep.gamma.re[i]! - context.residual.re[i]!;
+    modelled.im[i] = sweep.gamma.im[i]! - context.residual.im[i]!;
+  }
+  return {
+    echoes,
+    ghosts: [],
+    stretches: [],
+    lengthM: endEcho.distanceM,
+    lengthSigmaM: endEcho.distanceSigmaM,
+    distanceScale: scaling.scale.factor,
+    delayNs: groupDelayNs(model),
+    end: end.kind,
+    scaledTo: scaling.to,
+    lossFactor: 1 + model.conductor,
+    modelGamma: modelled,
+    residualDb: residualDb(context),
+    explained: 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300),
+    elements: modelSize(model).elements,
+    notices: scaling.notices,
+  };
+}
+
+/** Confidence of each free lump's type from the competition of types. */
+function nameLumps(context: FitContext, model: LineModel, settings: SearchSettings): LumpVerdict[] {
+  return model.lumps
+    .filter((lump) => lump.boundary === null)
+    .map((lump) => {
+      const ranked = rankTypes(context, model, settings, lump.id);
+      const costs = ranked.map((trial) => trial.cost);
+      const best = costs[0] ?? 0;
+      const total = costs.reduce((sum, cost) => sum + Math.exp(-Math.min(700, (cost - best) / 2)), 0);
+      const lead = costs.length > 1 ? (costs[1]! - best) / 2 : Number.POSITIVE_INFINITY;
+      return { id: lump.id, confidence: total > 0 ? 1 / total : 0.5, resolved: lead >= KIND_LEAD };
+    });
+}
+
+/** Round-trip group delay to the end at band centre, ns. */
+function groupDelayNs(model: LineModel): number {
+  const f = model.frequencyHz;
+  const last = f.length - 1;
+  const centre = (f[0]! + f[last]!) / 2;
+  let high = f.findIndex((value) => value >= centre);
+  high = Math.max(1, Math.min(last, high));
+  // A few points each side, so that rounding of single frequencies does not matter.
+  const reach = Math.max(1, Math.floor(f.length / 50));
+  const a = Math.max(0, high - reach);
+  const b = Math.min(last, high + reach);
+  let phase = 0;
+  model.media.forEach((medium, section) => {
+    const length = boundaryAt(model, section + 1) - boundaryAt(model, section);
+    const beta = (i: number): number =>
+      medium.gamma.im[i]! +
+      model.conductor * medium.gammaPerConductorLoss.im[i]! +
+      model.dielectric * medium.gammaPerDielectricLoss.im[i]!;
+    phase += 2 * length * (beta(b) - beta(a));
+  });
+  return (phase / (2 * Math.PI * (f[b]! - f[a]!))) * 1e9;
+}
+
+/** Measured and described length may differ by this much before the description is doubted. Common practice. */
+const LENGTH_TRUST = 0.01;
+
+/** Velocity tolerance that is left once the end fixes the scale, as a share. */
+const SHARE_LEFT_AFTER_SCALING = 0.1;
+
+function scaleTo(
+  line: Line,
+  model: LineModel,
+  cut: boolean,
+): { scale: DistanceScale; to: Solution['scaledTo']; notices: Notice[] } {
+  const described = describedLengthM(line);
+  const measured = boundaryAt(model, model.boundaryM.length);
+  const tolerance = velocityTolerance(line);
+  const byVelocity = { scale: { factor: 1, relativeSigma: tolerance }, to: 'velocity-factor' as const };
+  if (described === null || cut) return { ...byVelocity, notices: [] };
+  const off = measured / described - 1;
+  if (Math.abs(off) <= LENGTH_TRUST * 1.2) {
+    return {
+      scale: { factor: described / measured, relativeSigma: tolerance * SHARE_LEFT_AFTER_SCALING },
+      to: 'description',
+      notices: [],
+    };
+  }
+  const percent = (100 * off).toFixed(1);
+  return {
+    ...byVelocity,
+    notices: [
+      {
+        code: 'length-differs',
+        what: `The line measures ${measured.toFixed(2)} m by its velocity factor but is described as ${described.toFixed(2)} m (${percent} %). Either the description's lengths or the velocity factor is wrong; distances follow the velocity factor.`,
+      },
+    ],
+  };
+}
+
+/** Relative velocity tolerance of the run, weighted by length. */
+function velocityTolerance(line: Line): number {
+  let weighted = 0;
+  let total = 0;
+  for (const section of line.sections) {
+    if (section.type !== 'coax') continue;
+    const length = section.lengthM ?? 1;
+    weighted += (section.cable.velocityFactorTolerance / section.cable.velocityFactor) * length;
+    total += length;
+  }
+  return total > 0 ? weighted / total : 0.01;
+}
