@@ -25,6 +25,8 @@ export type Solution = {
   /** Round-trip group delay to the end at band centre, ns. */
   readonly delayNs: number;
   readonly end: 'open' | 'short' | 'load' | 'antenna' | 'unknown';
+  /** True when the line stops well before its description does: cut, or undone. */
+  readonly endsEarly: boolean;
   readonly scaledTo: 'description' | 'velocity-factor';
   /** Fitted loss over described loss. */
   readonly lossFactor: number;

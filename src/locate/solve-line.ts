@@ -108,6 +108,7 @@ export function solveLine(
     distanceScale: scaling.scale.factor,
     delayNs: groupDelayNs(model),
     end: end.kind,
+    endsEarly: end.cut,
     scaledTo: scaling.to,
     lossFactor: 1 + model.conductor,
     modelGamma: modelled,

@@ -97,6 +97,7 @@ export function makeAnalysis(fields: Partial<Analysis> = {}): Analysis {
       distanceScale: 1,
       delayNs: 151.6,
       end: 'open',
+      endsEarly: false,
       scaledTo: 'description',
       lossFactor: 1.01,
       modelGamma: gamma,
