@@ -4,6 +4,7 @@
  * Working on the whole cascade instead of a sum of echoes means that ghosts are explained, never found.
  */
 
+import type { LumpedType } from '../line/discontinuity.ts';
 import { quantileOfSorted } from '../numerics/statistics.ts';
 import { evaluateCost, type FitContext, linearise, refine, residualEnergy } from './fit-cascade.ts';
 import type { LineModel, Lump } from './line-model.ts';
@@ -18,7 +19,7 @@ import {
   sectionAt,
   translate,
 } from './line-model.ts';
-import { type Candidate, lumpedTypeOf, probeStage } from './probe.ts';
+import { type Candidate, lumpedTypeOf, type PureType, probeStage } from './probe.ts';
 import { type ResidualTrace, residualTrace } from './residual-trace.ts';
 
 export type SearchSettings = {
@@ -39,6 +40,15 @@ const THRESHOLD_AT_JOINT = 1.8;
 
 /** Quantile of the local trace level that counts as the floor: structural ripple is sparse and heavy-tailed. */
 const FLOOR_QUANTILE = 0.85;
+
+/**
+ * Flaws inside a cable that return less than this over the band are what cable as sold may show here and there, dB.
+ * Common practice: structural return loss of 35 to 45 dB over a whole run, single spots well below that.
+ */
+export const WEAKEST_FLAW_DB = 46;
+
+/** The trace may show a flaw this much lower than it is, by taper and noise, dB. */
+const TRACE_SLACK_DB = 3;
 
 /** How far from a boundary, in resolutions, an echo still belongs to the joint there. */
 const JOINT_CELL = 0.75;
@@ -163,6 +173,7 @@ function strongestAboveFloor(
     // What the end leaves over is not an echo before it; the search stops a cell short.
     if (distanceM > endM - resolutionM * (fullEnd ? 1 : 0.5)) continue;
     if (boundary !== null && (suspects.has(boundary) || boundary === n)) continue;
+    if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
     const ratio = level / floorAt(trace, k, resolutionM);
     const threshold = boundary === null ? THRESHOLD_OVER_FLOOR : THRESHOLD_AT_JOINT;
     if (ratio / threshold > Math.max(1, bestRatio)) {
@@ -204,8 +215,24 @@ function insertLump(
   const found = probeAround(context, model, settings, distanceM);
   const best = found[0];
   if (!best || best.gain < 12 * residualVariance(context)) return false;
+  if (lumpReturnLossDb(context.frequencyHz, best) > WEAKEST_FLAW_DB) return false;
   addCandidate(model, best);
   return true;
+}
+
+/** RMS return loss over the band of a lump by itself, dB. */
+export function lumpReturnLossDb(
+  frequencyHz: Float64Array,
+  lump: { readonly type: LumpedType | PureType; readonly strength: number },
+): number {
+  const reactive =
+    lump.type === 'resistive' ? false : lump.type === 'reactive' || lumpedTypeOf(lump.type) === 'reactive';
+  let power = 0;
+  for (const f of frequencyHz) {
+    const u = Math.abs(lump.strength) * (reactive ? 2 * Math.PI * f : 1);
+    power += (u * u) / (reactive ? 4 + u * u : (2 + u) ** 2);
+  }
+  return -10 * Math.log10(power / frequencyHz.length + 1e-30);
 }
 
 function addCandidate(model: LineModel, candidate: Candidate): Lump {
@@ -296,7 +323,7 @@ export function rankTypes(
       ...ALL_FREE,
       loss: false,
       impedances: false,
-      calibration: false,
+      residue: false,
       lumps: new Set([added.id]),
     };
     refine(context, trial, freedom, { variance, maxIterations: 6 });
@@ -318,7 +345,7 @@ function pruneLumps(context: FitContext, model: LineModel, settings: SearchSetti
     const kept = residualEnergy(context);
     const trial = cloneModel(model);
     removeLump(trial, lump.id);
-    refine(context, trial, { ...ALL_FREE, calibration: true }, { variance: mean, maxIterations: 5 });
+    refine(context, trial, ALL_FREE, { variance: mean, maxIterations: 5 });
     const gain = (residualEnergy(context) - kept) / variance;
     if (gain < PRUNE_COST) restoreModel(model, trial);
   }

@@ -8,6 +8,7 @@
 import type { EndModel } from '../line/end.ts';
 import type { EndKind, Line } from '../line/line.ts';
 import { findPeaks } from '../numerics/peaks.ts';
+import { fitAntenna } from './fit-antenna.ts';
 import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
 import {
   ALL_FREE,
@@ -117,7 +118,11 @@ function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
     lengthSigmaM: Math.max(1, lengthM),
   });
   const kinds: Exclude<EndKind, 'unknown'>[] =
-    line.end !== 'unknown' ? [line.end] : at.level > 0.5 ? ['open', 'short'] : ['open', 'short', 'load'];
+    line.end !== 'unknown'
+      ? [line.end]
+      : at.level > 0.5
+        ? ['open', 'short', 'antenna']
+        : ['open', 'short', 'load', 'antenna'];
   const best = bestEnd(context, model, search, kinds, [at.distanceM]);
   const found: Line = {
     ...line,
@@ -223,10 +228,11 @@ function bestEnd(
     for (const start of phaseStarts(context, base, search, kind, startsM)) {
       const model = cloneModel(base);
       moveEnd(model, start.distanceM);
-      model.end = startingEnd(kind, start.value, context);
+      model.end = startingEnd(kind, start.value);
       evaluateCost(context, model, freedom, 1);
       const variance = Math.max(residualEnergy(context) / (2 * context.weight.length), 1e-10);
-      refine(context, model, freedom, { variance, maxIterations: kind === 'antenna' ? 25 : 10 });
+      if (kind === 'antenna') fitAntenna(context, model, freedom);
+      else refine(context, model, freedom, { variance, maxIterations: 10 });
       trials.push({ model, kind, energy: residualEnergy(context), size: model.end.parameters.length });
     }
   }
@@ -285,7 +291,7 @@ function phaseStarts(
   return starts;
 }
 
-function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number, context: FitContext): EndModel {
+function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number): EndModel {
   switch (kind) {
     case 'open':
     case 'short':
@@ -294,11 +300,7 @@ function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number, context: 
       const gamma = Math.max(-0.9, Math.min(0.9, value));
       return { type: 'load', parameters: [(1 + gamma) / (1 - gamma), 0] };
     }
-    case 'antenna': {
-      const f = context.frequencyHz;
-      const middle = (f[0]! + f[f.length - 1]!) / 2;
-      const gamma = Math.max(-0.9, Math.min(0.9, value));
-      return { type: 'antenna', parameters: [gamma, -0.9 * gamma, 0, 5, middle] };
-    }
+    case 'antenna':
+      return { type: 'antenna', parameters: [Math.max(-0.9, Math.min(0.9, value))] };
   }
 }

@@ -3,6 +3,7 @@ import { type Cascade, createCascade } from '../line/cascade.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
 import { invertSymmetric, solveSymmetric } from '../numerics/linear-solve.ts';
+import { createResidueModel, type ResidueModel } from './instrument-residue.ts';
 import { type Freedom, type LineModel, type Parameter, type Translation, translate } from './line-model.ts';
 
 /** The sweep as the solver sees it, with buffers that every fit reuses. */
@@ -15,8 +16,7 @@ export type FitContext = {
   /** Measured − modelled of the last evaluation. */
   readonly residual: ComplexArray;
   readonly columns: ComplexArray[];
-  /** Phasors e^{−jωτ} of the correction residues. */
-  readonly calibrationPhasors: Map<number, ComplexArray>;
+  readonly residueModel: ResidueModel;
 };
 
 export type FitOptions = {
@@ -47,7 +47,7 @@ export function createFitContext(
     cascade: createCascade(frequencyHz),
     residual: complexZeros(frequencyHz.length),
     columns: [],
-    calibrationPhasors: new Map(),
+    residueModel: createResidueModel(frequencyHz),
   };
 }
 
@@ -133,17 +133,12 @@ export function linearise(
   const columns = context.columns.slice(0, p);
   const modelled = context.cascade.linearise(stages, model.end, slots, columns);
   writeResidual(context, model, modelled);
-  if (freedom.calibration) {
-    model.calibration.forEach((term, k) => {
-      const phasor = calibrationPhasor(context, term.delayS);
-      const re = columns[translation.calibrationColumn + 2 * k]!;
-      const im = columns[translation.calibrationColumn + 2 * k + 1]!;
-      for (let i = 0; i < context.frequencyHz.length; i++) {
-        re.re[i] = phasor.re[i]!;
-        re.im[i] = phasor.im[i]!;
-        im.re[i] = -phasor.im[i]!;
-        im.im[i] = phasor.re[i]!;
-      }
+  const cascadeColumns = freedom.residue ? translation.residueColumn : p;
+  for (let k = 0; k < cascadeColumns; k++) context.residueModel.carry(columns[k]!);
+  if (freedom.residue) {
+    model.residue.forEach((term, k) => {
+      const at = translation.residueColumn + 2 * k;
+      context.residueModel.derivatives(term, columns[at]!, columns[at + 1]!);
     });
   }
   for (const column of columns) applyWeight(column, context.weight);
@@ -191,32 +186,12 @@ export function fitCovariance(linear: Linearisation): Float64Array | null {
 
 function writeResidual(context: FitContext, model: LineModel, modelled: ComplexArray): void {
   const { residual, measured, weight } = context;
+  context.residueModel.apply(model.residue, modelled);
   for (let i = 0; i < residual.re.length; i++) {
     residual.re[i] = measured.re[i]! - modelled.re[i]!;
     residual.im[i] = measured.im[i]! - modelled.im[i]!;
   }
-  for (const term of model.calibration) {
-    if (term.re === 0 && term.im === 0) continue;
-    const phasor = calibrationPhasor(context, term.delayS);
-    for (let i = 0; i < residual.re.length; i++) {
-      residual.re[i] = residual.re[i]! - (term.re * phasor.re[i]! - term.im * phasor.im[i]!);
-      residual.im[i] = residual.im[i]! - (term.re * phasor.im[i]! + term.im * phasor.re[i]!);
-    }
-  }
   applyWeight(residual, weight);
-}
-
-function calibrationPhasor(context: FitContext, delayS: number): ComplexArray {
-  const known = context.calibrationPhasors.get(delayS);
-  if (known) return known;
-  const phasor = complexZeros(context.frequencyHz.length);
-  for (let i = 0; i < context.frequencyHz.length; i++) {
-    const angle = 2 * Math.PI * context.frequencyHz[i]! * delayS;
-    phasor.re[i] = Math.cos(angle);
-    phasor.im[i] = -Math.sin(angle);
-  }
-  context.calibrationPhasors.set(delayS, phasor);
-  return phasor;
 }
 
 function applyWeight(values: ComplexArray, weight: Float64Array): void {

@@ -6,7 +6,13 @@
  * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
  */
 
-import { localVariance, residualVariance, type SearchSettings, traceResidual } from './extract-echoes.ts';
+import {
+  localVariance,
+  lumpReturnLossDb,
+  residualVariance,
+  type SearchSettings,
+  traceResidual,
+} from './extract-echoes.ts';
 import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
 import { ALL_FREE, addLump, boundaryAt, cloneModel, type LineModel, restoreModel } from './line-model.ts';
 
@@ -104,7 +110,7 @@ function judgeJoint(
     const trial = cloneModel(model);
     dressJoint(trial, boundary, state, sigma);
     const ids = new Set(trial.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id));
-    const freedom = { ...ALL_FREE, loss: false, calibration: boundary === 0, lumps: ids };
+    const freedom = { ...ALL_FREE, loss: false, residue: boundary === 0, lumps: ids };
     refine(context, trial, freedom, { variance, maxIterations: 10 });
     const energy = evaluateCost(context, trial, ALL_FREE, variance);
     return { state, model: trial, energy };
@@ -113,7 +119,8 @@ function judgeJoint(
   const r = resistiveStrength(resistive.model, boundary);
   const x = reactiveStrength(reactive.model, boundary);
   const resistiveOdds = Math.abs(r) < MIMIC_STRENGTH ? 0 : (sound.energy - resistive.energy) / 2;
-  const reactiveBad = reactiveReturnLossDb(reactive.model, x) < REACTIVE_FAULT_RETURN_LOSS_DB;
+  const reactiveBad =
+    lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength: x }) < REACTIVE_FAULT_RETURN_LOSS_DB;
   const reactiveOdds = reactiveBad ? (sound.energy - reactive.energy) / 2 : 0;
   const best = Math.max(resistiveOdds, reactiveOdds);
   if (best < FAULT_ODDS) {
@@ -175,16 +182,6 @@ export function reactiveStrength(model: LineModel, boundary: number): number {
   return model.lumps
     .filter((lump) => lump.boundary === boundary && lump.type === 'reactive')
     .reduce((sum, lump) => sum + lump.strength, 0);
-}
-
-/** RMS return loss over the band of a reactance, dB. */
-function reactiveReturnLossDb(model: LineModel, strength: number): number {
-  let power = 0;
-  for (const f of model.frequencyHz) {
-    const u = 2 * Math.PI * f * Math.abs(strength);
-    power += (u * u) / (4 + u * u);
-  }
-  return -10 * Math.log10(power / model.frequencyHz.length + 1e-30);
 }
 
 /** Energy of the residual per point that the last evaluation left, dB; −Infinity never occurs. */

@@ -8,6 +8,7 @@ import type { EndModel } from '../line/end.ts';
 import type { Line } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { invertSymmetric } from '../numerics/linear-solve.ts';
+import { RESIDUE_SIGMA, type ResidueTerm, residueTerms } from './instrument-residue.ts';
 
 /** A lumped discontinuity, inside a section or tied to a joint. */
 export type Lump = {
@@ -27,9 +28,6 @@ export type Lump = {
   offsetMeanM: number;
 };
 
-/** Residual of the instrument's correction: one additive term with a short delay. */
-export type CalibrationTerm = { readonly delayS: number; re: number; im: number };
-
 export type LineModel = {
   readonly frequencyHz: Float64Array;
   readonly media: readonly Medium[];
@@ -43,7 +41,7 @@ export type LineModel = {
   dielectric: number;
   readonly lumps: Lump[];
   end: EndModel;
-  readonly calibration: CalibrationTerm[];
+  readonly residue: ResidueTerm[];
   /** How far the description is trusted. */
   readonly priors: Priors;
   nextId: number;
@@ -57,7 +55,6 @@ export type Priors = {
   readonly boundaryPrecision: Float64Array;
   readonly impedanceSigma: readonly number[];
   readonly lossSigma: number;
-  readonly calibrationSigma: number;
 };
 
 /** One free number of the model. */
@@ -83,8 +80,8 @@ export type Translation = {
   readonly stages: readonly Stage[];
   readonly parameters: readonly Parameter[];
   readonly slots: readonly Slot[];
-  /** Column of the first calibration parameter (re, im pairs follow); they are linear and added outside the cascade. */
-  readonly calibrationColumn: number;
+  /** Column of the first residue parameter (re, im pairs follow); the instrument stands outside the cascade. */
+  readonly residueColumn: number;
   /** Stage index of each lump by id. */
   readonly stageOfLump: ReadonlyMap<number, number>;
   /** Stage index of the step at boundary i (0 = port); absent at the end. */
@@ -140,33 +137,16 @@ export function createLineModel(
     dielectric: 0,
     lumps: [],
     end: { type: 'load', parameters: [1, 0] },
-    calibration: calibrationTerms(frequencyHz),
+    residue: residueTerms(frequencyHz),
     priors: {
       boundaryMeanM: boundaryM.slice(),
       boundaryCovariance: covariance,
       boundaryPrecision: invertSymmetric(covariance, lengths.length) ?? new Float64Array(covariance.length),
       impedanceSigma,
       lossSigma: trust.lossSigma,
-      calibrationSigma: CALIBRATION_SIGMA,
     },
     nextId: 1,
   };
-}
-
-/** Size of one residual-correction term, −44 dB: a field correction leaves −40 to −46 dB. Common practice. */
-const CALIBRATION_SIGMA = 0.006;
-
-/** Delay within which residual correction terms lie, s. Common practice: test lead and adaptor. */
-const CALIBRATION_SPAN_S = 1.2e-9;
-
-function calibrationTerms(frequencyHz: Float64Array): CalibrationTerm[] {
-  const spanHz = frequencyHz[frequencyHz.length - 1]! - frequencyHz[0]!;
-  const count = Math.max(1, Math.min(5, 1 + Math.floor(CALIBRATION_SPAN_S * spanHz)));
-  return Array.from({ length: count }, (_, k) => ({
-    delayS: count === 1 ? CALIBRATION_SPAN_S / 2 : (k * CALIBRATION_SPAN_S) / (count - 1),
-    re: 0,
-    im: 0,
-  }));
 }
 
 /** Covariance of the boundaries from tolerances of velocity and length, row-major n × n, m². */
@@ -227,7 +207,7 @@ export function cloneModel(model: LineModel): LineModel {
     impedanceRatio: model.impedanceRatio.slice(),
     lumps: model.lumps.map((lump) => ({ ...lump })),
     end: { type: model.end.type, parameters: model.end.parameters.slice() },
-    calibration: model.calibration.map((term) => ({ ...term })),
+    residue: model.residue.map((term) => ({ ...term })),
   };
 }
 
@@ -239,7 +219,7 @@ export function restoreModel(model: LineModel, from: LineModel): void {
   model.dielectric = from.dielectric;
   model.lumps.splice(0, model.lumps.length, ...from.lumps.map((lump) => ({ ...lump })));
   model.end = { type: from.end.type, parameters: from.end.parameters.slice() };
-  model.calibration.splice(0, model.calibration.length, ...from.calibration.map((t) => ({ ...t })));
+  model.residue.splice(0, model.residue.length, ...from.residue.map((t) => ({ ...t })));
   model.nextId = Math.max(model.nextId, from.nextId);
 }
 
@@ -261,7 +241,7 @@ export type Freedom = {
   readonly impedances: boolean;
   readonly boundaries: boolean;
   readonly end: boolean;
-  readonly calibration: boolean;
+  readonly residue: boolean;
   /** Lumps that may move; null for all. */
   readonly lumps: ReadonlySet<number> | null;
 };
@@ -271,7 +251,7 @@ export const ALL_FREE: Freedom = {
   impedances: true,
   boundaries: true,
   end: true,
-  calibration: true,
+  residue: true,
   lumps: null,
 };
 
@@ -444,9 +424,9 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
     stretchTo(boundaryPlace(section + 1), section);
   }
   if (freedom.end) addEndParameters(model, add, slots, stages.length);
-  const calibrationColumn = parameters.length;
-  if (freedom.calibration) {
-    for (const term of model.calibration) {
+  const residueColumn = parameters.length;
+  if (freedom.residue) {
+    for (const term of model.residue) {
       for (const part of ['re', 'im'] as const) {
         add({
           ...free,
@@ -455,7 +435,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
           set: (v) => {
             term[part] = v;
           },
-          sigma: model.priors.calibrationSigma,
+          sigma: RESIDUE_SIGMA,
           stepLimit: Number.POSITIVE_INFINITY,
           minimum: -1,
           maximum: 1,
@@ -463,7 +443,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
       }
     }
   }
-  return { stages, parameters, slots, calibrationColumn, stageOfLump, stageOfBoundary };
+  return { stages, parameters, slots, residueColumn, stageOfLump, stageOfBoundary };
 }
 
 /** Fringe of an open or inductance of a short, as a delay, s. From memory: a fraction of a picofarad at 50 Ω. */
