@@ -28,6 +28,11 @@ export function wholeSpan(analysis: Analysis): Domain {
     ...found,
     analysis.reach.resolutionM,
   );
+  return lineSpan(lengthM);
+}
+
+/** From a little before the port to a little behind the end of a line. */
+export function lineSpan(lengthM: number): Domain {
   return [-ROOM_BEFORE * lengthM, (1 + ROOM_BEHIND) * lengthM];
 }
 

@@ -12,7 +12,7 @@ export type KeyRow = {
   /** What they do, for the help page. */
   readonly does: string;
   /** One word for the footer, most wanted first by `rank`; without one the footer leaves the row out. */
-  readonly hint?: { readonly word: string; readonly rank: number };
+  readonly hint?: { readonly keys: string; readonly word: string; readonly rank: number };
   /** Works only while there is an answer on the screen. */
   readonly needsAnswer?: true;
   readonly strokes: Readonly<Record<Stroke, KeyEvent>>;
@@ -43,7 +43,7 @@ const WORK: readonly KeyRow[] = [
     group: 'what was found',
     shown: '↑ ↓',
     does: 'choose what was found; the cursor goes there',
-    hint: { word: 'choose', rank: 1 },
+    hint: { keys: '↑↓', word: 'choose', rank: 1 },
     needsAnswer: true,
     strokes: { up: { type: 'choose', by: -1 }, down: { type: 'choose', by: 1 } },
   },
@@ -58,14 +58,14 @@ const WORK: readonly KeyRow[] = [
     group: 'what was found',
     shown: 'Enter',
     does: 'all that is known of the chosen one',
-    hint: { word: 'all of it', rank: 4 },
+    hint: { keys: 'Enter', word: 'all of it', rank: 4 },
     needsAnswer: true,
     strokes: { enter: { type: 'openPage', page: 'finding' } },
   },
   {
     group: 'what was found',
     shown: 'n',
-    does: 'notices: what to know before trusting the figures',
+    does: 'what the answer rests on, and notices',
     needsAnswer: true,
     strokes: { n: { type: 'openPage', page: 'notices' } },
   },
@@ -73,7 +73,7 @@ const WORK: readonly KeyRow[] = [
     group: 'looking',
     shown: '← →',
     does: 'move the cursor; with Shift ten cells at once',
-    hint: { word: 'cursor', rank: 2 },
+    hint: { keys: '←→', word: 'cursor', rank: 2 },
     needsAnswer: true,
     strokes: {
       left: { type: 'moveCursor', cells: -1 },
@@ -93,7 +93,7 @@ const WORK: readonly KeyRow[] = [
     group: 'looking',
     shown: '+ −',
     does: 'closer, farther, about the cursor',
-    hint: { word: 'zoom', rank: 3 },
+    hint: { keys: '+−', word: 'zoom', rank: 3 },
     needsAnswer: true,
     strokes: {
       '+': { type: 'zoom', factor: 1.6 },
@@ -118,7 +118,7 @@ const WORK: readonly KeyRow[] = [
     group: 'looking',
     shown: '0',
     does: 'the whole line',
-    hint: { word: 'whole line', rank: 8 },
+    hint: { keys: '0', word: 'whole line', rank: 8 },
     needsAnswer: true,
     strokes: { '0': { type: 'wholeLine' } },
   },
@@ -140,7 +140,7 @@ const WORK: readonly KeyRow[] = [
     group: 'changing',
     shown: 'w',
     does: 'window: sharper echoes or calmer side lobes',
-    hint: { word: 'window', rank: 5 },
+    hint: { keys: 'w', word: 'window', rank: 5 },
     needsAnswer: true,
     strokes: { w: { type: 'openPicker', what: 'window' } },
   },
@@ -148,7 +148,7 @@ const WORK: readonly KeyRow[] = [
     group: 'changing',
     shown: 'c',
     does: 'another cable for the longest section; solves again',
-    hint: { word: 'cable', rank: 6 },
+    hint: { keys: 'c', word: 'cable', rank: 6 },
     strokes: { c: { type: 'openPicker', what: 'cable' } },
   },
   {
@@ -162,7 +162,7 @@ const WORK: readonly KeyRow[] = [
     group: 'changing',
     shown: 'u',
     does: 'metres or feet',
-    hint: { word: 'm/ft', rank: 7 },
+    hint: { keys: 'u', word: 'm/ft', rank: 7 },
     strokes: { u: { type: 'toggleUnits' } },
   },
   {
@@ -181,14 +181,14 @@ const WORK: readonly KeyRow[] = [
     group: 'program',
     shown: '?',
     does: 'this page',
-    hint: { word: 'keys', rank: 0 },
+    hint: { keys: '?', word: 'keys', rank: 0 },
     strokes: { '?': { type: 'openPage', page: 'help' } },
   },
   {
     group: 'program',
     shown: 'q Ctrl-C',
     does: 'quit',
-    hint: { word: 'quit', rank: 0 },
+    hint: { keys: 'q', word: 'quit', rank: 0 },
     strokes: { q: { type: 'quit' }, 'ctrl+c': { type: 'quit' } },
   },
   ...ALWAYS,
@@ -199,7 +199,7 @@ const PAGE: readonly KeyRow[] = [
     group: 'looking',
     shown: '↑ ↓',
     does: 'read on',
-    hint: { word: 'read on', rank: 1 },
+    hint: { keys: '↑↓', word: 'read on', rank: 1 },
     strokes: {
       up: { type: 'scroll', lines: -1 },
       down: { type: 'scroll', lines: 1 },
@@ -212,7 +212,7 @@ const PAGE: readonly KeyRow[] = [
     group: 'program',
     shown: 'Esc',
     does: 'back to the line',
-    hint: { word: 'back', rank: 0 },
+    hint: { keys: 'Esc', word: 'back', rank: 0 },
     strokes: {
       esc: { type: 'closePanel' },
       enter: { type: 'closePanel' },
@@ -224,7 +224,7 @@ const PAGE: readonly KeyRow[] = [
     group: 'program',
     shown: 'q',
     does: 'quit',
-    hint: { word: 'quit', rank: 2 },
+    hint: { keys: 'q', word: 'quit', rank: 2 },
     strokes: { q: { type: 'quit' }, 'ctrl+c': { type: 'quit' } },
   },
   ...ALWAYS,
@@ -235,7 +235,7 @@ const PICK: readonly KeyRow[] = [
     group: 'looking',
     shown: '↑ ↓',
     does: 'move',
-    hint: { word: 'move', rank: 0 },
+    hint: { keys: '↑↓', word: 'move', rank: 0 },
     strokes: {
       up: { type: 'pickMove', by: -1 },
       down: { type: 'pickMove', by: 1 },
@@ -249,21 +249,21 @@ const PICK: readonly KeyRow[] = [
     group: 'changing',
     shown: 'Enter',
     does: 'take it',
-    hint: { word: 'take', rank: 1 },
+    hint: { keys: 'Enter', word: 'take', rank: 1 },
     strokes: { enter: { type: 'pickTake' } },
   },
   {
     group: 'changing',
     shown: 'letters',
     does: 'narrow the list',
-    hint: { word: 'narrow', rank: 3 },
+    hint: { keys: 'a–z', word: 'narrow', rank: 3 },
     strokes: { backspace: { type: 'pickErase' } },
   },
   {
     group: 'program',
     shown: 'Esc',
     does: 'leave it as it was',
-    hint: { word: 'leave it', rank: 2 },
+    hint: { keys: 'Esc', word: 'leave it', rank: 2 },
     strokes: { esc: { type: 'closePanel' }, 'ctrl+c': { type: 'quit' } },
   },
   ...ALWAYS,

@@ -8,6 +8,7 @@ import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 import { foundIn } from './found.ts';
 import { layoutOf } from './layout.ts';
+import { mostScroll } from './pages/page.ts';
 import { picksOf, presentPick } from './picks.ts';
 import { analysisOf, type Choice, type Panel, type State } from './state.ts';
 import { VIEW_IDS } from './view-ids.ts';
@@ -226,15 +227,15 @@ function insideOf(span: Domain, outer: Domain): Domain {
 
 function openPage(state: State, page: Extract<Panel, { type: 'page' }>['page']): State {
   if (page === 'finding' && chosenOf(state) === null) return state;
-  if (page === 'notices' && (state.solve.phase !== 'ready' || state.solve.notices.length === 0))
-    return { ...state, remark: 'no notices' };
   return { ...state, panel: { type: 'page', page, scroll: 0 } };
 }
 
-/** Scrolls a page; its own view knows where it ends, so only the start is held here. */
+/** Scrolls a page, no farther than to its last line. */
 function scroll(state: State, lines: number): State {
   if (state.panel?.type !== 'page') return state;
-  return { ...state, panel: { ...state.panel, scroll: Math.max(0, state.panel.scroll + lines) } };
+  const { page } = state.panel;
+  const wanted = Math.min(mostScroll(state, page), state.panel.scroll + lines);
+  return { ...state, panel: { ...state.panel, scroll: Math.max(0, wanted) } };
 }
 
 function closePanel(state: State): State {

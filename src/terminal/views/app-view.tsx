@@ -1,13 +1,12 @@
-/** The one component that knows the program: takes its state, sends it keys, and chooses the view. */
+/** The one component that knows the program: takes its state and sends it keys. */
 import { type Key, useInput } from 'ink';
 import { type ReactElement, useCallback } from 'react';
 import { useProgram } from '../hooks/use-program.ts';
 import { eventFor } from '../keys.ts';
-import { Rows } from '../parts/rows.tsx';
 import type { Program } from '../program.ts';
 import { strokesOf } from '../strokes.ts';
 import type { Theme } from '../theme.ts';
-import { screenRows } from './screen-rows.ts';
+import { ScreenView } from './screen-view.tsx';
 
 /** The whole screen. */
 export function AppView({
@@ -28,5 +27,5 @@ export function AppView({
     [program],
   );
   useInput(onInput);
-  return <Rows rows={screenRows(state)} theme={theme} />;
+  return <ScreenView state={state} theme={theme} />;
 }

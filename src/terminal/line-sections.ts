@@ -1,0 +1,42 @@
+/** The described line as the strip draws it. */
+import type { Analysis } from '../app/analysis.ts';
+import type { Line } from '../line/line.ts';
+import type { StripSection } from '../plot/line-strip.ts';
+import { lengthText, type Units } from '../plot/quantity-text.ts';
+
+/**
+ * Sections from the port, with ways to write them.
+ *
+ * @param lengthM Where the line ends if the description leaves its last length open; null when that is unknown too:
+ *   the last section is then left out.
+ */
+export function stripSections(line: Line, lengthM: number | null, units: Units): readonly StripSection[] {
+  const sections: StripSection[] = [];
+  let fromM = 0;
+  for (const section of line.sections) {
+    const ownM = section.lengthM ?? (lengthM === null ? null : lengthM - fromM);
+    if (ownM === null || !(ownM > 0)) break;
+    const length = lengthText(ownM, units, 1);
+    const kind = section.type === 'coax' ? section.cable.name : section.device;
+    sections.push({
+      fromM,
+      toM: fromM + ownM,
+      texts: [
+        ...(kind === section.label ? [] : [`${section.label} ${length} · ${kind}`]),
+        `${section.label} ${length}`,
+        section.label,
+        length,
+        length.replace(/ .*/u, ''),
+      ],
+      look: section.type === 'device' ? 'device' : 'cable',
+    });
+    fromM += ownM;
+  }
+  return sections;
+}
+
+/** What terminates the line: what was found when the description does not say. */
+export function endText({ line, solution }: Analysis): string {
+  const end = line.end === 'unknown' ? solution.end : line.end;
+  return end === 'unknown' ? 'end' : end;
+}

@@ -1,0 +1,122 @@
+/** The list of what was found: a heading and rows, the chosen one among them. */
+import type { Analysis } from '../../app/analysis.ts';
+import { fitRuns, fitText } from '../../plot/cells.ts';
+import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
+import { fixedText, lengthWithSigmaText, percentText, type Units } from '../../plot/quantity-text.ts';
+import { type Run, run } from '../../plot/run.ts';
+import { type Found, foundIn } from '../found.ts';
+import type { State } from '../state.ts';
+
+/** Widths of the columns; the place takes what is left. */
+const POINTER = 3;
+const DISTANCE = 17;
+const LEVEL = 9;
+const WORDS = 26;
+const SURE = 5;
+const GAP = '  ';
+
+/** From this width on, the level as seen at the port stands beside the corrected one. */
+const BOTH_LEVELS_FROM = 92;
+
+/** Names of the columns. */
+export function foundHeading(width: number): readonly Run[] {
+  const titles = columnsOf(width, {
+    distance: 'distance',
+    seen: 'seen',
+    corrected: width >= BOTH_LEVELS_FROM ? 'corrected' : 'level',
+    words: 'what',
+    sure: 'sure',
+    place: 'where',
+  });
+  return fitRuns([run(' '.repeat(POINTER) + titles, 'dim')], width);
+}
+
+/** `rows` rows of the list about the chosen one. */
+export function foundRows(
+  state: State,
+  analysis: Analysis,
+  width: number,
+  rows: number,
+): readonly (readonly Run[])[] {
+  const found = foundIn(analysis);
+  if (found.length === 0)
+    return blankTo(
+      rows,
+      [fitRuns([run(`${' '.repeat(POINTER)}nothing stands out along this line`)], width)],
+      width,
+    );
+  const first = firstShown(found.length, state.chosen, rows);
+  const shown = found
+    .slice(first, first + rows)
+    .map((row, i) => foundRow(row, first + i === state.chosen, state.units, width));
+  return blankTo(rows, markMore(shown, first, found.length, width), width);
+}
+
+/** First row shown so that the chosen one is in view, with a row beyond it where there is one. */
+export function firstShown(count: number, chosen: number, rows: number): number {
+  return Math.max(0, Math.min(count - rows, chosen - Math.floor(rows / 2)));
+}
+
+function foundRow(row: Found, chosen: boolean, units: Units, width: number): readonly Run[] {
+  const text = columnsOf(width, {
+    distance: lengthWithSigmaText(row.distanceM, row.distanceSigmaM, units),
+    seen: levelOf(row.returnLossDb),
+    corrected: levelOf(row.correctedReturnLossDb),
+    words: row.short,
+    sure: percentText(row.confidence),
+    place: row.where.replace(/^at /u, ''),
+  });
+  const glyph = SEVERITY_GLYPHS[row.severity];
+  if (chosen) return fitRuns([run(fitText(`›${glyph} ${text}`, width), 'chosen')], width);
+  return fitRuns([run(' '), run(glyph, row.severity), run(` ${text}`)], width);
+}
+
+function columnsOf(
+  width: number,
+  cells: {
+    readonly distance: string;
+    readonly seen: string;
+    readonly corrected: string;
+    readonly words: string;
+    readonly sure: string;
+    readonly place: string;
+  },
+): string {
+  return (
+    fitText(cells.distance, DISTANCE) +
+    (width >= BOTH_LEVELS_FROM ? fitText(cells.seen, LEVEL, 'right') : '') +
+    fitText(cells.corrected, width >= BOTH_LEVELS_FROM ? LEVEL + 2 : LEVEL, 'right') +
+    GAP +
+    fitText(cells.words, WORDS) +
+    fitText(cells.sure, SURE, 'right') +
+    GAP +
+    cells.place
+  );
+}
+
+function levelOf(returnLossDb: number | null): string {
+  return returnLossDb === null ? '' : `${fixedText(-returnLossDb, 1)} dB`;
+}
+
+/** Arrows in the last cell of the first and the last row where the list goes on. */
+function markMore(
+  rows: readonly (readonly Run[])[],
+  first: number,
+  count: number,
+  width: number,
+): readonly (readonly Run[])[] {
+  return rows.map((row, i) => {
+    const above = i === 0 && first > 0;
+    const below = i === rows.length - 1 && first + rows.length < count;
+    if (!above && !below) return row;
+    return [...fitRuns(row, width - 2), run(' '), run(above ? '↑' : '↓', 'key')];
+  });
+}
+
+function blankTo(
+  count: number,
+  rows: readonly (readonly Run[])[],
+  width: number,
+): readonly (readonly Run[])[] {
+  return Array.from({ length: count }, (_, i) => rows[i] ?? fitRuns([], width));
+}
