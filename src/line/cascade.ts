@@ -62,44 +62,63 @@ export type Cascade = {
  */
 export function createCascade(frequencyHz: Float64Array): Cascade {
   const n = frequencyHz.length;
-  const states: ComplexArray[] = [];
+  // Buffers are counted from the end (0 = the end itself): what is put in nearer to the port leaves them in place.
+  const states: ComplexArray[] = [complexZeros(n)];
+  const known: { stage: Stage; twoPort: TwoPort; phasor: ComplexArray }[] = [];
   const sensitivities: ComplexArray[] = [];
-  const twoPorts: TwoPort[] = [];
-  const phasors: ComplexArray[] = [];
   const endDerivatives: ComplexArray[] = [];
+  const result = complexZeros(n);
+  let knownEnd: EndModel | null = null;
+  let count = 0;
 
-  function prepare(count: number): void {
-    while (states.length <= count) {
-      states.push(complexZeros(n));
-      sensitivities.push(complexZeros(n));
-      twoPorts.push(createTwoPort(n));
-      phasors.push(complexZeros(n));
-    }
+  function prepare(stages: number): void {
+    count = stages;
+    while (states.length <= stages) states.push(complexZeros(n));
+    while (sensitivities.length <= stages) sensitivities.push(complexZeros(n));
   }
 
-  function forward(stages: readonly Stage[], end: EndModel, derivatives: boolean): ComplexArray {
+  /** Fills states back from the end, working out anew only what differs from the last call. */
+  function forward(stages: readonly Stage[], end: EndModel, derivatives: boolean): void {
     prepare(stages.length);
     const endColumns = derivatives ? end.parameters.length : 0;
     while (endDerivatives.length < endColumns) endDerivatives.push(complexZeros(n));
-    writeEnd(end, frequencyHz, states[stages.length]!, derivatives ? endDerivatives : null);
-    for (let k = stages.length - 1; k >= 0; k--) {
-      const stage = stages[k]!;
-      if (stage.type === 'line') {
-        writePhasor(stage, phasors[k]!);
-        multiply(phasors[k]!, states[k + 1]!, states[k]!);
-      } else {
-        if (stage.type === 'step') writeStep(twoPorts[k]!, stage.before, stage.after, stage.ratio);
-        else writeLumped(twoPorts[k]!, stage, stage.medium, frequencyHz);
-        terminate(twoPorts[k]!, states[k + 1]!, states[k]!);
-      }
+    let changed = knownEnd === null || !sameEnd(knownEnd, end);
+    if (changed || derivatives) {
+      writeEnd(end, frequencyHz, states[0]!, derivatives ? endDerivatives : null);
+      knownEnd = { type: end.type, parameters: end.parameters.slice() };
     }
-    return states[0]!;
+    for (let back = 1; back <= stages.length; back++) {
+      const stage = stages[stages.length - back]!;
+      let own = known[back - 1];
+      const renewed = own === undefined || !sameStage(own.stage, stage);
+      if (own === undefined) {
+        own = { stage, twoPort: createTwoPort(n), phasor: complexZeros(n) };
+        known.push(own);
+      }
+      own.stage = stage;
+      if (stage.type === 'line') {
+        if (renewed) writePhasor(stage, own.phasor);
+        if (renewed || changed) multiply(own.phasor, states[back - 1]!, states[back]!);
+      } else {
+        if (renewed) {
+          if (stage.type === 'step') writeStep(own.twoPort, stage.before, stage.after, stage.ratio);
+          else writeLumped(own.twoPort, stage, stage.medium, frequencyHz);
+        }
+        if (renewed || changed) terminate(own.twoPort, states[back - 1]!, states[back]!);
+      }
+      changed ||= renewed;
+    }
+    result.re.set(states[stages.length]!.re);
+    result.im.set(states[stages.length]!.im);
   }
 
   return {
-    gamma: (stages, end) => forward(stages, end, false),
+    gamma(stages, end) {
+      forward(stages, end, false);
+      return result;
+    },
     linearise(stages, end, slots, columns) {
-      const result = forward(stages, end, true);
+      forward(stages, end, true);
       for (const column of columns) {
         column.re.fill(0);
         column.im.fill(0);
@@ -110,21 +129,17 @@ export function createCascade(frequencyHz: Float64Array): Cascade {
       sensitivities[0]!.im.fill(0);
       for (let k = 0; k < stages.length; k++) {
         const stage = stages[k]!;
+        const { twoPort, phasor } = known[stages.length - k - 1]!;
+        const before = states[stages.length - k]!;
+        const behind = states[stages.length - k - 1]!;
         const wanted = byStage[k]!;
         if (stage.type === 'line') {
-          for (const slot of wanted) addLineDerivative(stage, slot, sensitivities[k]!, states[k]!, columns);
-          multiply(sensitivities[k]!, phasors[k]!, sensitivities[k + 1]!);
+          for (const slot of wanted) addLineDerivative(stage, slot, sensitivities[k]!, before, columns);
+          multiply(sensitivities[k]!, phasor, sensitivities[k + 1]!);
         } else {
-          for (const slot of wanted) {
-            addTwoPortDerivative(
-              twoPorts[k]!,
-              slot,
-              sensitivities[k]!,
-              states[k + 1]!,
-              columns[slot.column]!,
-            );
-          }
-          passThrough(twoPorts[k]!, states[k + 1]!, sensitivities[k]!, sensitivities[k + 1]!);
+          for (const slot of wanted)
+            addTwoPortDerivative(twoPort, slot, sensitivities[k]!, behind, columns[slot.column]!);
+          passThrough(twoPort, behind, sensitivities[k]!, sensitivities[k + 1]!);
         }
       }
       for (const slot of byStage[stages.length]!) {
@@ -138,9 +153,31 @@ export function createCascade(frequencyHz: Float64Array): Cascade {
       }
       return result;
     },
-    behind: (index) => states[index]!,
+    behind: (index) => states[count - index]!,
     sensitivity: (index) => sensitivities[index]!,
   };
+}
+
+function sameEnd(a: EndModel, b: EndModel): boolean {
+  return (
+    a.type === b.type &&
+    a.parameters.length === b.parameters.length &&
+    a.parameters.every((value, i) => value === b.parameters[i])
+  );
+}
+
+function sameStage(a: Stage, b: Stage): boolean {
+  if (a.type === 'line')
+    return (
+      b.type === 'line' &&
+      a.medium === b.medium &&
+      a.lengthM === b.lengthM &&
+      a.conductor === b.conductor &&
+      a.dielectric === b.dielectric
+    );
+  if (a.type === 'step')
+    return b.type === 'step' && a.before === b.before && a.after === b.after && a.ratio === b.ratio;
+  return b.type === a.type && a.medium === b.medium && a.strength === b.strength;
 }
 
 /** e^{−2γℓ} of a stretch with its loss changes. */

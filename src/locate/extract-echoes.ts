@@ -14,6 +14,7 @@ import {
   boundaryAt,
   cloneModel,
   lumpDistanceM,
+  onlyLumps,
   removeLump,
   restoreModel,
   sectionAt,
@@ -319,13 +320,7 @@ export function rankTypes(
     if (!candidate) continue;
     const trial = cloneModel(without);
     const added = addCandidate(trial, candidate);
-    const freedom = {
-      ...ALL_FREE,
-      loss: false,
-      impedances: false,
-      residue: false,
-      lumps: new Set([added.id]),
-    };
+    const freedom = onlyLumps([added.id]);
     refine(context, trial, freedom, { variance, maxIterations: 6 });
     trials.push({ model: trial, candidate, cost: evaluateCost(context, trial, ALL_FREE, variance) });
   }

@@ -222,7 +222,7 @@ function bestEnd(
   startsM: readonly number[],
 ): Pick<EndFound, 'model' | 'kind' | 'lead'> {
   type Trial = { model: LineModel; kind: Exclude<EndKind, 'unknown'>; energy: number; size: number };
-  const freedom: Freedom = { ...ALL_FREE, impedances: false, lumps: new Set() };
+  const freedom: Freedom = { ...ALL_FREE, impedances: new Set(), lumps: new Set() };
   const trials: Trial[] = [];
   for (const kind of kinds) {
     for (const start of phaseStarts(context, base, search, kind, startsM)) {

@@ -142,17 +142,10 @@ export function linearise(
     });
   }
   for (const column of columns) applyWeight(column, context.weight);
-  const gradient = new Float64Array(p);
-  const curvature = new Float64Array(p * p);
   const inverse = 1 / variance;
-  for (let a = 0; a < p; a++) {
-    gradient[a] = dot(columns[a]!, context.residual) * inverse;
-    for (let b = 0; b <= a; b++) {
-      const value = dot(columns[a]!, columns[b]!) * inverse;
-      curvature[a * p + b] = value;
-      curvature[b * p + a] = value;
-    }
-  }
+  const gradient = new Float64Array(p);
+  for (let a = 0; a < p; a++) gradient[a] = dot(columns[a]!, context.residual) * inverse;
+  const curvature = productsOf(columns, inverse);
   const cost = residualEnergy(context) * inverse + addPriors(model, parameters, gradient, curvature);
   return { translation, cost, gradient, curvature };
 }
@@ -206,6 +199,47 @@ function dot(a: ComplexArray, b: ComplexArray): number {
   let sum = 0;
   for (let i = 0; i < a.re.length; i++) sum += a.re[i]! * b.re[i]! + a.im[i]! * b.im[i]!;
   return sum;
+}
+
+/** Re conj(column a)·(column b) for every pair, times a factor; two by two, which halves the reading of memory. */
+function productsOf(columns: readonly ComplexArray[], factor: number): Float64Array {
+  const p = columns.length;
+  const products = new Float64Array(p * p);
+  const put = (a: number, b: number, value: number): void => {
+    products[a * p + b] = value * factor;
+    products[b * p + a] = value * factor;
+  };
+  for (let a = 0; a < p; a += 2) {
+    const { re: aRe, im: aIm } = columns[a]!;
+    const { re: cRe, im: cIm } = columns[Math.min(a + 1, p - 1)]!;
+    for (let b = 0; b <= a; b += 2) {
+      const { re: bRe, im: bIm } = columns[b]!;
+      const { re: dRe, im: dIm } = columns[Math.min(b + 1, p - 1)]!;
+      let ab = 0;
+      let ad = 0;
+      let cb = 0;
+      let cd = 0;
+      for (let i = 0; i < aRe.length; i++) {
+        const ar = aRe[i]!;
+        const ai = aIm[i]!;
+        const br = bRe[i]!;
+        const bi = bIm[i]!;
+        const cr = cRe[i]!;
+        const ci = cIm[i]!;
+        const dr = dRe[i]!;
+        const di = dIm[i]!;
+        ab += ar * br + ai * bi;
+        ad += ar * dr + ai * di;
+        cb += cr * br + ci * bi;
+        cd += cr * dr + ci * di;
+      }
+      put(a, b, ab);
+      if (b + 1 < p) put(a, b + 1, ad);
+      if (a + 1 < p) put(a + 1, b, cb);
+      if (a + 1 < p && b + 1 < p) put(a + 1, b + 1, cd);
+    }
+  }
+  return products;
 }
 
 /** Adds the priors to gradient and curvature (when given) and returns their share of the cost. */

@@ -52,6 +52,7 @@ export function createResidueModel(frequencyHz: Float64Array): ResidueModel {
     tracking: complexZeros(n),
     match: complexZeros(n),
   };
+  let summed: readonly ResidueTerm[] = [];
   /** Γ/(1 − M·Γ), its square times (1 + T), and ∂reading/∂Γ = (1 + T)/(1 − M·Γ)². */
   const loop = complexZeros(n);
   const square = complexZeros(n);
@@ -71,21 +72,32 @@ export function createResidueModel(frequencyHz: Float64Array): ResidueModel {
     return phasor;
   }
 
+  /** Sums of each family, worked out anew only when a term has changed. */
+  function sumUp(terms: readonly ResidueTerm[]): void {
+    if (
+      terms.length === summed.length &&
+      terms.every((t, k) => t.re === summed[k]!.re && t.im === summed[k]!.im)
+    )
+      return;
+    summed = terms.map((term) => ({ ...term }));
+    for (const sum of Object.values(sums)) {
+      sum.re.fill(0);
+      sum.im.fill(0);
+    }
+    for (const term of terms) {
+      if (term.re === 0 && term.im === 0) continue;
+      const phasor = phasorOf(term.delayS);
+      const sum = sums[term.family];
+      for (let i = 0; i < n; i++) {
+        sum.re[i] = sum.re[i]! + term.re * phasor.re[i]! - term.im * phasor.im[i]!;
+        sum.im[i] = sum.im[i]! + term.re * phasor.im[i]! + term.im * phasor.re[i]!;
+      }
+    }
+  }
+
   return {
     apply(terms, gamma) {
-      for (const sum of Object.values(sums)) {
-        sum.re.fill(0);
-        sum.im.fill(0);
-      }
-      for (const term of terms) {
-        if (term.re === 0 && term.im === 0) continue;
-        const phasor = phasorOf(term.delayS);
-        const sum = sums[term.family];
-        for (let i = 0; i < n; i++) {
-          sum.re[i] = sum.re[i]! + term.re * phasor.re[i]! - term.im * phasor.im[i]!;
-          sum.im[i] = sum.im[i]! + term.re * phasor.im[i]! + term.im * phasor.re[i]!;
-        }
-      }
+      sumUp(terms);
       const { directivity: d, tracking: t, match: m } = sums;
       for (let i = 0; i < n; i++) {
         const gRe = gamma.re[i]!;

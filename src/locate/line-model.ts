@@ -238,22 +238,58 @@ export function removeLump(model: LineModel, id: number): void {
 /** What may move in a fit. */
 export type Freedom = {
   readonly loss: boolean;
-  readonly impedances: boolean;
-  readonly boundaries: boolean;
   readonly end: boolean;
   readonly residue: boolean;
-  /** Lumps that may move; null for all. */
+  /** Sections whose impedance may change; null for all. */
+  readonly impedances: ReadonlySet<number> | null;
+  /** Boundaries that may move, counted from 0 (the first joint behind the port); null for all. */
+  readonly boundaries: ReadonlySet<number> | null;
+  /** Lumps that may move, by id; null for all. */
   readonly lumps: ReadonlySet<number> | null;
 };
 
 export const ALL_FREE: Freedom = {
   loss: true,
-  impedances: true,
-  boundaries: true,
+  impedances: null,
+  boundaries: null,
   end: true,
   residue: true,
   lumps: null,
 };
+
+const NOTHING: ReadonlySet<number> = new Set();
+
+/** Nothing but the strength and place of some lumps. */
+export function onlyLumps(ids: Iterable<number>): Freedom {
+  return {
+    loss: false,
+    impedances: NOTHING,
+    boundaries: NOTHING,
+    end: false,
+    residue: false,
+    lumps: new Set(ids),
+  };
+}
+
+/** What lies between two distances, and nothing else. */
+export function between(model: LineModel, fromM: number, toM: number): Freedom {
+  const within = (m: number): boolean => m >= fromM && m <= toM;
+  const boundaries = new Set(model.boundaryM.flatMap((m, i) => (within(m) ? [i] : [])));
+  const impedances = new Set([...boundaries].flatMap((i) => (i + 1 < model.media.length ? [i, i + 1] : [i])));
+  const lumps = model.lumps.filter((lump) => within(lumpDistanceM(model, lump)));
+  return {
+    loss: false,
+    impedances,
+    boundaries,
+    end: within(boundaryAt(model, model.boundaryM.length)),
+    residue: fromM <= 0,
+    lumps: new Set(lumps.map((lump) => lump.id)),
+  };
+}
+
+function isFree(set: ReadonlySet<number> | null, index: number): boolean {
+  return set === null || set.has(index);
+}
 
 /**
  * Stages, free parameters and derivative slots of the model as it stands.
@@ -299,7 +335,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
       })
     : -1;
   const impedanceColumns = model.impedanceRatio.map((_, i) =>
-    freedom.impedances
+    isFree(freedom.impedances, i)
       ? add({
           ...free,
           name: `impedance of section ${i + 1}`,
@@ -315,7 +351,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
       : -1,
   );
   const boundaryColumns = model.boundaryM.map((_, i) =>
-    freedom.boundaries
+    isFree(freedom.boundaries, i)
       ? add({
           ...free,
           name: `boundary ${i + 1}`,
@@ -359,16 +395,12 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
     const medium = model.media[section]!;
     const before = section === 0 ? model.port : model.media[section - 1]!;
     stageOfBoundary.push(stages.length);
-    if (impedanceColumns[section]! >= 0) {
-      slots.push({ stage: stages.length, of: 'strength', column: impedanceColumns[section]!, factor: 1 });
-      if (section > 0) {
-        slots.push({
-          stage: stages.length,
-          of: 'strength',
-          column: impedanceColumns[section - 1]!,
-          factor: -1,
-        });
-      }
+    for (const [side, factor] of [
+      [section, 1],
+      [section - 1, -1],
+    ] as const) {
+      const column = impedanceColumns[side] ?? -1;
+      if (column >= 0) slots.push({ stage: stages.length, of: 'strength', column, factor });
     }
     const ratio = Math.exp(
       model.impedanceRatio[section]! - (section > 0 ? model.impedanceRatio[section - 1]! : 0),
@@ -378,7 +410,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
       .filter((lump) => lump.section === section)
       .sort((a, b) => lumpDistanceM(model, a) - lumpDistanceM(model, b));
     for (const lump of inside) {
-      const mayMove = freedom.lumps === null || freedom.lumps.has(lump.id);
+      const mayMove = isFree(freedom.lumps, lump.id);
       const base = lump.boundary === null ? { valueM: 0, terms: [] } : boundaryPlace(lump.boundary);
       const terms = [...base.terms];
       if (mayMove && lump.offsetSigmaM !== 0) {

@@ -8,12 +8,10 @@ import { bandLimitedValues, type DelaySupport } from './band-limited.ts';
 import { medianStepHz } from './grid-weights.ts';
 
 export type LowPassSpectrum = {
-  /** Multiples of one step from 1 on, Hz; the value at 0 stands apart. */
+  /** Even steps from 0 on, Hz. */
   readonly frequencyHz: Float64Array;
-  /** Reflection against `referenceOhm` with that medium's frequency law, same length. */
+  /** Reflection against the reference's impedance, same length; real at 0. */
   readonly gamma: ComplexArray;
-  /** Reflection at 0 Hz, real. */
-  readonly atZero: number;
 };
 
 /** Share of the unambiguous delay that echoes may fill; the rest shows where the line has ended. */
@@ -92,12 +90,7 @@ export function lowPassSpectrum(
   const highestHz = measuredHz[measuredHz.length - 1]!;
   const count = Math.floor(highestHz / stepHz + HARMONIC_TOLERANCE);
   const wantedHz = Float64Array.from({ length: count + 1 }, (_, k) => Math.min(k * stepHz, highestHz));
-  const value = onSteps(measuredHz, own, support, wantedHz, stepHz);
-  return {
-    frequencyHz: wantedHz.subarray(1),
-    gamma: { re: value.re.subarray(1), im: value.im.subarray(1) },
-    atZero: value.re[0]!,
-  };
+  return { frequencyHz: wantedHz, gamma: onSteps(measuredHz, own, support, wantedHz, stepHz) };
 }
 
 /** The measured step, taken so many times as the line's delay leaves points to spare. */

@@ -1,5 +1,5 @@
 /** The exponent that a run puts on each frequency at a distance, and the words shared by the sums over it. */
-import { type MediumRun, pathTo } from '../line/medium-run.ts';
+import { type MediumRun, pathTo, sectionAt } from '../line/medium-run.ts';
 import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
 import { assertNever } from '../outcome.ts';
 
@@ -39,4 +39,19 @@ export function factorAt(run: MediumRun, distanceM: number, loss: LossHandling):
     factor.im[k] = size * Math.sin(2 * phase[k]!);
   }
   return factor;
+}
+
+/** The distance grid cut at the boundaries of sections, in order. */
+export function piecesOf(run: MediumRun, grid: DistanceGrid): Piece[] {
+  const pieces: Piece[] = [];
+  let first = 0;
+  let section = sectionAt(run, grid.fromM);
+  for (let j = 1; j <= grid.points; j++) {
+    const here = j < grid.points ? sectionAt(run, grid.fromM + j * grid.stepM) : -1;
+    if (here === section) continue;
+    pieces.push({ section, first, count: j - first });
+    first = j;
+    section = here;
+  }
+  return pieces;
 }

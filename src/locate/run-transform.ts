@@ -2,10 +2,10 @@
  * Sums over a sweep's frequencies at every distance along a run, each frequency turned back by its own phase and, if
  * asked, weighed down or up by its own loss: the engine under the traces and the impedance profile.
  */
-import { type MediumRun, sectionAt } from '../line/medium-run.ts';
+import type { MediumRun } from '../line/medium-run.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { planFastest } from './block-sum.ts';
-import type { DistanceGrid, LossHandling, Piece } from './path-factor.ts';
+import { type DistanceGrid, type LossHandling, piecesOf } from './path-factor.ts';
 import { planPlainSum } from './plain-sum.ts';
 
 export type RunTransformOptions = {
@@ -50,18 +50,4 @@ export function createRunTransform(options: RunTransformOptions): RunTransform {
       for (const { section, apply } of planned) apply(inputOfSection(section), output);
     },
   };
-}
-
-function piecesOf(run: MediumRun, grid: DistanceGrid): Piece[] {
-  const pieces: Piece[] = [];
-  let first = 0;
-  let section = sectionAt(run, grid.fromM);
-  for (let j = 1; j <= grid.points; j++) {
-    const here = j < grid.points ? sectionAt(run, grid.fromM + j * grid.stepM) : -1;
-    if (here === section) continue;
-    pieces.push({ section, first, count: j - first });
-    first = j;
-    section = here;
-  }
-  return pieces;
 }
