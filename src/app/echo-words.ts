@@ -1,20 +1,8 @@
 /** Kinds and sizes of echoes in plain words, the same in both front doors. */
-import type { Echo, EchoKind, EchoValue, StretchKind } from '../locate/echo.ts';
+import { KIND_WORDS } from '../assess/size-text.ts';
+import type { Echo, EchoValue, StretchKind } from '../locate/echo.ts';
 import { digitsText, ohmText } from '../plot/quantity-text.ts';
 import type { Analysis } from './analysis.ts';
-
-export const KIND_WORDS: Readonly<Record<EchoKind, string>> = {
-  open: 'open',
-  short: 'short',
-  termination: 'termination',
-  'series-resistance': 'series resistance',
-  'shunt-leakage': 'shunt leakage',
-  'series-inductance': 'series inductance',
-  'shunt-capacitance': 'shunt capacitance',
-  'impedance-step': 'impedance step',
-  joint: 'joint',
-  unresolved: 'unresolved',
-};
 
 export const STRETCH_WORDS: Readonly<Record<StretchKind, string>> = {
   wet: 'wet stretch',

@@ -5,7 +5,7 @@ export type Finding = {
   readonly severity: Exclude<Severity, 'sound'>;
   /** Index into the analysis' echoes; null for a stretch. */
   readonly echo: number | null;
-  readonly kind: EchoKind | StretchKind;
+  readonly kind: EchoKind | Exclude<StretchKind, 'sound'>;
   readonly distanceM: number;
   readonly distanceSigmaM: number;
   /** "at joint 3, main run to top jumper". */
@@ -13,8 +13,9 @@ export type Finding = {
   /** "series resistance 9.1 ± 0.6 Ω". */
   readonly what: string;
   readonly confidence: number;
+  /** Most likely first. */
   readonly causes: readonly string[];
-  /** What to check, most likely first. */
+  /** What to do first, in this order: what makes the rest safe, then the cheapest look. */
   readonly checks: readonly string[];
   readonly bring: readonly string[];
 };

@@ -1,5 +1,6 @@
 /** An analysis as text for a terminal or a pipe: the verdict first, then what it rests on. */
 import type { Analysis } from '../app/analysis.ts';
+import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
 import type { Finding } from '../assess/finding.ts';
@@ -7,7 +8,7 @@ import { describedLengthM } from '../line/line.ts';
 import type { Echo, Severity } from '../locate/echo.ts';
 import type { Ghost } from '../locate/solution.ts';
 import type { Notice } from '../outcome.ts';
-import { cutText, fitText, wrapText } from '../plot/cells.ts';
+import { cellWidth, cutText, fitText, wrapText } from '../plot/cells.ts';
 import {
   decibelText,
   fixedText,
@@ -31,18 +32,15 @@ export type TextOptions = {
 
 const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
 
-/** Widths of the table's columns; the place takes what is left. */
-const MARK_WIDTH = 2;
-const DISTANCE_WIDTH = 17;
-const SEEN_WIDTH = 7;
-const CORRECTED_WIDTH = 11;
-const WORDS_WIDTH = 25;
-const SURE_WIDTH = 5;
+/** Columns of the table of echoes; the last one takes what is left. */
+const TABLE_HEAD = ['', 'distance', 'seen dB', 'there dB', 'what', 'sure', 'place'] as const;
+const TABLE_RIGHT: ReadonlySet<string> = new Set(['seen dB', 'there dB', 'sure']);
 const GAP = '  ';
 
 /** Writes it all; every line at most `columns` wide. */
-export function locateText(analysis: Analysis, options: TextOptions): string {
-  const { columns, paint } = options;
+export function locateText(inMetres: Analysis, options: TextOptions): string {
+  const { columns, paint, units } = options;
+  const analysis = analysisInUnits(inMetres, units);
   const findings = analysis.findings.flatMap((finding) => ['', ...findingLines(finding, options)]);
   const ghosts = analysis.solution.ghosts.flatMap((ghost) => ghostLines(ghost, options));
   const notices = [...options.notices, ...analysis.notices].flatMap(({ what }) =>
@@ -113,34 +111,32 @@ function summaryLines(analysis: Analysis, { units, columns }: TextOptions): stri
 }
 
 function echoTable(analysis: Analysis, { columns, units, paint }: TextOptions): string[] {
-  const row = (cells: readonly [string, string, string, string, string, string, string]): string =>
-    cutText(
-      fitText(cells[0], MARK_WIDTH) +
-        fitText(cells[1], DISTANCE_WIDTH) +
-        fitText(cells[2], SEEN_WIDTH, 'right') +
-        fitText(cells[3], CORRECTED_WIDTH, 'right') +
-        GAP +
-        fitText(cells[4], WORDS_WIDTH) +
-        fitText(cells[5], SURE_WIDTH, 'right') +
-        GAP +
-        cells[6],
-      columns,
-    ).trimEnd();
-  const header = row(['', 'distance', 'seen dB', 'corrected', 'what', 'sure', 'place']);
-  const rows = analysis.solution.echoes.map((echo, i) => {
-    const severity = analysis.severities[i] ?? 'sound';
-    const text = row([
-      MARKS[severity],
-      lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, units),
-      fixedText(-echo.returnLossDb, 1),
-      fixedText(-echo.correctedReturnLossDb, 1),
-      echoWords(analysis, echo),
-      percentText(echo.confidence),
-      shortPlace(analysis, echo),
-    ]);
-    return severity === 'sound' ? text : paint(severity, text);
-  });
-  return [paint('dim', header), ...rows];
+  const rows = analysis.solution.echoes.map((echo, i) => [
+    MARKS[analysis.severities[i] ?? 'sound'],
+    lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, units),
+    fixedText(-echo.returnLossDb, 1),
+    fixedText(-echo.correctedReturnLossDb, 1),
+    echoWords(analysis, echo),
+    percentText(echo.confidence),
+    shortPlace(analysis, echo),
+  ]);
+  const widths = TABLE_HEAD.map((title, column) =>
+    Math.max(cellWidth(title), ...rows.map((row) => cellWidth(row[column] ?? ''))),
+  );
+  const line = (row: readonly string[]): string => {
+    const cells = row.map((cell, column) =>
+      fitText(cell, widths[column] ?? 0, TABLE_RIGHT.has(TABLE_HEAD[column] ?? '') ? 'right' : 'left'),
+    );
+    const [mark = '', ...others] = cells;
+    return cutText(`${mark} ${others.join(GAP)}`, columns).trimEnd();
+  };
+  return [
+    paint('dim', line(TABLE_HEAD)),
+    ...rows.map((row, i) => {
+      const severity = analysis.severities[i] ?? 'sound';
+      return severity === 'sound' ? line(row) : paint(severity, line(row));
+    }),
+  ];
 }
 
 function shortPlace(analysis: Analysis, echo: Echo): string {
