@@ -15,7 +15,7 @@ import { createRandom } from '../numerics/random.ts';
 import { assertNever, fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { type AsBuilt, asDrawn, drawAsBuilt } from './as-built.ts';
-import { FAULT_FORMS, type Fault } from './fault-text.ts';
+import type { Fault } from './fault-text.ts';
 import { linePartsOf, type Material, type Part } from './line-parts.ts';
 
 export type SimulateRequest = {
@@ -105,27 +105,30 @@ function refuse(request: SimulateRequest): Problem[] {
 }
 
 function refuseFault(fault: Fault, line: Line, lengthM: number): Problem[] {
-  const outside = (what: string): Problem => ({
+  const joints = line.sections.length + 1;
+  const outside = (what: string, place: string): Problem => ({
     code: 'fault-place',
     what,
-    found: FAULT_FORMS[fault.kind].replace(/@.*/u, '@…'),
-    mend: `the line has ${line.sections.length + 1} joints and is ${Number(lengthM.toFixed(2))} m long`,
+    found: `${fault.kind} … @${place}`,
+    mend: Number.isFinite(lengthM)
+      ? `the line has ${joints} joints and is ${Number(lengthM.toFixed(2))} m long`
+      : `the line has ${joints} joints`,
   });
-  switch (fault.kind) {
-    case 'section':
-    case 'wet':
-      return fault.toM <= lengthM
-        ? []
-        : [outside(`the stretch ends at ${fault.toM} m, beyond the end of the line`)];
-    default:
-      if (fault.place.at === 'joint')
-        return fault.place.joint <= line.sections.length + 1
-          ? []
-          : [outside(`there is no joint ${fault.place.joint}`)];
-      return fault.place.distanceM <= lengthM
-        ? []
-        : [outside(`${fault.place.distanceM} m is beyond the end of the line`)];
-  }
+  if (fault.kind === 'section' || fault.kind === 'wet')
+    return fault.toM <= lengthM
+      ? []
+      : [
+          outside(
+            `the stretch ends at ${fault.toM} m, beyond the end of the line`,
+            `${fault.fromM}m-${fault.toM}m`,
+          ),
+        ];
+  const { place } = fault;
+  if (place.at === 'joint')
+    return place.joint <= joints ? [] : [outside(`there is no joint ${place.joint}`, `joint${place.joint}`)];
+  return place.distanceM <= lengthM
+    ? []
+    : [outside(`${place.distanceM} m is beyond the end of the line`, `${place.distanceM}m`)];
 }
 
 function endOf(request: SimulateRequest, built: AsBuilt): EndModel {
