@@ -5,14 +5,14 @@
  */
 
 import type { LumpedType } from '../line/discontinuity.ts';
-import { quantileOfSorted } from '../numerics/statistics.ts';
-import { evaluateCost, type FitContext, linearise, refine, residualEnergy } from './fit-cascade.ts';
-import type { LineModel, Lump } from './line-model.ts';
+import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
 import {
   ALL_FREE,
   addLump,
   boundaryAt,
   cloneModel,
+  type LineModel,
+  type Lump,
   lumpDistanceM,
   onlyLumps,
   removeLump,
@@ -20,17 +20,9 @@ import {
   sectionAt,
   translate,
 } from './line-model.ts';
-import { type Candidate, lumpedTypeOf, type PureType, probeStage } from './probe.ts';
-import { type ResidualTrace, residualTrace } from './residual-trace.ts';
-
-export type SearchSettings = {
-  /** Taper for traces, length n. */
-  readonly taper: Float64Array;
-  /** 6 dB width of an echo, m. */
-  readonly resolutionM: number;
-  /** Called before each round. */
-  readonly onRound?: (round: number, limit: number) => void;
-};
+import { bestOfEach, type Candidate, lumpedTypeOf, type PureType, probeAcross } from './probe.ts';
+import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
+import type { ResidualTrace } from './residual-trace.ts';
 
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
@@ -38,9 +30,6 @@ export const MOST_FREE_LUMPS = 12;
 /** An echo must stand this far above the upper quantile of the trace around it. Chosen on seeded scenes. */
 const THRESHOLD_OVER_FLOOR = 2.2;
 const THRESHOLD_AT_JOINT = 1.8;
-
-/** Quantile of the local trace level that counts as the floor: structural ripple is sparse and heavy-tailed. */
-const FLOOR_QUANTILE = 0.85;
 
 /**
  * Flaws inside a cable that return less than this over the band are what cable as sold may show here and there, dB.
@@ -88,13 +77,6 @@ export function extractEchoes(
   return { suspectBoundaries: suspects, floor: trace };
 }
 
-/** Variance of the residual per real component, as the last evaluation left it. */
-export function residualVariance(context: FitContext): number {
-  let points = 0;
-  for (const w of context.weight) points += w;
-  return Math.max(residualEnergy(context) / (2 * points), 1e-12);
-}
-
 /** Refines with the variance renewed, and gives the trace of what is left. */
 function refineAndTrace(context: FitContext, model: LineModel, settings: SearchSettings): ResidualTrace {
   evaluateCost(context, model, ALL_FREE, 1);
@@ -102,52 +84,6 @@ function refineAndTrace(context: FitContext, model: LineModel, settings: SearchS
     refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 8 });
   }
   return traceResidual(context, model, settings);
-}
-
-/** Trace of the residual as the last evaluation left it. */
-export function traceResidual(
-  context: FitContext,
-  model: LineModel,
-  settings: SearchSettings,
-): ResidualTrace {
-  const stepM = settings.resolutionM / 4;
-  const endM = boundaryAt(model, model.boundaryM.length);
-  const points = Math.max(8, Math.min(40_000, Math.ceil((endM + settings.resolutionM) / stepM)));
-  return residualTrace(model, context.residual, settings.taper, { fromM: 0, stepM, points });
-}
-
-/**
- * Level that an echo at index `k` must exceed: an upper quantile of the trace around it, candidates' own cells left out.
- */
-export function floorAt(trace: ResidualTrace, k: number, resolutionM: number): number {
-  const guard = Math.ceil((1.5 * resolutionM) / trace.stepM);
-  const reach = Math.max(Math.ceil((15 * resolutionM) / trace.stepM), Math.ceil(trace.level.length * 0.12));
-  const around: number[] = [];
-  for (let i = Math.max(0, k - reach); i <= Math.min(trace.level.length - 1, k + reach); i++) {
-    if (Math.abs(i - k) > guard) around.push(trace.level[i]!);
-  }
-  if (around.length < 8) for (const level of trace.level) around.push(level);
-  around.sort((a, b) => a - b);
-  return quantileOfSorted(around, FLOOR_QUANTILE);
-}
-
-/** Noise variance (per real component) that evidence at a distance is weighed with. */
-export function localVariance(
-  trace: ResidualTrace,
-  distanceM: number,
-  resolutionM: number,
-  meanVariance: number,
-): number {
-  const k = Math.round((distanceM - trace.fromM) / trace.stepM);
-  const reach = Math.max(Math.ceil((15 * resolutionM) / trace.stepM), Math.ceil(trace.level.length * 0.12));
-  const around: number[] = [];
-  for (let i = Math.max(0, k - reach); i <= Math.min(trace.density.length - 1, k + reach); i++) {
-    around.push(trace.density[i]!);
-  }
-  around.sort((a, b) => a - b);
-  // For Gaussian noise the density is exponential, whose 85 % quantile is 1.9 times its mean.
-  const complexVariance = quantileOfSorted(around, FLOOR_QUANTILE) / 1.9;
-  return Math.max(meanVariance, complexVariance / 2);
 }
 
 type FloorPeak = { readonly distanceM: number; readonly boundary: number | null };
@@ -162,7 +98,6 @@ function strongestAboveFloor(
   const { resolutionM } = settings;
   const n = model.boundaryM.length;
   const endM = boundaryAt(model, n);
-  const fullEnd = model.end.type === 'open' || model.end.type === 'short';
   let best: FloorPeak | null = null;
   let bestRatio = 0;
   for (let k = 1; k < trace.level.length - 1; k++) {
@@ -172,7 +107,7 @@ function strongestAboveFloor(
     if (refused.some((d) => Math.abs(d - distanceM) < resolutionM)) continue;
     const boundary = nearestBoundary(model, distanceM, resolutionM);
     // What the end leaves over is not an echo before it; the search stops a cell short.
-    if (distanceM > endM - resolutionM * (fullEnd ? 1 : 0.5)) continue;
+    if (distanceM > endM - resolutionM * JOINT_CELL) continue;
     if (boundary !== null && (suspects.has(boundary) || boundary === n)) continue;
     if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
     const ratio = level / floorAt(trace, k, resolutionM);
@@ -199,12 +134,16 @@ export function nearestBoundary(model: LineModel, distanceM: number, resolutionM
   return best;
 }
 
-/** Lets a joint be more than sound: a resistive part of any size and a reactive part of any size. */
+/** Lets a joint be more than sound: reactances of any size at both faces, until it is judged. */
 function loosenJoint(model: LineModel, boundary: number): void {
   for (const lump of model.lumps) {
-    if (lump.boundary === boundary) lump.strengthSigma = null;
+    if (lump.boundary === boundary && lump.strengthSigma !== null)
+      lump.strengthSigma = LOOSE_STRENGTH / (2 * Math.PI * model.frequencyHz.at(-1)!);
   }
 }
+
+/** Reactance of a loosened joint's face at the top of the band, one standard deviation, in line impedances. */
+const LOOSE_STRENGTH = 1;
 
 /** Inserts the pure type that explains most around a distance; false when none helps. */
 function insertLump(
@@ -256,32 +195,10 @@ export function probeAround(
   settings: SearchSettings,
   distanceM: number,
 ): Candidate[] {
-  const linear = linearise(context, model, { ...ALL_FREE, lumps: new Set() }, 1);
-  const { stages } = linear.translation;
-  const top = context.frequencyHz.length - 1;
-  const found: Candidate[] = [];
-  let at = 0;
-  stages.forEach((stage, stageIndex) => {
-    if (stage.type !== 'line') return;
-    const stepM = Math.PI / stage.medium.gamma.im[top]! / 12;
-    const reach = settings.resolutionM * 0.8;
-    if (at + stage.lengthM >= distanceM - reach && at <= distanceM + reach) {
-      found.push(
-        ...probeStage(
-          context,
-          stages,
-          { stageIndex, stageFromM: at },
-          {
-            fromM: distanceM - reach,
-            toM: distanceM + reach,
-            stepM,
-          },
-        ),
-      );
-    }
-    at += stage.lengthM;
-  });
-  return found.sort((a, b) => b.gain - a.gain);
+  const reachM = settings.resolutionM * 0.8;
+  return probeAcross(context, model, distanceM - reachM, distanceM + reachM)
+    .flatMap((probe) => bestOfEach(probe))
+    .sort((a, b) => b.gain - a.gain);
 }
 
 /** Tries every other pure type in the place of each free lump, with its distance refitted. */

@@ -172,6 +172,13 @@ export function residualEnergy(context: FitContext): number {
   return dot(context.residual, context.residual);
 }
 
+/** Variance of the residual per real component, as the last evaluation left it. */
+export function residualVariance(context: FitContext): number {
+  let points = 0;
+  for (const w of context.weight) points += w;
+  return Math.max(residualEnergy(context) / (2 * points), 1e-12);
+}
+
 /** Covariance of the free parameters at the model as it stands, row-major; null when they are not determined. */
 export function fitCovariance(linear: Linearisation): Float64Array | null {
   return invertSymmetric(linear.curvature, linear.gradient.length);

@@ -6,15 +6,21 @@
  * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
  */
 
+import { lumpReturnLossDb } from './extract-echoes.ts';
+import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
 import {
-  localVariance,
-  lumpReturnLossDb,
-  residualVariance,
-  type SearchSettings,
-  traceResidual,
-} from './extract-echoes.ts';
-import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
-import { ALL_FREE, addLump, boundaryAt, cloneModel, type LineModel, restoreModel } from './line-model.ts';
+  ALL_FREE,
+  addLump,
+  between,
+  boundaryAt,
+  cloneModel,
+  type LineModel,
+  removeLump,
+  restoreModel,
+} from './line-model.ts';
+import { bestPlaceOf, expectBoundary } from './place-joints.ts';
+import { type PureType, probeAcross } from './probe.ts';
+import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 
 export type JointState =
   | 'sound'
@@ -41,7 +47,7 @@ const FAULT_ODDS = 9;
 const KIND_ODDS = 2;
 
 /** Half the distance between the two faces of a connector, and its spread, m. From memory: a few centimetres. */
-const HALF_GAP_M = 0.012;
+const HALF_GAP_M = 0.018;
 const HALF_GAP_SIGMA_M = 0.01;
 
 /** Return loss of a sound joint at the top of the band, one standard deviation, dB. Common practice: 28 to 45 dB. */
@@ -55,8 +61,7 @@ const MIMIC_STRENGTH = 0.06;
 
 /** Adds the two small reactances of a sound connector to every joint before the end. */
 export function addSoundJoints(model: LineModel): void {
-  const top = model.frequencyHz[model.frequencyHz.length - 1]!;
-  const sigma = soundStrength(top);
+  const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
   for (let boundary = 0; boundary < model.boundaryM.length; boundary++) {
     // The first joint starts at the reference plane: both its faces lie on the line's side.
     const faces = boundary === 0 ? [HALF_GAP_M, 3 * HALF_GAP_M] : [-HALF_GAP_M, HALF_GAP_M];
@@ -68,7 +73,7 @@ export function addSoundJoints(model: LineModel): void {
         section: offsetM < 0 ? boundary - 1 : boundary,
         boundary,
         offsetM,
-        offsetSigmaM: HALF_GAP_SIGMA_M,
+        offsetSigmaM: 0,
         offsetMeanM: offsetM,
       });
     }
@@ -88,10 +93,12 @@ export function judgeJoints(context: FitContext, model: LineModel, settings: Sea
   return verdicts;
 }
 
+type State = 'sound' | 'resistive' | 'reactive';
+
 type Trial = {
-  readonly state: 'sound' | 'resistive' | 'reactive';
+  readonly state: State;
   readonly model: LineModel;
-  readonly energy: number;
+  readonly cost: number;
 };
 
 function judgeJoint(
@@ -105,23 +112,36 @@ function judgeJoint(
   const trace = traceResidual(context, model, settings);
   const atM = boundaryAt(model, boundary);
   const variance = localVariance(trace, atM, settings.resolutionM, mean);
-  const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
-  const trials: Trial[] = (['sound', 'resistive', 'reactive'] as const).map((state) => {
-    const trial = cloneModel(model);
-    dressJoint(trial, boundary, state, sigma);
-    const ids = new Set(trial.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id));
-    const freedom = { ...ALL_FREE, loss: false, residue: boundary === 0, lumps: ids };
-    refine(context, trial, freedom, { variance, maxIterations: 10 });
-    const energy = evaluateCost(context, trial, ALL_FREE, variance);
-    return { state, model: trial, energy };
-  });
-  const [sound, resistive, reactive] = trials as [Trial, Trial, Trial];
+  const bare = cloneModel(model);
+  dress(bare, boundary, 'bare');
+  const probes =
+    boundary === 0 ? [] : probeAcross(context, bare, atM - settings.resolutionM, atM + settings.resolutionM);
+  const others = new Set(model.boundaryM.keys());
+  const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
+  const starts = (state: State): number[] => {
+    const found = expected && bestPlaceOf(probes, TYPES_OF[state], expected, variance);
+    return found ? [found.distanceM, atM] : [atM];
+  };
+  const tryOut = (state: State): Trial => {
+    const trials = starts(state).map((startM): Trial => {
+      const trial = cloneModel(state === 'sound' && startM === atM ? model : bare);
+      if (boundary > 0) trial.boundaryM[boundary - 1] = startM;
+      dress(trial, boundary, state);
+      const freedom = between(trial, atM - settings.resolutionM, atM + settings.resolutionM);
+      refine(context, trial, freedom, { variance, maxIterations: 10 });
+      return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
+    });
+    return trials.reduce((a, b) => (b.cost < a.cost ? b : a));
+  };
+  const sound = tryOut('sound');
+  const resistive = tryOut('resistive');
+  const reactive = tryOut('reactive');
   const r = resistiveStrength(resistive.model, boundary);
   const x = reactiveStrength(reactive.model, boundary);
-  const resistiveOdds = Math.abs(r) < MIMIC_STRENGTH ? 0 : (sound.energy - resistive.energy) / 2;
+  const resistiveOdds = Math.abs(r) < MIMIC_STRENGTH ? 0 : (sound.cost - resistive.cost) / 2;
   const reactiveBad =
     lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength: x }) < REACTIVE_FAULT_RETURN_LOSS_DB;
-  const reactiveOdds = reactiveBad ? (sound.energy - reactive.energy) / 2 : 0;
+  const reactiveOdds = reactiveBad ? (sound.cost - reactive.cost) / 2 : 0;
   const best = Math.max(resistiveOdds, reactiveOdds);
   if (best < FAULT_ODDS) {
     restoreModel(model, sound.model);
@@ -136,38 +156,36 @@ function judgeJoint(
     : x > 0
       ? 'series-inductance'
       : 'shunt-capacitance';
-  const lead = (isResistive ? reactive.energy - resistive.energy : resistive.energy - reactive.energy) / 2;
+  const lead = Math.abs(reactive.cost - resistive.cost) / 2;
   return { boundary, state, clear: lead >= KIND_ODDS, odds: best, lead };
 }
 
-/** Gives a joint the freedom of one hypothesis. */
-function dressJoint(
-  model: LineModel,
-  boundary: number,
-  state: 'sound' | 'resistive' | 'reactive',
-  sigma: number,
-): void {
+const TYPES_OF: Readonly<Record<State, readonly PureType[]>> = {
+  sound: ['series-resistance', 'shunt-leakage', 'series-inductance', 'shunt-capacitance'],
+  resistive: ['series-resistance', 'shunt-leakage'],
+  reactive: ['series-inductance', 'shunt-capacitance'],
+};
+
+/** Gives a joint the lumps of one hypothesis: faces that lie within what is sound, and the fault itself. */
+function dress(model: LineModel, boundary: number, state: State | 'bare'): void {
   const mine = model.lumps.filter((lump) => lump.boundary === boundary);
-  for (const lump of mine.filter((l) => l.type === 'resistive'))
-    model.lumps.splice(model.lumps.indexOf(lump), 1);
-  const faces = mine.filter((lump) => lump.type === 'reactive');
-  for (const face of faces) {
-    face.strengthSigma = sigma;
-    if (state !== 'reactive') face.strength = Math.max(-sigma, Math.min(sigma, face.strength));
+  for (const lump of mine) {
+    if (lump.strengthSigma === null) removeLump(model, lump.id);
+    else if (state === 'bare') lump.strength = 0;
+    else lump.strength = Math.max(-lump.strengthSigma, Math.min(lump.strengthSigma, lump.strength));
   }
-  if (state === 'reactive') faces[0]!.strengthSigma = null;
-  if (state === 'resistive') {
-    addLump(model, {
-      type: 'resistive',
-      strength: 0.01,
-      strengthSigma: null,
-      section: boundary === 0 ? 0 : boundary - 1,
-      boundary,
-      offsetM: 0,
-      offsetSigmaM: HALF_GAP_SIGMA_M,
-      offsetMeanM: 0,
-    });
-  }
+  if (state !== 'resistive' && state !== 'reactive') return;
+  const top = model.frequencyHz[model.frequencyHz.length - 1]!;
+  addLump(model, {
+    type: state,
+    strength: state === 'resistive' ? 0.01 : 0.1 * soundStrength(top),
+    strengthSigma: null,
+    section: boundary === 0 ? 0 : boundary - 1,
+    boundary,
+    offsetM: 0,
+    offsetSigmaM: HALF_GAP_SIGMA_M,
+    offsetMeanM: 0,
+  });
 }
 
 /** Net resistive strength of a joint. */

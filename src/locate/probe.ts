@@ -7,7 +7,8 @@
  */
 import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
-import type { FitContext } from './fit-cascade.ts';
+import { type FitContext, linearise } from './fit-cascade.ts';
+import { type LineModel, onlyLumps } from './line-model.ts';
 
 /** The pure types: signed strengths tell series from shunt. */
 export type PureType = 'series-resistance' | 'shunt-leakage' | 'series-inductance' | 'shunt-capacitance';
@@ -39,27 +40,60 @@ export function pureTypeOf(type: LumpedType, strength: number): PureType {
   return strength >= 0 ? 'series-inductance' : 'shunt-capacitance';
 }
 
+/** Matched sums of a search at evenly spaced distances. */
+export type Probe = {
+  readonly fromM: number;
+  readonly stepM: number;
+  readonly points: number;
+  /** Per distance and family (series, shunt): Re Σ t*r, Σ|t|², Re Σ (jωt)*r, Σ ω²|t|², with t for unit strength. */
+  readonly sums: Float64Array;
+};
+
+/** Sums of every pure type around a joint, in all stretches that the range touches. */
+export function probeAcross(context: FitContext, model: LineModel, fromM: number, toM: number): Probe[] {
+  const { stages } = linearise(context, model, onlyLumps([]), 1).translation;
+  const top = context.frequencyHz.length - 1;
+  const probes: Probe[] = [];
+  let atM = 0;
+  stages.forEach((stage, stageIndex) => {
+    if (stage.type !== 'line') return;
+    const stepM = Math.PI / stage.medium.gamma.im[top]! / POINTS_PER_HALF_WAVE;
+    if (atM + stage.lengthM >= fromM && atM <= toM && stage.lengthM > 0) {
+      const probe = probeStage(context, stages, { stageIndex, stageFromM: atM }, { fromM, toM, stepM });
+      if (probe) probes.push(probe);
+    }
+    atM += stage.lengthM;
+  });
+  return probes;
+}
+
+const POINTS_PER_HALF_WAVE = 12;
+
+/** A stage of type `line` and the model distance at which it begins. */
+export type StagePlace = { readonly stageIndex: number; readonly stageFromM: number };
+
+/** Distances to search; `stepM` well under a quarter wavelength at the top. */
+export type ProbeRange = { readonly fromM: number; readonly toM: number; readonly stepM: number };
+
 /**
- * Best candidate of every pure type within a stretch of the line.
+ * Matched sums of all pure types within a stretch of the line.
  *
  * @param stages Stages of the last `linearise`, whose states and sensitivities the cascade still holds.
- * @param stageIndex A stage of type `line`.
- * @param stageFromM Model distance at which that stage begins.
- * @param range Distances to search, clipped to the stage; `stepM` well under a quarter wavelength at the top.
+ * @param range Clipped to the stage.
+ * @returns Null when the range and the stage don't meet.
  */
 export function probeStage(
   context: FitContext,
   stages: readonly Stage[],
-  place: { readonly stageIndex: number; readonly stageFromM: number },
-  range: { readonly fromM: number; readonly toM: number; readonly stepM: number },
-): Candidate[] {
+  place: StagePlace,
+  range: ProbeRange,
+): Probe | null {
   const stage = stages[place.stageIndex]!;
   if (stage.type !== 'line') throw new TypeError(`stage ${place.stageIndex} is no stretch of line`);
   const from = Math.max(range.fromM, place.stageFromM);
   const to = Math.min(range.toM, place.stageFromM + stage.lengthM);
-  if (!(to >= from)) return [];
+  if (!(to >= from)) return null;
   const points = Math.max(1, Math.floor((to - from) / range.stepM) + 1);
-  // Per distance and family (0 series, 1 shunt): Re Σ t*r, Σ|t|², Re Σ (jωt)*r, Σ ω²|t|².
   const sums = new Float64Array(points * 8);
   const before = context.cascade.sensitivity(place.stageIndex);
   const behind = context.cascade.behind(place.stageIndex);
@@ -112,26 +146,33 @@ export function probeStage(
       gRe = nextG;
     }
   }
-  return PURE_TYPES.flatMap((type) => bestOf(type, sums, points, from, range.stepM));
+  return { fromM: from, stepM: range.stepM, points, sums };
 }
 
-function bestOf(
+/** Strength and gain of one pure type at one distance; no gain where the sign is the other type's. */
+export function matchAt(
+  probe: Probe,
   type: PureType,
-  sums: Float64Array,
-  points: number,
-  fromM: number,
-  stepM: number,
-): Candidate[] {
+  index: number,
+): { readonly strength: number; readonly gain: number } {
   const shunt = type === 'shunt-leakage' || type === 'shunt-capacitance';
-  const part = (shunt ? 4 : 0) + (lumpedTypeOf(type) === 'reactive' ? 2 : 0);
+  const part = index * 8 + (shunt ? 4 : 0) + (lumpedTypeOf(type) === 'reactive' ? 2 : 0);
+  const norm = probe.sums[part + 1]!;
+  const strength = norm > 0 ? probe.sums[part]! / norm : 0;
+  const wrongSign = shunt ? strength >= 0 : strength <= 0;
+  return wrongSign ? { strength: 0, gain: 0 } : { strength, gain: strength * strength * norm };
+}
+
+/** Best candidate of every pure type in a probe. */
+export function bestOfEach(probe: Probe): Candidate[] {
+  return PURE_TYPES.flatMap((type) => bestOf(type, probe));
+}
+
+function bestOf(type: PureType, probe: Probe): Candidate[] {
   let best: Candidate | null = null;
-  for (let k = 0; k < points; k++) {
-    const norm = sums[k * 8 + part + 1]!;
-    if (norm <= 0) continue;
-    const strength = sums[k * 8 + part]! / norm;
-    if (shunt ? strength >= 0 : strength <= 0) continue;
-    const gain = strength * strength * norm;
-    if (!best || gain > best.gain) best = { type, distanceM: fromM + k * stepM, strength, gain };
+  for (let k = 0; k < probe.points; k++) {
+    const { strength, gain } = matchAt(probe, type, k);
+    if (gain > (best?.gain ?? 0)) best = { type, distanceM: probe.fromM + k * probe.stepM, strength, gain };
   }
   return best ? [best] : [];
 }

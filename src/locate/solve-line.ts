@@ -10,19 +10,13 @@ import { createWindow, parseWindow } from '../numerics/window.ts';
 import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type DistanceScale, type LumpVerdict } from './build-echoes.ts';
-import {
-  extractEchoes,
-  localVariance,
-  modelSize,
-  rankTypes,
-  residualVariance,
-  type SearchSettings,
-  traceResidual,
-} from './extract-echoes.ts';
+import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { findEnd } from './find-end.ts';
-import { createFitContext, evaluateCost, type FitContext, refine } from './fit-cascade.ts';
+import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel } from './line-model.ts';
+import { placeJoints } from './place-joints.ts';
+import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { Solution } from './solution.ts';
 
 export type SolveRequest = {
@@ -72,6 +66,7 @@ export function solveLine(
     lossSigma: request.lineDescribed ? DESCRIBED_LOSS_SIGMA : TYPE_ONLY_LOSS_SIGMA,
   });
   const { model } = end;
+  placeJoints(context, model);
   addSoundJoints(model);
   extractEchoes(context, model, settings);
   onProgress('judging joints', 0.8);
