@@ -78,6 +78,9 @@ export function simulate(request: SimulateRequest): Outcome<Sweep> {
   });
 }
 
+/** A sweep that stops below was meant in MHz, Hz. */
+const LOWEST_STOP_HZ = 10e3;
+
 function refuse(request: SimulateRequest): Problem[] {
   const { line, range, faults } = request;
   const problems: Problem[] = [];
@@ -99,6 +102,12 @@ function refuse(request: SimulateRequest): Problem[] {
       code: 'simulate-start',
       what: 'a sweep of a lossy line cannot be computed at 0 Hz',
       mend: 'start above 0, for example --sweep 2MHz-2700MHz:1350',
+    });
+  else if (range.stopHz < LOWEST_STOP_HZ)
+    problems.push({
+      code: 'simulate-stop',
+      what: `the sweep stops at ${range.stopHz} Hz, below all that a line is swept at`,
+      mend: 'give the units too, for example --sweep 2MHz-2700MHz:1350',
     });
   for (const fault of faults) problems.push(...refuseFault(fault, line, lengthM ?? Number.POSITIVE_INFINITY));
   return problems;

@@ -16,6 +16,7 @@ import {
   temperatureText,
   type Units,
 } from '../plot/quantity-text.ts';
+import { cleanForDisplay } from '../sweep/clean-text.ts';
 import { parseFrequencyHz, parseLengthM, parseTemperatureC } from '../sweep/number-text.ts';
 import { type ExitStatus, type Io, textColumns, write } from './io.ts';
 import type { Invocation } from './parse-arguments.ts';
@@ -45,6 +46,9 @@ type RunFigures = {
 const PER_100_M = 100;
 /** Step of the central difference that gives the group delay, relative to the frequency. */
 const DELAY_STEP = 1e-4;
+
+/** Below it no feedline is swept, and a bare number was meant in MHz, Hz. */
+const LOWEST_HZ = 10e3;
 
 /** Columns of loss in the table. */
 const TABLE_FREQUENCIES_HZ = [100e6, 900e6, 2000e6] as const;
@@ -88,8 +92,13 @@ function readQuestion(invocation: Invocation): Outcome<Question> {
   const problems: Problem[] = [frequencyHz, lengthM, temperatureC].flatMap((outcome) =>
     outcome.ok ? [] : outcome.problems,
   );
-  if (frequencyHz.ok && frequencyHz.value === 0)
-    problems.push({ code: 'flag-value', what: 'a cable has no delay at 0 Hz', mend: 'write --at 900MHz' });
+  if (frequencyHz.ok && frequencyHz.value !== null && frequencyHz.value < LOWEST_HZ)
+    problems.push({
+      code: 'flag-value',
+      what: `${frequencyText(frequencyHz.value)} is below all that these figures are for`,
+      found: cleanForDisplay(`--at ${at}`, 60),
+      mend: 'give the unit too: --at 900MHz',
+    });
   if (length !== null && at === null)
     problems.push({
       code: 'flag-clash',
