@@ -1,9 +1,10 @@
 /**
- * Matched search for one more discontinuity of a pure physical type, through the whole solved cascade.
+ * Matched search for one more discontinuity of a pure physical type, seen through the solved cascade.
  *
- * At a distance x inside a stretch, a small series element adds S(x)·(1 − Γ(x))²·u/2 to the port reflection and a
- * small shunt element S(x)·(1 + Γ(x))²·u/2, where S is the sensitivity of the port to the reflection at x and Γ what
- * comes back from behind. Everything that couples the new element with the rest, ghosts included, is in the template.
+ * At a distance x inside a stretch, a small element adds S(x)·u/2 to the port reflection, where S is the sensitivity of
+ * the port to the reflection at x: loss, dispersion and every mismatch on the way are in it. What the element does to
+ * echoes behind it is left out here, though the cascade has it: the loss, the end and the instrument's residue, fitted
+ * before, have taken part of that for their own and would hide the rest.
  */
 import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
@@ -45,7 +46,7 @@ export type Probe = {
   readonly fromM: number;
   readonly stepM: number;
   readonly points: number;
-  /** Per distance and family (series, shunt): Re Σ t*r, Σ|t|², Re Σ (jωt)*r, Σ ω²|t|², with t for unit strength. */
+  /** Per distance: Re Σ t*r, Σ|t|², Re Σ (jωt)*r, Σ ω²|t|², with t = S/2. */
   readonly sums: Float64Array;
 };
 
@@ -94,56 +95,39 @@ export function probeStage(
   const to = Math.min(range.toM, place.stageFromM + stage.lengthM);
   if (!(to >= from)) return null;
   const points = Math.max(1, Math.floor((to - from) / range.stepM) + 1);
-  const sums = new Float64Array(points * 8);
+  const sums = new Float64Array(points * 4);
   const before = context.cascade.sensitivity(place.stageIndex);
-  const behind = context.cascade.behind(place.stageIndex);
   const { gamma, gammaPerConductorLoss: c, gammaPerDielectricLoss: d } = stage.medium;
   const { residual, weight, frequencyHz } = context;
+  const offset = from - place.stageFromM;
   for (let i = 0; i < frequencyHz.length; i++) {
     if (weight[i] === 0) continue;
     const omega = 2 * Math.PI * frequencyHz[i]!;
     const alpha = gamma.re[i]! + stage.conductor * c.re[i]! + stage.dielectric * d.re[i]!;
     const beta = gamma.im[i]! + stage.conductor * c.im[i]! + stage.dielectric * d.im[i]!;
-    const offset = from - place.stageFromM;
-    const rRe = residual.re[i]!;
-    const rIm = residual.im[i]!;
-    // q = e^{−2γ·offset}: S(x) = S·q, Γ(x) = Γ(start)/q.
-    const shrink = Math.exp(-2 * alpha * offset);
-    const qRe = shrink * Math.cos(2 * beta * offset);
-    const qIm = -shrink * Math.sin(2 * beta * offset);
-    let sRe = before.re[i]! * qRe - before.im[i]! * qIm;
-    let sIm = before.re[i]! * qIm + before.im[i]! * qRe;
-    const inverse = 1 / (qRe * qRe + qIm * qIm);
-    let gRe = (behind.re[i]! * qRe + behind.im[i]! * qIm) * inverse;
-    let gIm = (behind.im[i]! * qRe - behind.re[i]! * qIm) * inverse;
-    const stepShrink = Math.exp(-2 * alpha * range.stepM);
-    const stepRe = stepShrink * Math.cos(2 * beta * range.stepM);
-    const stepIm = -stepShrink * Math.sin(2 * beta * range.stepM);
-    const back = 1 / (stepShrink * stepShrink);
-    const backRe = stepRe * back;
-    const backIm = -stepIm * back;
+    const half = 0.5 * Math.exp(-2 * alpha * offset);
+    const qRe = half * Math.cos(2 * beta * offset);
+    const qIm = -half * Math.sin(2 * beta * offset);
+    const tRe = before.re[i]! * qRe - before.im[i]! * qIm;
+    const tIm = before.re[i]! * qIm + before.im[i]! * qRe;
+    // t*·r, which turns and shrinks from one distance to the next.
+    let mRe = tRe * residual.re[i]! + tIm * residual.im[i]!;
+    let mIm = tRe * residual.im[i]! - tIm * residual.re[i]!;
+    let power = tRe * tRe + tIm * tIm;
+    const shrink = Math.exp(-2 * alpha * range.stepM);
+    const turnRe = shrink * Math.cos(2 * beta * range.stepM);
+    const turnIm = shrink * Math.sin(2 * beta * range.stepM);
+    const fade = shrink * shrink;
     for (let k = 0; k < points; k++) {
-      const base = k * 8;
-      for (let family = 0; family < 2; family++) {
-        const hRe = family === 0 ? 1 - gRe : 1 + gRe;
-        const hIm = family === 0 ? -gIm : gIm;
-        const h2Re = hRe * hRe - hIm * hIm;
-        const h2Im = 2 * hRe * hIm;
-        const tRe = 0.5 * (sRe * h2Re - sIm * h2Im);
-        const tIm = 0.5 * (sRe * h2Im + sIm * h2Re);
-        const at = base + family * 4;
-        const power = tRe * tRe + tIm * tIm;
-        sums[at] = sums[at]! + tRe * rRe + tIm * rIm;
-        sums[at + 1] = sums[at + 1]! + power;
-        sums[at + 2] = sums[at + 2]! + omega * (tRe * rIm - tIm * rRe);
-        sums[at + 3] = sums[at + 3]! + omega * omega * power;
-      }
-      const nextRe = sRe * stepRe - sIm * stepIm;
-      sIm = sRe * stepIm + sIm * stepRe;
-      sRe = nextRe;
-      const nextG = gRe * backRe - gIm * backIm;
-      gIm = gRe * backIm + gIm * backRe;
-      gRe = nextG;
+      const at = k * 4;
+      sums[at] = sums[at]! + mRe;
+      sums[at + 1] = sums[at + 1]! + power;
+      sums[at + 2] = sums[at + 2]! + omega * mIm;
+      sums[at + 3] = sums[at + 3]! + omega * omega * power;
+      const next = mRe * turnRe - mIm * turnIm;
+      mIm = mRe * turnIm + mIm * turnRe;
+      mRe = next;
+      power *= fade;
     }
   }
   return { fromM: from, stepM: range.stepM, points, sums };
@@ -156,7 +140,7 @@ export function matchAt(
   index: number,
 ): { readonly strength: number; readonly gain: number } {
   const shunt = type === 'shunt-leakage' || type === 'shunt-capacitance';
-  const part = index * 8 + (shunt ? 4 : 0) + (lumpedTypeOf(type) === 'reactive' ? 2 : 0);
+  const part = index * 4 + (lumpedTypeOf(type) === 'reactive' ? 2 : 0);
   const norm = probe.sums[part + 1]!;
   const strength = norm > 0 ? probe.sums[part]! / norm : 0;
   const wrongSign = shunt ? strength >= 0 : strength <= 0;
