@@ -136,10 +136,19 @@ describe('row 2: numbers that make no sweep', () => {
     expectRefusal(await locateText('# MHz S RI R 0\n10 0.1 0\n20 0.1 0\n'), /bad\.s1p, line 1: /u);
   });
 
-  it('no option line: goes on or says so, but never silently', async () => {
-    const result = await locateText(sample.replace(/^#.*\n/mu, ''), ...CABLE, '--json');
-    if (result.status === 2) expectRefusal(result, /option line/u);
-    else expect((JSON.parse(result.stdout) as LocateDocument).notices.length).toBeGreaterThan(0);
+  it('no option line: refuses to guess unit and format, and says what to write', async () => {
+    expectRefusal(
+      await locateText(sample.replace(/^#.*\n/mu, '')),
+      /bad\.s1p, line \d+: has data before any option line.*\n {2}put the option line above the data/u,
+    );
+  });
+
+  it('a repeated frequency: takes the mean, and says so with the line', async () => {
+    const text = touchstone(200, () => [0.1, 0]).replace(/^40000000 .*$/mu, '$&\n$&');
+    const document = await expectNotice(text, /repeat/u);
+    expect(document.sweep.points).toBe(200);
+    const [repeated] = document.notices.filter((notice) => notice.code.includes('repeat'));
+    expect(repeated?.what).toMatch(/line 22 \(40 MHz\)/u);
   });
 
   it('a port that the file does not hold', async () => {
@@ -212,27 +221,54 @@ describe('row 4: a wrong line file', () => {
 });
 
 describe('row 5: a sweep that cannot do what is asked', () => {
+  const noticeOf = (document: LocateDocument, code: string): string =>
+    document.notices.find((notice) => notice.code === code)?.what ?? '';
   const mild = (f: number): readonly [number, number] => [
     0.3 * Math.cos(f * 1e-7),
     -0.3 * Math.sin(f * 1e-7),
   ];
 
   it('a line longer than the sweep can see: says so, and what sweep would do', async () => {
-    const document = await expectNotice(touchstone(200, mild, 10e6, 10e6), /./u, ...CABLE, '--length', '60m');
+    const document = await expectNotice(
+      touchstone(200, mild, 10e6, 10e6),
+      /line-folds/u,
+      ...CABLE,
+      '--length',
+      '60m',
+    );
     // c·vf/(2·Δf) = 13.2 m for 10 MHz steps and a velocity factor of 0.88.
     expect(document.reach.unambiguousM).toBeCloseTo(13.2, 0);
-    expect(document.notices.map((notice) => notice.what).join(' ')).toMatch(/fold|step|longer/iu);
+    expect(noticeOf(document, 'line-folds')).toMatch(/steps of 1 MHz, 1991 points over this band/u);
   });
 
-  it('a start too high for ohms: says that there is no measured profile', async () => {
-    const document = await expectNotice(touchstone(200, mild, 1.7e9, 1e6), /./u, ...CABLE, '--length', '20m');
+  it('a band too narrow: says what it parts, and what band would do', async () => {
+    const document = await expectNotice(
+      touchstone(200, mild, 900e6, 1e5),
+      /band-narrow/u,
+      ...CABLE,
+      '--length',
+      '40m',
+    );
+    expect(noticeOf(document, 'band-narrow')).toMatch(/ MHz would part 2\.00 m/u);
+  });
+
+  it('a start too high for ohms: says that there is no measured profile, and what sweep would give one', async () => {
+    const document = await expectNotice(
+      touchstone(200, mild, 1.7e9, 1e6),
+      /ohms-not-measured/u,
+      ...CABLE,
+      '--length',
+      '20m',
+    );
     expect(document.reach.impedanceProfile).not.toBe('measured');
+    expect(noticeOf(document, 'ohms-not-measured')).toMatch(/starts too high, at 1\.7 GHz/u);
   });
 
-  it('two points only', async () => {
-    const result = await locateText('# MHz S RI R 50\n10 0.1 0\n20 0.1 0\n', ...CABLE);
-    if (result.status === 2) expectRefusal(result, /point/u);
-    else expect(result.stdout).toContain('note');
+  it('two points only: says how many it takes', async () => {
+    expectRefusal(
+      await locateText('# MHz S RI R 50\n10 0.1 0\n20 0.1 0\n', ...CABLE),
+      /bad\.s1p: the sweep has 2 usable points; 8 are the least\n {2}save a sweep of some hundreds of points/u,
+    );
   });
 });
 
