@@ -171,7 +171,7 @@ function antennaOf(request: SimulateRequest): EndModel {
   const bands = described.length > 0 ? described : [{ fromHz: middle - half, toHz: middle + half }];
   const edge = gammaOfReturnLoss(ANTENNA_EDGE_DB);
   const size = Math.min(1, 2 / bands.length);
-  const parameters = [-1];
+  const parameters = [-1, 0];
   for (const { fromHz, toHz } of bands) {
     const centre = Math.sqrt(fromHz * toHz);
     // |Γ| at the edge is about Q·δ of one resonance alone.

@@ -6,8 +6,8 @@ import { assertNever } from '../outcome.ts';
  * One model of an end. Parameters by type:
  * - `open`: [τ] with fringe capacitance τ/z0, s; `short`: [τ] with inductance τ·z0, s;
  * - `load`: [r, τ]: resistance r·z0 with series inductance τ·z0 (τ > 0) or shunt capacitance |τ|/z0 (τ < 0);
- * - `antenna`: [g, then a, b, Q, f0 (Hz) per resonance]: Γ = g + Σ (a + jb)/(1 + jQ(f/f0 − f0/f)), which a load behind
- *   one tuned circuit satisfies exactly with g = ±1.
+ * - `antenna`: [g, h, then a, b, Q, f0 (Hz) per resonance]: Γ = g + jh + Σ (a + jb)/(1 + jQ(f/f0 − f0/f)), which a load
+ *   behind one tuned circuit satisfies exactly with g = ±1 and h = 0; g + jh also stands for resonances far out of band.
  */
 export type EndModel = {
   readonly type: 'open' | 'short' | 'load' | 'antenna';
@@ -105,12 +105,14 @@ function writeAntenna(
   derivatives: readonly ComplexArray[] | null,
 ): void {
   out.re.fill(parameters[0]!);
-  out.im.fill(0);
+  out.im.fill(parameters[1]!);
   if (derivatives) {
     derivatives[0]!.re.fill(1);
     derivatives[0]!.im.fill(0);
+    derivatives[1]!.re.fill(0);
+    derivatives[1]!.im.fill(1);
   }
-  for (let k = 1; k + 3 < parameters.length; k += 4) {
+  for (let k = 2; k + 3 < parameters.length; k += 4) {
     const a = parameters[k]!;
     const b = parameters[k + 1]!;
     const q = parameters[k + 2]!;

@@ -9,7 +9,7 @@ import type { EndModel } from '../line/end.ts';
 import type { EndKind, Line } from '../line/line.ts';
 import { findPeaks } from '../numerics/peaks.ts';
 import { fitAntenna } from './fit-antenna.ts';
-import { evaluateCost, type FitContext, refine, residualEnergy } from './fit-cascade.ts';
+import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
 import {
   ALL_FREE,
   cloneModel,
@@ -81,7 +81,7 @@ function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
     const best = bestEnd(context, model, search, ['open', 'short'], [cutAt]);
     return { ...best, line: cutLine, cut: true };
   }
-  const kinds: Exclude<EndKind, 'unknown'>[] =
+  const kinds: FoundEnd[] =
     nearEnd.level > FULL_REFLECTION_LEVEL && line.end !== 'antenna'
       ? ['open', 'short']
       : nearEnd.level > FULL_END_LEVEL
@@ -117,7 +117,7 @@ function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
     lossSigma: search.lossSigma,
     lengthSigmaM: Math.max(1, lengthM),
   });
-  const kinds: Exclude<EndKind, 'unknown'>[] =
+  const kinds: FoundEnd[] =
     line.end !== 'unknown'
       ? [line.end]
       : at.level > 0.5
@@ -218,29 +218,16 @@ function bestEnd(
   context: FitContext,
   base: LineModel,
   search: EndSearch,
-  kinds: readonly Exclude<EndKind, 'unknown'>[],
+  kinds: readonly FoundEnd[],
   startsM: readonly number[],
 ): Pick<EndFound, 'model' | 'kind' | 'lead'> {
-  type Trial = { model: LineModel; kind: Exclude<EndKind, 'unknown'>; energy: number; size: number };
-  const freedom: Freedom = { ...ALL_FREE, impedances: new Set(), lumps: new Set() };
-  const trials: Trial[] = [];
-  for (const kind of kinds) {
-    for (const start of phaseStarts(context, base, search, kind, startsM)) {
-      const model = cloneModel(base);
-      moveEnd(model, start.distanceM);
-      model.end = startingEnd(kind, start.value);
-      evaluateCost(context, model, freedom, 1);
-      const variance = Math.max(residualEnergy(context) / (2 * context.weight.length), 1e-10);
-      if (kind === 'antenna') fitAntenna(context, model, freedom);
-      else refine(context, model, freedom, { variance, maxIterations: 10 });
-      trials.push({ model, kind, energy: residualEnergy(context), size: model.end.parameters.length });
-    }
-  }
+  const trials = kinds.flatMap((kind) => tryKind(context, base, search, kind, startsM));
   const points = context.weight.reduce((a, b) => a + b, 0);
   const least = Math.max(Math.min(...trials.map((trial) => trial.energy)), 1e-12);
   const variance = least / (2 * points);
   const cost = (trial: Trial): number =>
-    evaluateCost(context, trial.model, freedom, variance) + trial.size * Math.log(2 * points);
+    evaluateCost(context, trial.model, ALL_FREE, variance) +
+    trial.model.end.parameters.length * Math.log(2 * points);
   const ranked = trials.map((trial) => ({ trial, cost: cost(trial) })).sort((a, b) => a.cost - b.cost);
   const best = ranked[0]!;
   const rival = ranked.find((other) => other.trial.kind !== best.trial.kind);
@@ -250,6 +237,60 @@ function bestEnd(
     kind: best.trial.kind,
     lead: rival ? (rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY,
   };
+}
+
+type FoundEnd = Exclude<EndKind, 'unknown'>;
+type Trial = { readonly model: LineModel; readonly kind: FoundEnd; readonly energy: number };
+
+/** One kind of end, fitted from every start that its phase allows. */
+function tryKind(
+  context: FitContext,
+  base: LineModel,
+  search: EndSearch,
+  kind: FoundEnd,
+  startsM: readonly number[],
+): Trial[] {
+  const last = base.boundaryM.length - 1;
+  const freedom: Freedom = {
+    ...ALL_FREE,
+    impedances: new Set(),
+    boundaries: new Set([last]),
+    residue: false,
+    lumps: new Set(),
+  };
+  const starts =
+    kind === 'antenna'
+      ? antennaStarts(base, search, startsM).map((distanceM) => ({ distanceM, value: 0 }))
+      : phaseStarts(context, base, search, kind, startsM);
+  return starts.map((start): Trial => {
+    const model = cloneModel(base);
+    moveEnd(model, start.distanceM);
+    model.end = startingEnd(kind, start.value);
+    if (kind === 'antenna') fitAntenna(context, model, freedom);
+    else {
+      evaluateCost(context, model, freedom, 1);
+      refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 10 });
+    }
+    return { model, kind, energy: residualEnergy(context) };
+  });
+}
+
+/**
+ * Starting distances of an antenna: the echo's tip lies behind the antenna by the delay of its resonances, which in a
+ * narrow sweep is a resolution or more.
+ */
+function antennaStarts(base: LineModel, search: EndSearch, startsM: readonly number[]): number[] {
+  const n = base.boundaryM.length;
+  const meanM = base.priors.boundaryMeanM[n - 1]!;
+  const sigmaM = Math.sqrt(base.priors.boundaryCovariance[n * n - 1]!);
+  const tipM = startsM[0]!;
+  const back = [0, 0.25, 0.5, 0.75, 1].map((share) => tipM - share * search.resolutionM);
+  const starts = [...startsM, ...back].filter((m) => m > 0.05 && Math.abs(m - meanM) < 3.5 * sigmaM + 0.02);
+  if (starts.length === 0) return [meanM];
+  // Starts nearer to each other than a tenth of a resolution settle at the same place.
+  return starts
+    .sort((a, b) => a - b)
+    .filter((m, i, all) => i === 0 || m - all[i - 1]! > 0.1 * search.resolutionM);
 }
 
 /** Moves the end, and with it the joints before it as far as their errors go together. */
@@ -263,6 +304,10 @@ export function moveEnd(model: LineModel, distanceM: number): void {
   for (let i = n - 2; i >= 0; i--)
     model.boundaryM[i] = Math.min(model.boundaryM[i]!, model.boundaryM[i + 1]!);
 }
+
+/** Tips tried, and the least of them as a share of the highest: in a narrow sweep neighbours are nearly alike. */
+const MOST_TIPS = 4;
+const LEAST_TIP = 0.8;
 
 /** Starting distances whose phase fits the kind: the tips of the real part of the trace near each start. */
 function phaseStarts(
@@ -282,10 +327,12 @@ function phaseStarts(
     const trace = residualTrace(base, context.measured, context.weight, { fromM, stepM, points });
     const sign = kind === 'short' ? -1 : 1;
     const real = trace.value.re.map((v) => (kind === 'load' || kind === 'antenna' ? Math.abs(v) : sign * v));
+    const highest = Math.max(...real.map(Math.abs), 1e-9);
     const tips = findPeaks(real)
+      .filter((peak) => Math.abs(real[peak.index]!) > LEAST_TIP * highest)
       .map((peak) => ({ distanceM: fromM + peak.index * stepM, value: trace.value.re[peak.index]! }))
       .sort((a, b) => Math.abs(b.value) - Math.abs(a.value));
-    starts.push(...tips.slice(0, kind === 'antenna' ? 1 : 2));
+    starts.push(...tips.slice(0, MOST_TIPS));
   }
   if (starts.length === 0) starts.push({ distanceM: startsM[0]!, value: top > 0 ? 0.01 : 0 });
   return starts;
@@ -301,6 +348,6 @@ function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number): EndModel
       return { type: 'load', parameters: [(1 + gamma) / (1 - gamma), 0] };
     }
     case 'antenna':
-      return { type: 'antenna', parameters: [Math.max(-0.9, Math.min(0.9, value))] };
+      return { type: 'antenna', parameters: [Math.max(-0.9, Math.min(0.9, value)), 0] };
   }
 }

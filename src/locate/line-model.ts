@@ -506,6 +506,9 @@ function addEndParameters(
   });
 }
 
+/** Highest quality of an antenna's resonance. Common practice: broadband antennas stay below 30. */
+const SHARPEST_ANTENNA = 40;
+
 function endLimits(
   type: EndModel['type'],
   index: number,
@@ -519,14 +522,15 @@ function endLimits(
       ? { sigma: 1, mean: 1, stepLimit: 0.5, minimum: 0.02, maximum: 50 }
       : { sigma: 30e-12, mean: 0, stepLimit: 30e-12, minimum: -1e-9, maximum: 1e-9 };
   }
-  if (index === 0) return { sigma: 1, mean: 0, stepLimit: 0.3, minimum: -1.2, maximum: 1.2 };
+  if (index < 2)
+    return { sigma: index === 0 ? 1 : 0.4, mean: 0, stepLimit: 0.3, minimum: -1.2, maximum: 1.2 };
   const top = frequencyHz[frequencyHz.length - 1]!;
-  switch ((index - 1) % 4) {
+  switch ((index - 2) % 4) {
     case 0:
     case 1:
       return { sigma: 1, mean: 0, stepLimit: 0.5, minimum: -2.2, maximum: 2.2 };
     case 2:
-      return { sigma: null, mean: 0, stepLimit: 5, minimum: 0.5, maximum: 200 };
+      return { sigma: null, mean: 0, stepLimit: 5, minimum: 0.5, maximum: SHARPEST_ANTENNA };
     default:
       return {
         sigma: null,

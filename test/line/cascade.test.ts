@@ -203,7 +203,7 @@ describe('createCascade', () => {
         { type: 'reactive', medium: b, strength: p[6]! },
         { type: 'line', medium: b, lengthM: p[7]!, conductor: 0, dielectric: 0 },
       ],
-      end: { type: 'antenna', parameters: [0.8, -1.4, p[10]!, 12, 0.9e9] },
+      end: { type: 'antenna', parameters: [0.8, 0.05, -1.4, p[10]!, 12, 0.9e9] },
     });
     const slots: Slot[] = [
       { stage: 0, of: 'length', column: 0, factor: 1 },
@@ -228,7 +228,7 @@ describe('createCascade', () => {
     ['short', 'short', [2e-12]],
     ['inductive load', 'load', [1.2, 4e-12]],
     ['capacitive load', 'load', [0.8, -5e-12]],
-    ['antenna', 'antenna', [1, -1.9, 0.1, 15, 0.8e9, 0.2, -0.3, 40, 1.1e9]],
+    ['antenna', 'antenna', [1, 0.1, -1.9, 0.1, 15, 0.8e9, 0.2, -0.3, 40, 1.1e9]],
   ])('linearise agrees with finite differences for the parameters of a %s', (_, type, values) => {
     const f = grid(20e6, 1.5e9, 31);
     const line = medium(cable(), f);
