@@ -118,20 +118,14 @@ function judgeJoint(
     boundary === 0 ? [] : probeAcross(context, bare, atM - settings.resolutionM, atM + settings.resolutionM);
   const others = new Set(model.boundaryM.keys());
   const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
-  const starts = (state: State): number[] => {
-    const found = expected && bestPlaceOf(probes, TYPES_OF[state], expected, variance);
-    return found ? [found.distanceM, atM] : [atM];
-  };
   const tryOut = (state: State): Trial => {
-    const trials = starts(state).map((startM): Trial => {
-      const trial = cloneModel(state === 'sound' && startM === atM ? model : bare);
-      if (boundary > 0) trial.boundaryM[boundary - 1] = startM;
-      dress(trial, boundary, state);
-      const freedom = between(trial, atM - settings.resolutionM, atM + settings.resolutionM);
-      refine(context, trial, freedom, { variance, maxIterations: 10 });
-      return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
-    });
-    return trials.reduce((a, b) => (b.cost < a.cost ? b : a));
+    const place = expected && bestPlaceOf(probes, TYPES_OF[state], expected, variance);
+    const trial = cloneModel(bare);
+    if (place) trial.boundaryM[boundary - 1] = place.distanceM;
+    dress(trial, boundary, state, place);
+    const freedom = between(trial, atM - settings.resolutionM, atM + settings.resolutionM);
+    refine(context, trial, freedom, { variance, maxIterations: 10 });
+    return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
   };
   const sound = tryOut('sound');
   const resistive = tryOut('resistive');
@@ -166,19 +160,31 @@ const TYPES_OF: Readonly<Record<State, readonly PureType[]>> = {
   reactive: ['series-inductance', 'shunt-capacitance'],
 };
 
-/** Gives a joint the lumps of one hypothesis: faces that lie within what is sound, and the fault itself. */
-function dress(model: LineModel, boundary: number, state: State | 'bare'): void {
+/**
+ * Gives a joint the lumps of one hypothesis: faces that lie within what is sound, and the fault itself.
+ *
+ * @param start Strengths that the sweep suggests; a fault takes them, for a fit would hand it only what the faces leave.
+ */
+function dress(
+  model: LineModel,
+  boundary: number,
+  state: State | 'bare',
+  start: { readonly resistive: number; readonly reactive: number } | null = null,
+): void {
   const mine = model.lumps.filter((lump) => lump.boundary === boundary);
+  const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
+  const share = state === 'sound' || state === 'resistive' ? (start?.reactive ?? 0) / 2 : 0;
   for (const lump of mine) {
     if (lump.strengthSigma === null) removeLump(model, lump.id);
-    else if (state === 'bare') lump.strength = 0;
-    else lump.strength = Math.max(-lump.strengthSigma, Math.min(lump.strengthSigma, lump.strength));
+    else {
+      lump.strengthSigma = sigma;
+      lump.strength = Math.max(-sigma, Math.min(sigma, share));
+    }
   }
   if (state !== 'resistive' && state !== 'reactive') return;
-  const top = model.frequencyHz[model.frequencyHz.length - 1]!;
   addLump(model, {
     type: state,
-    strength: state === 'resistive' ? 0.01 : 0.1 * soundStrength(top),
+    strength: start?.[state] || (state === 'resistive' ? 0.01 : 0.1 * sigma),
     strengthSigma: null,
     section: boundary === 0 ? 0 : boundary - 1,
     boundary,

@@ -8,7 +8,7 @@
 import { invertSymmetric, solveSymmetric } from '../numerics/linear-solve.ts';
 import { type FitContext, residualVariance } from './fit-cascade.ts';
 import { boundaryAt, type LineModel } from './line-model.ts';
-import { matchAt, type Probe, PURE_TYPES, type PureType, probeAcross } from './probe.ts';
+import { lumpedTypeOf, matchAt, type Probe, PURE_TYPES, type PureType, probeAcross } from './probe.ts';
 
 /** Where a boundary is expected, given the boundaries that are known already, m. */
 export type Expectation = { readonly meanM: number; readonly sigmaM: number };
@@ -56,21 +56,41 @@ export function expectBoundary(model: LineModel, known: ReadonlySet<number>, ind
   return { meanM, sigmaM: Math.sqrt(Math.max(variance, 1e-8)) };
 }
 
-/** Distance at which some of the types explain most, the place's own prior counted; null when there is none. */
+/** A place for a joint, and what would explain most there. */
+export type JointPlace = {
+  readonly distanceM: number;
+  /** Gain in −2 ln likelihood, the place's own prior counted. */
+  readonly score: number;
+  readonly resistive: number;
+  readonly reactive: number;
+};
+
+/**
+ * Distance at which the given types explain most; null when there is none.
+ *
+ * A resistive and a reactive part in one place don't hide each other: their templates stand at right angles.
+ */
 export function bestPlaceOf(
   probes: readonly Probe[],
   types: readonly PureType[],
   expected: Expectation,
   variance: number,
-): { readonly distanceM: number; readonly score: number } | null {
-  let best: { distanceM: number; score: number } | null = null;
+): JointPlace | null {
+  let best: JointPlace | null = null;
   for (const probe of probes) {
     for (let k = 0; k < probe.points; k++) {
       const distanceM = probe.fromM + k * probe.stepM;
       const off = (distanceM - expected.meanM) / expected.sigmaM;
       let score = -off * off;
-      for (const type of types) score += matchAt(probe, type, k).gain / variance;
-      if (best === null || score > best.score) best = { distanceM, score };
+      let resistive = 0;
+      let reactive = 0;
+      for (const type of types) {
+        const { strength, gain } = matchAt(probe, type, k);
+        score += gain / variance;
+        if (lumpedTypeOf(type) === 'resistive') resistive += strength;
+        else reactive += strength;
+      }
+      if (best === null || score > best.score) best = { distanceM, score, resistive, reactive };
     }
   }
   return best;
