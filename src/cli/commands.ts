@@ -62,7 +62,7 @@ export type VerbSpec = {
 };
 
 /** Flags of every verb that analyses a sweep. */
-const ANALYSIS_FLAGS = [
+export const ANALYSIS_FLAGS = [
   'line',
   'cable',
   'length',

@@ -1,6 +1,7 @@
 /** Help for people and the README's verb section, both from the table of verbs. */
 import { wrapText } from '../plot/cells.ts';
 import {
+  ANALYSIS_FLAGS,
   COMMON_FLAGS,
   type FlagName,
   flagSpec,
@@ -62,23 +63,31 @@ export function verbHelp(verb: VerbName): string {
 
 /** The README's section on verbs, from its first heading to the end of its last table. */
 export function verbsMarkdown(): string {
-  return (['workspace', ...TYPED_VERBS] as const)
-    .map((verb) => {
-      const spec = verbSpec(verb);
-      return [
-        `### \`feedsonde ${verb === 'workspace' ? spec.arguments : usageOf(verb)}\`: ${spec.summary}`,
-        ...spec.description,
-        ['```sh', ...spec.examples.map(({ command, shows }) => `${command}   # ${shows}`), '```'].join('\n'),
-        [
-          '| flag | |',
-          '| --- | --- |',
-          ...spec.flags.map(
-            (flag) => `| \`${flagText(flag).replace('|', '\\|')}\` | ${flagSpec(flag).help} |`,
-          ),
-        ].join('\n'),
-      ].join('\n\n');
-    })
-    .join('\n\n');
+  const sections = (['workspace', ...TYPED_VERBS] as const).map((verb) => {
+    const spec = verbSpec(verb);
+    const shared = ANALYSIS_FLAGS.every((flag) => spec.flags.includes(flag));
+    const own = shared ? spec.flags.filter((flag) => !isAnalysisFlag(flag)) : spec.flags;
+    return [
+      `### \`feedsonde ${verb === 'workspace' ? spec.arguments : usageOf(verb)}\`: ${spec.summary}`,
+      ...spec.description,
+      ['```sh', ...spec.examples.map(({ command, shows }) => `${command}   # ${shows}`), '```'].join('\n'),
+      ...(own.length > 0 ? [flagTable(own)] : []),
+      ...(shared ? [`${own.length > 0 ? 'And the' : 'The'} flags of the verbs that analyse, below.`] : []),
+    ].join('\n\n');
+  });
+  return [...sections, '### Flags of the verbs that analyse a sweep', flagTable(ANALYSIS_FLAGS)].join('\n\n');
+}
+
+function flagTable(flags: readonly FlagName[]): string {
+  return [
+    '| flag | |',
+    '| --- | --- |',
+    ...flags.map((flag) => `| \`${flagText(flag).replace('|', '\\|')}\` | ${flagSpec(flag).help} |`),
+  ].join('\n');
+}
+
+function isAnalysisFlag(flag: FlagName): boolean {
+  return ANALYSIS_FLAGS.some((one) => one === flag);
 }
 
 function usageOf(verb: VerbName): string {

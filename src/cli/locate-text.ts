@@ -33,8 +33,8 @@ export type TextOptions = {
 const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
 
 /** Columns of the table of echoes; the last one takes what is left. */
-const TABLE_HEAD = ['', 'distance', 'seen dB', 'there dB', 'what', 'sure', 'place'] as const;
-const TABLE_RIGHT: ReadonlySet<string> = new Set(['seen dB', 'there dB', 'sure']);
+const TABLE_HEAD = ['', 'distance', 'seen dB', 'corrected', 'what', 'sure', 'place'] as const;
+const TABLE_RIGHT: ReadonlySet<string> = new Set(['seen dB', 'corrected', 'sure']);
 const GAP = '  ';
 
 /** Writes it all; every line at most `columns` wide. */
@@ -128,7 +128,7 @@ function echoTable(analysis: Analysis, { columns, units, paint }: TextOptions): 
       fitText(cell, widths[column] ?? 0, TABLE_RIGHT.has(TABLE_HEAD[column] ?? '') ? 'right' : 'left'),
     );
     const [mark = '', ...others] = cells;
-    return cutText(`${mark} ${others.join(GAP)}`, columns).trimEnd();
+    return cutText(`${mark} ${others.join(GAP)}`.trimEnd(), columns);
   };
   return [
     paint('dim', line(TABLE_HEAD)),
