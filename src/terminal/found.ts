@@ -17,7 +17,10 @@ export type Found = {
   readonly short: string;
   /** Kind and size with its uncertainty. */
   readonly what: string;
+  /** "at joint 3, main run to top jumper". */
   readonly where: string;
+  /** The same in few words: "joint 3", "main run". */
+  readonly place: string;
   readonly confidence: number;
   /** Only for findings. */
   readonly causes: readonly string[];
@@ -61,6 +64,7 @@ function foundOf(analysis: Analysis, finding: Finding): Found {
     short: echo ? echoWords(analysis, echo) : stretchWords(finding.kind),
     what: finding.what,
     where: finding.where,
+    place: echo ? placeOf(analysis, echo) : sectionAt(analysis, finding.distanceM),
     confidence: finding.confidence,
     causes: finding.causes,
     checks: finding.checks,
@@ -79,11 +83,27 @@ function soundEcho(analysis: Analysis, echo: Echo, index: number): Found {
     short: words,
     what: words,
     where: analysis.places[index] ?? '',
+    place: placeOf(analysis, echo),
     confidence: echo.confidence,
     causes: [],
     checks: [],
     bring: [],
   };
+}
+
+function placeOf(analysis: Analysis, echo: Echo): string {
+  if (echo.joint) return `joint ${echo.joint.index}`;
+  return analysis.line.sections[echo.section]?.label ?? '';
+}
+
+/** Label of the section in which a distance lies. */
+function sectionAt({ line }: Analysis, distanceM: number): string {
+  let endM = 0;
+  for (const section of line.sections) {
+    endM += section.lengthM ?? Number.POSITIVE_INFINITY;
+    if (distanceM <= endM) return section.label;
+  }
+  return '';
 }
 
 function stretchWords(kind: Finding['kind']): string {

@@ -9,6 +9,10 @@ export const GUTTER = 7;
 /** From this width on, what was found and what it means stand side by side. */
 const SIDE_BY_SIDE_COLUMNS = 120;
 
+/** The list's share of the columns beside the details, and the least with which its rows can be read. */
+const LIST_SHARE = 0.55;
+const LEAST_LIST_COLUMNS = 72;
+
 /** Rows that are always there: header, strip (2), axis, readout, heading of the list, footer. */
 const FIXED_ROWS = 7;
 
@@ -47,7 +51,7 @@ export function layoutOf(size: {
   const extra = height + 1 - SMALLEST.rows;
   const lower = sideBySide ? 8 + Math.floor(extra * 0.3) : 8 + Math.floor(extra * 0.45);
   const listRows = sideBySide ? lower : Math.floor(lower / 2);
-  const listWidth = sideBySide ? Math.min(Math.floor(columns / 2), 76) : columns;
+  const listWidth = sideBySide ? Math.max(LEAST_LIST_COLUMNS, Math.floor(columns * LIST_SHARE)) : columns;
   return {
     columns,
     height,

@@ -9,26 +9,31 @@ import type { State } from '../state.ts';
 
 /** Widths of the columns; the place takes what is left. */
 const POINTER = 3;
-const DISTANCE = 17;
+const DISTANCE = 16;
 const LEVEL = 9;
 const WORDS = 26;
-const SURE = 5;
+const SURE = 6;
 const GAP = '  ';
+/** Cells at the right for an arrow where the list goes on. */
+const ARROW = 2;
 
 /** From this width on, the level as seen at the port stands beside the corrected one. */
 const BOTH_LEVELS_FROM = 92;
 
-/** Names of the columns. */
+/** From this width on the place is written out. */
+const WHOLE_PLACE_FROM = 96;
+
+/** Names of the columns, as far as they go. */
 export function foundHeading(width: number): readonly Run[] {
-  const titles = columnsOf(width, {
+  const titles = columnsOf(width - ARROW, {
     distance: 'distance',
     seen: 'seen',
-    corrected: width >= BOTH_LEVELS_FROM ? 'corrected' : 'level',
+    corrected: width - ARROW >= BOTH_LEVELS_FROM ? 'corrected' : 'level',
     words: 'what',
     sure: 'sure',
     place: 'where',
   });
-  return fitRuns([run(' '.repeat(POINTER) + titles, 'dim')], width);
+  return [run(' '.repeat(POINTER) + titles, 'dim')];
 }
 
 /** `rows` rows of the list about the chosen one. */
@@ -39,17 +44,17 @@ export function foundRows(
   rows: number,
 ): readonly (readonly Run[])[] {
   const found = foundIn(analysis);
-  if (found.length === 0)
-    return blankTo(
-      rows,
-      [fitRuns([run(`${' '.repeat(POINTER)}nothing stands out along this line`)], width)],
-      width,
-    );
+  const nothing = run(`${' '.repeat(POINTER)}nothing stands out along this line`);
+  if (found.length === 0) return blankTo(rows, [fitRuns([nothing], width)], width);
   const first = firstShown(found.length, state.chosen, rows);
-  const shown = found
-    .slice(first, first + rows)
-    .map((row, i) => foundRow(row, first + i === state.chosen, state.units, width));
-  return blankTo(rows, markMore(shown, first, found.length, width), width);
+  const shown = found.slice(first, first + rows).map((row, i) => {
+    const more = i === 0 && first > 0 ? '↑' : i === rows - 1 && first + rows < found.length ? '↓' : ' ';
+    return [
+      ...foundRow(row, first + i === state.chosen, state.units, width - ARROW),
+      run(fitText(more, ARROW, 'right'), 'key'),
+    ];
+  });
+  return blankTo(rows, shown, width);
 }
 
 /** First row shown so that the chosen one is in view, with a row beyond it where there is one. */
@@ -64,7 +69,7 @@ function foundRow(row: Found, chosen: boolean, units: Units, width: number): rea
     corrected: levelOf(row.correctedReturnLossDb),
     words: row.short,
     sure: percentText(row.confidence),
-    place: row.where.replace(/^at /u, ''),
+    place: width >= WHOLE_PLACE_FROM ? row.where.replace(/^at /u, '') : row.place,
   });
   const glyph = SEVERITY_GLYPHS[row.severity];
   if (chosen) return fitRuns([run(fitText(`›${glyph} ${text}`, width), 'chosen')], width);
@@ -96,21 +101,6 @@ function columnsOf(
 
 function levelOf(returnLossDb: number | null): string {
   return returnLossDb === null ? '' : `${fixedText(-returnLossDb, 1)} dB`;
-}
-
-/** Arrows in the last cell of the first and the last row where the list goes on. */
-function markMore(
-  rows: readonly (readonly Run[])[],
-  first: number,
-  count: number,
-  width: number,
-): readonly (readonly Run[])[] {
-  return rows.map((row, i) => {
-    const above = i === 0 && first > 0;
-    const below = i === rows.length - 1 && first + rows.length < count;
-    if (!above && !below) return row;
-    return [...fitRuns(row, width - 2), run(' '), run(above ? '↑' : '↓', 'key')];
-  });
 }
 
 function blankTo(

@@ -42,5 +42,6 @@ function continued(row: readonly Run[], width: number): readonly Run[] {
   const last = row.at(-1)!;
   const before = row.slice(0, -1);
   const room = width - before.reduce((sum, r) => sum + cellWidth(r.text), 0);
-  return [...before, run(`${cutText(last.text, room - 2)} …`, last.role)];
+  const text = cellWidth(last.text) + 2 <= room ? `${last.text} …` : cutText(`${last.text} …`, room);
+  return [...before, run(text, last.role)];
 }

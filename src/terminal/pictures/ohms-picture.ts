@@ -6,8 +6,10 @@ import { run } from '../../plot/run.ts';
 import { type Domain, paddedDomain } from '../../plot/scale.ts';
 import { chosenOf, spanOf } from '../derived.ts';
 import { foundIn } from '../found.ts';
+import { layoutOf } from '../layout.ts';
 import type { State } from '../state.ts';
 import { findingMark } from './finding-mark.ts';
+import { levelLabel } from './level-label.ts';
 import type { Picture } from './picture.ts';
 
 /** A sound line would otherwise fill the plot with a fraction of an ohm. */
@@ -27,17 +29,20 @@ export function ohmsPicture(state: State, analysis: Analysis): Picture {
       y: { domain: ohmsInView(profile, span, sweep.portOhm), unit: 'Ω' },
       series: [{ x: profile.distanceM, y: profile.impedanceOhm, role: 'ohms' }],
       levels: [{ y: sweep.portOhm, role: 'guide' }],
-      marks: foundIn(analysis)
-        .filter((row) => row.severity !== 'sound' || row === chosen)
-        .map(findingMark)
-        .reverse(),
+      marks: [
+        ...levelLabel('port', sweep.portOhm, span, layoutOf(state).plotWidth),
+        ...foundIn(analysis)
+          .filter((row) => row.severity !== 'sound' || row === chosen)
+          .map(findingMark)
+          .reverse(),
+      ],
       cursor: state.cursorM,
     },
     instead: [],
     atCursor: ohmText(valueAt(profile, state.cursorM)),
     legend: [
       [run(profile.origin === 'measured' ? 'from the sweep' : 'from the solved line')],
-      [run(`dotted: ${fixedText(sweep.portOhm, 0)} Ω`)],
+      [run(`port ${fixedText(sweep.portOhm, 0)} Ω`)],
     ],
   };
 }

@@ -1,7 +1,7 @@
 /** Size of reflection against distance. */
 import type { Analysis } from '../../app/analysis.ts';
 import type { DistanceTrace } from '../../locate/distance-trace.ts';
-import { quantile } from '../../numerics/statistics.ts';
+import { median } from '../../numerics/statistics.ts';
 import type { ChartMark } from '../../plot/chart.ts';
 import { decibelText, fixedText, lengthPerMetre, lengthText } from '../../plot/quantity-text.ts';
 import { type Run, run } from '../../plot/run.ts';
@@ -12,14 +12,14 @@ import { layoutOf } from '../layout.ts';
 import type { State } from '../state.ts';
 import { windowName } from '../window-choices.ts';
 import { findingMark } from './finding-mark.ts';
+import { levelLabel } from './level-label.ts';
 import type { Picture } from './picture.ts';
 
 /** Sign of a ghost: a letter, so that it is not taken for something found. */
 const GHOST_GLYPH = 'g';
 
-/** The axis reaches down to where all but this share of the whole trace lies above, with room below it. */
-const LOWEST_SHARE = 0.02;
-const ROOM_BELOW_DB = 4;
+/** The axis reaches this far below the middle of the whole trace: deep enough for the ripple that is not a finding. */
+const ROOM_BELOW_DB = 14;
 /** The axis spans at least and at most this much below 0 dB. */
 const LEAST_DEPTH_DB = 40;
 const MOST_DEPTH_DB = 120;
@@ -28,20 +28,24 @@ const STEP_DB = 10;
 /** The trace with what was found on it. */
 export function tracePicture(state: State, analysis: Analysis): Picture {
   const trace = traceInUse(state, analysis);
-  const levelDb = levelsOf(trace);
   const span = spanOf(state, analysis);
+  const { plotWidth } = layoutOf(state);
+  const curve = highestPerDot(trace, span, plotWidth);
   const limitDb = trace.corrected ? analysis.line.limits.jointReturnLossDb : null;
   return {
     chart: {
       x: { domain: span, unit: state.units, perUnit: lengthPerMetre(state.units) },
-      y: { domain: depthOf(analysis, levelDb), unit: 'dB' },
-      series: [{ x: trace.distanceM, y: levelDb, role: 'trace' }],
+      y: { domain: depthOf(analysis, curve.y), unit: 'dB' },
+      series: [{ ...curve, role: 'trace' }],
       levels: limitDb === null ? [] : [{ y: -limitDb, role: 'guide' }],
-      marks: marksOf(state, analysis),
+      marks: [
+        ...(limitDb === null ? [] : levelLabel('limit', -limitDb, span, plotWidth)),
+        ...marksOf(state, analysis),
+      ],
       cursor: state.cursorM,
     },
     instead: [],
-    atCursor: decibelText(highestNear(trace, levelDb, state.cursorM, span, layoutOf(state).plotWidth)),
+    atCursor: decibelText(highestAt(curve, state.cursorM)),
     legend: legendOf(state, analysis, trace, limitDb),
   };
 }
@@ -56,8 +60,8 @@ function legendOf(
   return [
     [run(trace.corrected ? 'line loss undone' : 'as measured')],
     [run(`${windowName(windowInUse(state))}, resolves ${resolution}`)],
-    ...(limitDb === null ? [] : [[run(`dotted: joint limit ${fixedText(-limitDb, 0)} dB`)]]),
-    ...(analysis.solution.ghosts.length === 0 ? [] : [[run(`${GHOST_GLYPH}: ghost`)]]),
+    ...(limitDb === null ? [] : [[run(`limit of a joint ${fixedText(-limitDb, 0)} dB`)]]),
+    ...(analysis.solution.ghosts.length === 0 ? [] : [[run(`${GHOST_GLYPH} a ghost`)]]),
   ];
 }
 
@@ -76,9 +80,9 @@ function levelsOf(trace: DistanceTrace): Float64Array {
 /** From the depth of the whole trace, so that the axis stands still while one zooms and pans. */
 function depthOf(analysis: Analysis, levelDb: Float64Array): Domain {
   const whole = levelsOf(analysis.trace).filter(Number.isFinite);
-  const lowest = whole.length > 0 ? quantile(whole, LOWEST_SHARE) - ROOM_BELOW_DB : -LEAST_DEPTH_DB;
+  const lowest = whole.length > 0 ? median(whole) - ROOM_BELOW_DB : -LEAST_DEPTH_DB;
   let highest = 0;
-  for (const value of levelDb) if (value > highest && Number.isFinite(value)) highest = value;
+  for (const value of levelDb) if (value > highest) highest = value;
   const down = Math.max(-MOST_DEPTH_DB, Math.min(-LEAST_DEPTH_DB, lowest));
   return [STEP_DB * Math.floor(down / STEP_DB), STEP_DB * Math.ceil(highest / STEP_DB)];
 }
@@ -95,20 +99,30 @@ function marksOf(state: State, analysis: Analysis): readonly ChartMark[] {
   return [...ghosts, ...found.reverse()];
 }
 
-/** Highest level within half a cell of a place: what the eye sees there. */
-function highestNear(
-  trace: DistanceTrace,
-  levelDb: Float64Array,
-  atM: number,
-  span: Domain,
-  plotWidth: number,
-): number {
+type Curve = { readonly x: Float64Array; readonly y: Float64Array };
+
+/** The highest level in each column of dots: every peak at its height, without the nulls between them. */
+function highestPerDot(trace: DistanceTrace, span: Domain, plotWidth: number): Curve {
   const scale = cellScale(span, plotWidth);
-  const reachM = Math.abs(scale.toValue(1) - scale.toValue(0));
-  let highest = Number.NaN;
+  const levelDb = levelsOf(trace);
+  const y = new Float64Array(scale.dots).fill(Number.NaN);
   for (let i = 0; i < levelDb.length; i++) {
-    if (Math.abs(trace.distanceM[i]! - atM) > reachM) continue;
-    if (!(levelDb[i]! <= highest)) highest = levelDb[i]!;
+    const dot = Math.round(scale.toDot(trace.distanceM[i]!));
+    const level = levelDb[i]!;
+    if (dot >= 0 && dot < scale.dots && Number.isFinite(level) && !(level <= y[dot]!)) y[dot] = level;
   }
+  const filled = Array.from(y.keys()).filter((dot) => !Number.isNaN(y[dot]!));
+  return {
+    x: Float64Array.from(filled, (dot) => scale.toValue(dot)),
+    y: Float64Array.from(filled, (dot) => y[dot]!),
+  };
+}
+
+/** What the curve shows at a distance: the higher of the samples to both sides of it within a cell. */
+function highestAt({ x, y }: Curve, atM: number): number {
+  const dotM = x.length > 1 ? x[1]! - x[0]! : 0;
+  let highest = Number.NaN;
+  for (let i = 0; i < x.length; i++)
+    if (Math.abs(x[i]! - atM) <= dotM && !(y[i]! <= highest)) highest = y[i]!;
   return highest;
 }

@@ -53,10 +53,14 @@ function lowerRows(state: State, layout: Layout): readonly (readonly Run[])[] {
   }
   const list = foundRows(state, analysis, listWidth, listRows);
   const details = detailRows(state, detailWidth, layout.detailRows);
-  const heading = spreadRuns(foundHeading(listWidth), noticeRuns(state), columns);
+  const heading = headingRow(foundHeading(listWidth), noticeRuns(state), columns);
   return sideBySide
     ? [heading, ...list.map((row, i) => fitRuns([...row, ...(details[i] ?? [])], columns))]
     : [heading, ...list, ...details];
+}
+
+function headingRow(titles: readonly Run[], notices: readonly Run[], columns: number): readonly Run[] {
+  return notices.length === 0 ? fitRuns(titles, columns) : spreadRuns(titles, notices, columns);
 }
 
 /** How many notices there are, with their key. */
