@@ -9,12 +9,12 @@ import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance
 import {
   ALL_FREE,
   addLump,
+  around,
   boundaryAt,
   cloneModel,
   type LineModel,
   type Lump,
   lumpDistanceM,
-  onlyLumps,
   removeLump,
   restoreModel,
   sectionAt,
@@ -236,8 +236,12 @@ export function rankTypes(
     const candidate = candidates.find((c) => c.type === type);
     if (!candidate) continue;
     const trial = cloneModel(without);
-    const added = addCandidate(trial, candidate);
-    const freedom = onlyLumps([added.id]);
+    addCandidate(trial, candidate);
+    const freedom = around(
+      trial,
+      candidate.distanceM - settings.resolutionM,
+      candidate.distanceM + settings.resolutionM,
+    );
     refine(context, trial, freedom, { variance, maxIterations: 6 });
     trials.push({ model: trial, candidate, cost: evaluateCost(context, trial, ALL_FREE, variance) });
   }

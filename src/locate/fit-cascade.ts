@@ -15,6 +15,8 @@ export type FitContext = {
   readonly cascade: Cascade;
   /** Measured − modelled of the last evaluation. */
   readonly residual: ComplexArray;
+  /** Modelled reading of the last evaluation, every point. */
+  readonly modelled: ComplexArray;
   readonly columns: ComplexArray[];
   readonly residueModel: ResidueModel;
 };
@@ -46,6 +48,7 @@ export function createFitContext(
     weight,
     cascade: createCascade(frequencyHz),
     residual: complexZeros(frequencyHz.length),
+    modelled: complexZeros(frequencyHz.length),
     columns: [],
     residueModel: createResidueModel(frequencyHz),
   };
@@ -75,7 +78,7 @@ export function refine(
     iterations++;
     const { parameters } = linear.translation;
     const before = parameters.map((parameter) => parameter.get());
-    const step = dampedStep(linear, damping);
+    const step = dampedStep(linear, damping, atBound(linear, before));
     if (step === null) {
       damping *= 10;
       if (damping > 1e9) break;
@@ -187,6 +190,8 @@ export function fitCovariance(linear: Linearisation): Float64Array | null {
 function writeResidual(context: FitContext, model: LineModel, modelled: ComplexArray): void {
   const { residual, measured, weight } = context;
   context.residueModel.apply(model.residue, modelled);
+  context.modelled.re.set(modelled.re);
+  context.modelled.im.set(modelled.im);
   for (let i = 0; i < residual.re.length; i++) {
     residual.re[i] = measured.re[i]! - modelled.re[i]!;
     residual.im[i] = measured.im[i]! - modelled.im[i]!;
@@ -288,11 +293,30 @@ function addPriors(
   return cost;
 }
 
-function dampedStep(linear: Linearisation, damping: number): Float64Array | null {
+/** Parameters that stand at a bound and would go on beyond it. */
+function atBound(linear: Linearisation, values: readonly number[]): boolean[] {
+  return linear.translation.parameters.map((parameter, k) => {
+    const pull = linear.gradient[k]!;
+    return (values[k]! <= parameter.minimum && pull < 0) || (values[k]! >= parameter.maximum && pull > 0);
+  });
+}
+
+function dampedStep(linear: Linearisation, damping: number, held: readonly boolean[]): Float64Array | null {
   const p = linear.gradient.length;
   const damped = linear.curvature.slice();
-  for (let k = 0; k < p; k++) damped[k * p + k] = damped[k * p + k]! * (1 + damping) + 1e-300;
-  return solveSymmetric(damped, linear.gradient);
+  const gradient = linear.gradient.slice();
+  for (let k = 0; k < p; k++) {
+    if (held[k]) {
+      for (let j = 0; j < p; j++) {
+        damped[k * p + j] = 0;
+        damped[j * p + k] = 0;
+      }
+      damped[k * p + k] = 1;
+      gradient[k] = 0;
+    }
+    damped[k * p + k] = damped[k * p + k]! * (1 + damping) + 1e-300;
+  }
+  return solveSymmetric(damped, gradient);
 }
 
 function limitStep(parameter: Parameter, from: number, step: number): number {

@@ -11,7 +11,7 @@ import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance
 import {
   ALL_FREE,
   addLump,
-  between,
+  around,
   boundaryAt,
   cloneModel,
   type LineModel,
@@ -123,7 +123,7 @@ function judgeJoint(
     const trial = cloneModel(bare);
     if (place) trial.boundaryM[boundary - 1] = place.distanceM;
     dress(trial, boundary, state, place);
-    const freedom = between(trial, atM - settings.resolutionM, atM + settings.resolutionM);
+    const freedom = around(trial, atM - settings.resolutionM, atM + settings.resolutionM);
     refine(context, trial, freedom, { variance, maxIterations: 10 });
     return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
   };

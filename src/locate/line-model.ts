@@ -91,6 +91,12 @@ export type Translation = {
 /** Prior of a sound section's impedance around its description, Ω. Common practice: about ±1 Ω. */
 const IMPEDANCE_TOLERANCE_OHM = 1;
 
+/** A sample of a cable differs from its type by this many standard deviations at most; beyond that it is a fault. */
+const SAMPLE_SIGMAS = 2.5;
+
+/** The same for the reactance of a sound connector's face. */
+const FACE_SIGMAS = 1.5;
+
 /** Length that a described section may be off by, beside its velocity tolerance: tape and trim, m and relative. */
 const LENGTH_SIGMA_M = 0.015;
 const LENGTH_SIGMA_RELATIVE = 0.002;
@@ -259,29 +265,29 @@ export const ALL_FREE: Freedom = {
 
 const NOTHING: ReadonlySet<number> = new Set();
 
-/** Nothing but the strength and place of some lumps. */
-export function onlyLumps(ids: Iterable<number>): Freedom {
-  return {
-    loss: false,
-    impedances: NOTHING,
-    boundaries: NOTHING,
-    end: false,
-    residue: false,
-    lumps: new Set(ids),
-  };
-}
+/** Nothing at all: for a look at what is left over. */
+export const NOTHING_FREE: Freedom = {
+  loss: false,
+  impedances: NOTHING,
+  boundaries: NOTHING,
+  end: false,
+  residue: false,
+  lumps: NOTHING,
+};
 
-/** What lies between two distances, and nothing else. */
-export function between(model: LineModel, fromM: number, toM: number): Freedom {
+/**
+ * What stands between two distances, and what it does to everything behind it: a discontinuity delays and weakens the
+ * echoes beyond, which the loss, the joints' places and the end must be free to follow.
+ */
+export function around(model: LineModel, fromM: number, toM: number): Freedom {
   const within = (m: number): boolean => m >= fromM && m <= toM;
-  const boundaries = new Set(model.boundaryM.flatMap((m, i) => (within(m) ? [i] : [])));
-  const impedances = new Set([...boundaries].flatMap((i) => (i + 1 < model.media.length ? [i, i + 1] : [i])));
+  const near = model.boundaryM.flatMap((m, i) => (within(m) ? [i] : []));
   const lumps = model.lumps.filter((lump) => within(lumpDistanceM(model, lump)));
   return {
-    loss: false,
-    impedances,
-    boundaries,
-    end: within(boundaryAt(model, model.boundaryM.length)),
+    loss: true,
+    impedances: new Set(near.flatMap((i) => (i + 1 < model.media.length ? [i, i + 1] : [i]))),
+    boundaries: null,
+    end: true,
     residue: fromM <= 0,
     lumps: new Set(lumps.map((lump) => lump.id)),
   };
@@ -345,8 +351,8 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
           },
           sigma: model.priors.impedanceSigma[i]!,
           stepLimit: 0.2,
-          minimum: -1.5,
-          maximum: 1.5,
+          minimum: -SAMPLE_SIGMAS * model.priors.impedanceSigma[i]!,
+          maximum: SAMPLE_SIGMAS * model.priors.impedanceSigma[i]!,
         })
       : -1,
   );
@@ -447,8 +453,8 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
           sigma: lump.strengthSigma,
           mean: 0,
           stepLimit: Number.POSITIVE_INFINITY,
-          minimum: Number.NEGATIVE_INFINITY,
-          maximum: Number.POSITIVE_INFINITY,
+          minimum: lump.strengthSigma === null ? Number.NEGATIVE_INFINITY : -FACE_SIGMAS * lump.strengthSigma,
+          maximum: lump.strengthSigma === null ? Number.POSITIVE_INFINITY : FACE_SIGMAS * lump.strengthSigma,
         });
         slots.push({ stage, of: 'strength', column, factor: 1 });
       }

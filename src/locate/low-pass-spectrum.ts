@@ -1,6 +1,7 @@
 /** A sweep brought down to 0 Hz on even steps, against the line's own impedance: what a low-pass response is made of. */
 import type { Line, Section } from '../line/line.ts';
 import { type Medium, sectionMedium } from '../line/medium.ts';
+import { groupDelaySPerM, type MediumRun } from '../line/medium-run.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
 import type { Sweep } from '../sweep/sweep.ts';
@@ -32,6 +33,16 @@ const MARGIN_OF_BAND = 2;
 export function delaySupport(frequencyHz: Float64Array, roundTripS: number): DelaySupport {
   const marginS = MARGIN_OF_DELAY * roundTripS + MARGIN_OF_BAND / frequencyHz[frequencyHz.length - 1]!;
   return { fromS: -marginS, toS: roundTripS + marginS };
+}
+
+/**
+ * Mean round-trip group delay to the end of the run over the sweep's band, s.
+ *
+ * @param frequencyHz Frequencies of the run, rising, length n ≥ 2.
+ */
+export function roundTripS(run: MediumRun, frequencyHz: Float64Array): number {
+  const delays = groupDelaySPerM(run, frequencyHz);
+  return 2 * delays.reduce((sum, delay, i) => sum + delay * (run.startM[i + 1]! - run.startM[i]!), 0);
 }
 
 /** Expected error at 0 Hz, against the sweep's RMS, up to which it counts as known. Chosen by the tests of profiles. */

@@ -9,7 +9,7 @@
 import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
 import { type FitContext, linearise } from './fit-cascade.ts';
-import { type LineModel, onlyLumps } from './line-model.ts';
+import { type LineModel, NOTHING_FREE } from './line-model.ts';
 
 /** The pure types: signed strengths tell series from shunt. */
 export type PureType = 'series-resistance' | 'shunt-leakage' | 'series-inductance' | 'shunt-capacitance';
@@ -52,7 +52,7 @@ export type Probe = {
 
 /** Sums of every pure type around a joint, in all stretches that the range touches. */
 export function probeAcross(context: FitContext, model: LineModel, fromM: number, toM: number): Probe[] {
-  const { stages } = linearise(context, model, onlyLumps([]), 1).translation;
+  const { stages } = linearise(context, model, NOTHING_FREE, 1).translation;
   const top = context.frequencyHz.length - 1;
   const probes: Probe[] = [];
   let atM = 0;

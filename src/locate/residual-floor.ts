@@ -46,6 +46,9 @@ export function floorAt(trace: ResidualTrace, k: number, resolutionM: number): n
   return quantileOfSorted(around, FLOOR_QUANTILE);
 }
 
+/** The floor of a place is taken no lower than this share of the whole residual's, whose side lobes reach everywhere. */
+const LEAST_SHARE = 0.03;
+
 /** Noise variance (per real component) that evidence at a distance is weighed with. */
 export function localVariance(
   trace: ResidualTrace,
@@ -62,5 +65,5 @@ export function localVariance(
   around.sort((a, b) => a - b);
   // For Gaussian noise the density is exponential, whose 85 % quantile is 1.9 times its mean.
   const complexVariance = quantileOfSorted(around, FLOOR_QUANTILE) / 1.9;
-  return Math.max(meanVariance, complexVariance / 2);
+  return Math.max(LEAST_SHARE * meanVariance, complexVariance / 2);
 }

@@ -11,8 +11,9 @@ import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type DistanceScale, type LumpVerdict } from './build-echoes.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
-import { findEnd } from './find-end.ts';
+import { type EndSearch, findEnd } from './find-end.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
+import { leaveOutInterference } from './interference.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
@@ -57,18 +58,23 @@ export function solveLine(
     onRound: (round, limit) => onProgress('searching echoes', 0.2 + (0.6 * round) / limit),
   };
   onProgress('finding the end', 0.05);
-  const end = findEnd(context, {
+  const search: EndSearch = {
     line,
     portOhm: sweep.portOhm,
     taper,
     resolutionM: request.resolutionM,
     unambiguousM: request.unambiguousM,
     lossSigma: request.lineDescribed ? DESCRIBED_LOSS_SIGMA : TYPE_ONLY_LOSS_SIGMA,
-  });
+  };
+  let end = findEnd(context, search);
+  const interfered = leaveOutInterference(context);
+  if (interfered.length > 0) end = findEnd(context, search);
   const { model } = end;
   placeJoints(context, model);
   addSoundJoints(model);
   extractEchoes(context, model, settings);
+  // Carriers that stronger things on the line had hidden.
+  interfered.push(...leaveOutInterference(context));
   onProgress('judging joints', 0.8);
   const joints = judgeJoints(context, model, settings);
   evaluateCost(context, model, ALL_FREE, 1);
@@ -89,11 +95,6 @@ export function solveLine(
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
   const endEcho = echoes.find((echo) => echo.joint?.index === model.boundaryM.length + 1)!;
-  const modelled = complexCopy(sweep.gamma);
-  for (let i = 0; i < n; i++) {
-    modelled.re[i] = sweep.gamma.re[i]! - context.residual.re[i]!;
-    modelled.im[i] = sweep.gamma.im[i]! - context.residual.im[i]!;
-  }
   return {
     echoes,
     ghosts: [],
@@ -106,12 +107,30 @@ export function solveLine(
     endsEarly: end.cut,
     scaledTo: scaling.to,
     lossFactor: 1 + model.conductor,
-    modelGamma: modelled,
+    modelGamma: complexCopy(context.modelled),
     residualDb: residualDb(context),
     explained: 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300),
     elements: modelSize(model).elements,
-    notices: scaling.notices,
+    notices: [...scaling.notices, ...interferenceNotices(sweep.frequencyHz, interfered)],
   };
+}
+
+function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]): Notice[] {
+  if (hit.length === 0) return [];
+  const shown = [...hit]
+    .sort((a, b) => a - b)
+    .slice(0, 4)
+    .map((i) => `${(frequencyHz[i]! / 1e6).toFixed(1)} MHz`)
+    .join(', ');
+  const more = hit.length > 4 ? ' and others' : '';
+  return [
+    {
+      code: 'interference',
+      what:
+        `${hit.length} point${hit.length === 1 ? '' : 's'} of the sweep ${hit.length === 1 ? 'is' : 'are'} hit by ` +
+        `interference (${shown}${more}); the model stands in for ${hit.length === 1 ? 'it' : 'them'}`,
+    },
+  ];
 }
 
 /** Confidence of each free lump's type from the competition of types. */
