@@ -14,9 +14,13 @@ const io: Io = {
   env: process.env,
 };
 
-// A reader that had enough (`| head`) is no trouble of ours.
-for (const stream of [io.stdout, io.stderr])
-  stream.on('error', (error: NodeJS.ErrnoException) => process.exit(error.code === 'EPIPE' ? 0 : 2));
+// A reader that had enough (`| head`) is no trouble of ours; a full disk is.
+io.stderr.on('error', (error: NodeJS.ErrnoException) => process.exit(error.code === 'EPIPE' ? 0 : 2));
+io.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code === 'EPIPE') process.exit(0);
+  const what = `standard output could not be written (${error.code ?? error.message})`;
+  io.stderr.write(`feedsonde: ${what}\n  check the disk that it goes to\n`, () => process.exit(2));
+});
 
 process.exitCode = await run(process.argv.slice(2)).catch(async (error: unknown): Promise<ExitStatus> => {
   const what = error instanceof Error ? (error.stack ?? error.message) : String(error);

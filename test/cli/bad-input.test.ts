@@ -1,10 +1,11 @@
 /** Bad input: design section 12, rows 1 to 6. Message, exit status, and nothing half-done. */
+import { spawn } from 'node:child_process';
 import { mkdtemp, open, readdir, readFile, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { LocateDocument } from '../../src/app/json.ts';
-import { type CliResult, ROOT, runCli } from './run-cli.ts';
+import { type CliResult, PROGRAM, ROOT, runCli } from './run-cli.ts';
 
 let folder = '';
 let sample = '';
@@ -285,5 +286,20 @@ describe('row 6: no terminal, or one that goes away', () => {
     const result = await runCli(['cables', '--json'], { closeEarly: true });
     expect(result.stderr).toBe('');
     expect(result.status).toBe(0);
+  });
+
+  it('says when standard output cannot be written', async () => {
+    const full = await open('/dev/full', 'w');
+    const child = spawn(process.execPath, [PROGRAM, 'cables'], { stdio: ['ignore', full.fd, 'pipe'] });
+    let stderr = '';
+    child.stderr?.on('data', (chunk: Buffer) => {
+      stderr += chunk.toString();
+    });
+    const status = await new Promise((resolve) => child.on('close', resolve));
+    await full.close();
+    expect(stderr).toBe(
+      'feedsonde: standard output could not be written (ENOSPC)\n  check the disk that it goes to\n',
+    );
+    expect(status).toBe(2);
   });
 });
