@@ -152,12 +152,15 @@ function insertLump(
   settings: SearchSettings,
   distanceM: number,
 ): boolean {
-  const found = probeAround(context, model, settings, distanceM);
-  const best = found[0];
-  if (!best || best.gain < 12 * residualVariance(context)) return false;
-  if (lumpReturnLossDb(context.frequencyHz, best) > WEAKEST_FLAW_DB) return false;
-  addCandidate(model, best);
-  return true;
+  const variance = residualVariance(context);
+  const found = probeAround(context, model, settings, distanceM).filter(
+    (candidate) =>
+      candidate.gain > 12 * variance && lumpReturnLossDb(context.frequencyHz, candidate) < WEAKEST_FLAW_DB,
+  );
+  if (found.length === 0) return false;
+  const [best] = fitTypes(context, model, settings, found);
+  if (best) restoreModel(model, best.model);
+  return best !== undefined;
 }
 
 /** RMS return loss over the band of a lump by itself, dB. */
@@ -222,29 +225,31 @@ export function rankTypes(
   const lump = model.lumps.find((l) => l.id === id)!;
   const without = cloneModel(model);
   removeLump(without, id);
+  return fitTypes(
+    context,
+    without,
+    settings,
+    probeAround(context, without, settings, lumpDistanceM(model, lump)),
+  );
+}
+
+/** Each candidate added to a copy of the model and fitted with what stands around it; best first. */
+function fitTypes(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  candidates: readonly Candidate[],
+): TypeTrial[] {
   evaluateCost(context, model, ALL_FREE, 1);
   const variance = residualVariance(context);
-  evaluateCost(context, without, ALL_FREE, 1);
-  const candidates = probeAround(context, without, settings, lumpDistanceM(model, lump));
-  const trials: TypeTrial[] = [];
-  for (const type of [
-    'series-resistance',
-    'shunt-leakage',
-    'series-inductance',
-    'shunt-capacitance',
-  ] as const) {
-    const candidate = candidates.find((c) => c.type === type);
-    if (!candidate) continue;
-    const trial = cloneModel(without);
+  const trials = candidates.map((candidate): TypeTrial => {
+    const trial = cloneModel(model);
     addCandidate(trial, candidate);
-    const freedom = around(
-      trial,
-      candidate.distanceM - settings.resolutionM,
-      candidate.distanceM + settings.resolutionM,
-    );
-    refine(context, trial, freedom, { variance, maxIterations: 6 });
-    trials.push({ model: trial, candidate, cost: evaluateCost(context, trial, ALL_FREE, variance) });
-  }
+    const { distanceM } = candidate;
+    const freedom = around(trial, distanceM - settings.resolutionM, distanceM + settings.resolutionM);
+    refine(context, trial, freedom, { variance, maxIterations: 8 });
+    return { model: trial, candidate, cost: evaluateCost(context, trial, ALL_FREE, variance) };
+  });
   return trials.sort((a, b) => a.cost - b.cost);
 }
 

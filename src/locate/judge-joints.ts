@@ -19,7 +19,7 @@ import {
   restoreModel,
 } from './line-model.ts';
 import { bestPlaceOf, expectBoundary } from './place-joints.ts';
-import { type PureType, probeAcross } from './probe.ts';
+import { lumpedTypeOf, PURE_TYPES, probeAcross, pureTypeOf } from './probe.ts';
 import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 
 export type JointState =
@@ -93,10 +93,8 @@ export function judgeJoints(context: FitContext, model: LineModel, settings: Sea
   return verdicts;
 }
 
-type State = 'sound' | 'resistive' | 'reactive';
-
 type Trial = {
-  readonly state: State;
+  readonly state: JointState;
   readonly model: LineModel;
   readonly cost: number;
 };
@@ -114,51 +112,44 @@ function judgeJoint(
   const variance = localVariance(trace, atM, settings.resolutionM, mean);
   const bare = cloneModel(model);
   dress(bare, boundary, 'bare');
-  const probes =
-    boundary === 0 ? [] : probeAcross(context, bare, atM - settings.resolutionM, atM + settings.resolutionM);
+  const reachM = settings.resolutionM;
+  const probes = boundary === 0 ? [] : probeAcross(context, bare, atM - reachM, atM + reachM);
   const others = new Set(model.boundaryM.keys());
   const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
-  const tryOut = (state: State): Trial => {
-    const place = expected && bestPlaceOf(probes, TYPES_OF[state], expected, variance);
+  const tryOut = (state: JointState): Trial => {
+    const place =
+      expected && bestPlaceOf(probes, state === 'sound' ? PURE_TYPES : [state], expected, variance);
     const trial = cloneModel(bare);
     if (place) trial.boundaryM[boundary - 1] = place.distanceM;
     dress(trial, boundary, state, place);
-    const freedom = around(trial, atM - settings.resolutionM, atM + settings.resolutionM);
-    refine(context, trial, freedom, { variance, maxIterations: 10 });
+    refine(context, trial, around(trial, atM - reachM, atM + reachM), { variance, maxIterations: 10 });
     return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
   };
   const sound = tryOut('sound');
-  const resistive = tryOut('resistive');
-  const reactive = tryOut('reactive');
-  const r = resistiveStrength(resistive.model, boundary);
-  const x = reactiveStrength(reactive.model, boundary);
-  const resistiveOdds = Math.abs(r) < MIMIC_STRENGTH ? 0 : (sound.cost - resistive.cost) / 2;
-  const reactiveBad =
-    lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength: x }) < REACTIVE_FAULT_RETURN_LOSS_DB;
-  const reactiveOdds = reactiveBad ? (sound.cost - reactive.cost) / 2 : 0;
-  const best = Math.max(resistiveOdds, reactiveOdds);
-  if (best < FAULT_ODDS) {
+  const faults = PURE_TYPES.map(tryOut).sort((a, b) => a.cost - b.cost);
+  const bad = faults.filter((trial) => isBeyondSound(trial, boundary));
+  const best = bad[0];
+  const odds = best ? (sound.cost - best.cost) / 2 : 0;
+  if (!best || best.state === 'sound' || odds < FAULT_ODDS) {
     restoreModel(model, sound.model);
     return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
   }
-  const isResistive = resistiveOdds >= reactiveOdds;
-  restoreModel(model, isResistive ? resistive.model : reactive.model);
-  const state: JointState = isResistive
-    ? r > 0
-      ? 'series-resistance'
-      : 'shunt-leakage'
-    : x > 0
-      ? 'series-inductance'
-      : 'shunt-capacitance';
-  const lead = Math.abs(reactive.cost - resistive.cost) / 2;
-  return { boundary, state, clear: lead >= KIND_ODDS, odds: best, lead };
+  restoreModel(model, best.model);
+  const rival = faults.find((trial) => trial.state !== best.state);
+  const lead = rival ? Math.abs(rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY;
+  return { boundary, state: best.state, clear: lead >= KIND_ODDS, odds, lead };
 }
 
-const TYPES_OF: Readonly<Record<State, readonly PureType[]>> = {
-  sound: ['series-resistance', 'shunt-leakage', 'series-inductance', 'shunt-capacitance'],
-  resistive: ['series-resistance', 'shunt-leakage'],
-  reactive: ['series-inductance', 'shunt-capacitance'],
-};
+/** Whether a fitted fault is of its own kind and larger than what a sound joint may show. */
+function isBeyondSound({ model, state }: Trial, boundary: number): boolean {
+  if (state === 'sound') return false;
+  const type = lumpedTypeOf(state);
+  const strength = (type === 'resistive' ? resistiveStrength : reactiveStrength)(model, boundary);
+  if (strength === 0 || pureTypeOf(type, strength) !== state) return false;
+  return type === 'resistive'
+    ? Math.abs(strength) >= MIMIC_STRENGTH
+    : lumpReturnLossDb(model.frequencyHz, { type, strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
+}
 
 /**
  * Gives a joint the lumps of one hypothesis: faces that lie within what is sound, and the fault itself.
@@ -168,12 +159,12 @@ const TYPES_OF: Readonly<Record<State, readonly PureType[]>> = {
 function dress(
   model: LineModel,
   boundary: number,
-  state: State | 'bare',
+  state: JointState | 'bare',
   start: { readonly resistive: number; readonly reactive: number } | null = null,
 ): void {
   const mine = model.lumps.filter((lump) => lump.boundary === boundary);
   const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
-  const share = state === 'sound' || state === 'resistive' ? (start?.reactive ?? 0) / 2 : 0;
+  const share = state === 'sound' ? (start?.reactive ?? 0) / 2 : 0;
   for (const lump of mine) {
     if (lump.strengthSigma === null) removeLump(model, lump.id);
     else {
@@ -181,10 +172,12 @@ function dress(
       lump.strength = Math.max(-sigma, Math.min(sigma, share));
     }
   }
-  if (state !== 'resistive' && state !== 'reactive') return;
+  if (state === 'bare' || state === 'sound') return;
+  const type = lumpedTypeOf(state);
+  const sign = state === 'shunt-leakage' || state === 'shunt-capacitance' ? -1 : 1;
   addLump(model, {
-    type: state,
-    strength: start?.[state] || (state === 'resistive' ? 0.01 : 0.1 * sigma),
+    type,
+    strength: start?.[type] || sign * (type === 'resistive' ? 0.01 : 0.1 * sigma),
     strengthSigma: null,
     section: boundary === 0 ? 0 : boundary - 1,
     boundary,
