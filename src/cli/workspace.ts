@@ -23,6 +23,8 @@ export type WorkspaceInput = {
   readonly stdout: NodeJS.WriteStream;
   readonly env: Readonly<Record<string, string | undefined>>;
   readonly initial: AnalyseRequest;
+  /** What was decided without being asked while the request was put together. */
+  readonly notices: readonly Notice[];
   readonly units: Units;
   readonly solver: Solver;
   readonly files: { readSweep(file: string): Promise<Outcome<Uint8Array>> };
@@ -58,6 +60,7 @@ export async function runWorkspace(
       stdout: io.stdout,
       env: settings.colour ? io.env : { ...io.env, NO_COLOR: '1' },
       initial: request,
+      notices: prepared.notices,
       units: settings.units,
       solver,
       files: { readSweep: (file) => readBytes(file) },

@@ -3,7 +3,7 @@ import type { Analysis } from '../app/analysis.ts';
 import type { AnalyseRequest, Solver } from '../app/solver.ts';
 import type { Cable } from '../line/cable.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
-import type { Outcome } from '../outcome.ts';
+import type { Notice, Outcome } from '../outcome.ts';
 import type { Units } from '../plot/quantity-text.ts';
 
 /** Which piece of the trace is wanted, and how. */
@@ -44,6 +44,8 @@ export type WorkspaceConfig = {
   readonly host: Host;
   /** What to open; null shows how to open something. */
   readonly initial: AnalyseRequest | null;
+  /** What was decided without being asked while the first question was put together. */
+  readonly notices?: readonly Notice[];
   readonly units: Units;
   readonly solver: Solver;
   readonly files: FileAccess;

@@ -154,7 +154,7 @@ const WORK: readonly KeyRow[] = [
   {
     group: 'changing',
     shown: 'l',
-    does: 'trace with the loss of the line undone, or as measured',
+    does: "trace with the line's loss undone, or as measured",
     needsAnswer: true,
     strokes: { l: { type: 'toggleCorrected' } },
   },
@@ -235,7 +235,7 @@ const PICK: readonly KeyRow[] = [
     group: 'looking',
     shown: '↑ ↓',
     does: 'move',
-    hint: { keys: '↑↓', word: 'move', rank: 0 },
+    hint: { keys: '↑↓', word: 'move', rank: 1 },
     strokes: {
       up: { type: 'pickMove', by: -1 },
       down: { type: 'pickMove', by: 1 },
@@ -249,7 +249,7 @@ const PICK: readonly KeyRow[] = [
     group: 'changing',
     shown: 'Enter',
     does: 'take it',
-    hint: { keys: 'Enter', word: 'take', rank: 1 },
+    hint: { keys: 'Enter', word: 'take', rank: 2 },
     strokes: { enter: { type: 'pickTake' } },
   },
   {
@@ -263,7 +263,7 @@ const PICK: readonly KeyRow[] = [
     group: 'program',
     shown: 'Esc',
     does: 'leave it as it was',
-    hint: { keys: 'Esc', word: 'leave it', rank: 2 },
+    hint: { keys: 'Esc', word: 'leave it', rank: 0 },
     strokes: { esc: { type: 'closePanel' }, 'ctrl+c': { type: 'quit' } },
   },
   ...ALWAYS,

@@ -2,7 +2,7 @@
 import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 import type { State } from './state.ts';
-import type { Step } from './update.ts';
+import type { Step } from './step.ts';
 
 export type Program = {
   readonly dispatch: (event: Event) => void;

@@ -27,6 +27,7 @@ export async function startWorkspace(config: WorkspaceConfig): Promise<void> {
       units: config.units,
       cables: config.cables,
       cautions: config.cautions,
+      openingNotices: config.notices ?? [],
     }),
     update,
     perform: createPerform({

@@ -62,6 +62,8 @@ export type State = {
   /** What can be chosen; never changes. */
   readonly cables: readonly Cable[];
   readonly cautions: Cautions;
+  /** What was decided without being asked before the first question; belongs to every answer. */
+  readonly openingNotices: readonly Notice[];
 };
 
 /** The state before the first event. */
@@ -72,6 +74,7 @@ export function initialState(start: {
   readonly units: Units;
   readonly cables: readonly Cable[];
   readonly cautions: Cautions;
+  readonly openingNotices?: readonly Notice[];
 }): State {
   return {
     columns: start.columns,
@@ -93,6 +96,7 @@ export function initialState(start: {
     remark: null,
     cables: start.cables,
     cautions: start.cautions,
+    openingNotices: start.openingNotices ?? [],
   };
 }
 

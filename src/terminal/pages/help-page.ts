@@ -4,8 +4,8 @@ import { run } from '../../plot/run.ts';
 import { KEY_TABLE } from '../keys.ts';
 import type { Page } from './page.ts';
 
-const GROUP = 17;
-const KEYS = 11;
+const GROUP = 16;
+const KEYS = 10;
 
 /** One line a row of the table; a group is named beside its first. */
 export function helpPage(width: number): Page {

@@ -8,7 +8,7 @@ import { firstShown } from './found-list.ts';
 
 const TITLES: Readonly<Record<Choice, string>> = {
   window: 'window of the trace',
-  cable: 'cable of the longest section; taking one solves again',
+  cable: 'cable of the longest section',
 };
 
 const GAP = '   ';

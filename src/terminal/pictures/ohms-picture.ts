@@ -69,7 +69,8 @@ function valueAt({ distanceM, impedanceOhm }: ImpedanceProfile, atM: number): nu
   return impedanceOhm[after - 1]! + share * (impedanceOhm[after]! - impedanceOhm[after - 1]!);
 }
 
-function whyNoOhms({ sweep }: Analysis): readonly string[] {
+function whyNoOhms({ sweep, reach }: Analysis): readonly string[] {
+  if (reach.impedanceProfile !== 'no') return ['This answer carries no ohms along the line.'];
   const startHz = sweep.frequencyHz[0]!;
   const stopHz = sweep.frequencyHz.at(-1)!;
   const stepHz = (stopHz - startHz) / (sweep.frequencyHz.length - 1);

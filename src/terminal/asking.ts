@@ -1,0 +1,53 @@
+/** Questions to the solver, and its answers. */
+import type { AnalyseRequest } from '../app/solver.ts';
+import type { Notice } from '../outcome.ts';
+import { outerSpan } from './derived.ts';
+import type { Event } from './events.ts';
+import { foundIn } from './found.ts';
+import { insideOf, inView } from './looking.ts';
+import type { State } from './state.ts';
+import type { Step } from './step.ts';
+
+/** Puts a question in place of the present one; the answer on the screen goes at once. */
+export function ask(state: State, request: AnalyseRequest, stage: string): readonly [State, number] {
+  const id = state.lastId + 1;
+  return [{ ...state, request, lastId: id, solve: { phase: 'running', id, stage, fraction: 0 } }, id];
+}
+
+/** Takes the answer: the first of what was found is chosen, a zoomed view stays as far as it can. */
+export function solved(state: State, event: Extract<Event, { type: 'solved' }>): State {
+  if (!event.outcome.ok)
+    return { ...state, solve: { phase: 'failed', id: event.id, problems: event.outcome.problems } };
+  const analysis = event.outcome.value;
+  const notices = uniqueNotices([...state.openingNotices, ...event.outcome.notices, ...analysis.notices]);
+  const first = foundIn(analysis)[0];
+  const ready: State = {
+    ...state,
+    solve: { phase: 'ready', id: event.id, analysis, notices },
+    chosen: 0,
+    cursorM: first?.distanceM ?? analysis.solution.lengthM,
+  };
+  return state.span === null ? ready : inView({ ...ready, span: insideOf(state.span, outerSpan(analysis)) });
+}
+
+function uniqueNotices(notices: readonly Notice[]): readonly Notice[] {
+  return [...new Map(notices.map((notice) => [`${notice.code} ${notice.what}`, notice])).values()];
+}
+
+/** Asks for the sweep file anew. */
+export function readAgain(state: State): Step {
+  if (!state.request) return [state, []];
+  if (state.request.sweepFile === '-')
+    return [{ ...state, remark: 'this sweep came on standard input and cannot be read again' }, []];
+  const [next, id] = ask(state, state.request, 'reading the sweep');
+  return [next, [{ type: 'stopSolving' }, { type: 'readSweep', id, file: state.request.sweepFile }]];
+}
+
+/** Solves with the bytes just read. */
+export function sweepRead(state: State, event: Extract<Event, { type: 'sweepRead' }>): Step {
+  if (!event.outcome.ok)
+    return [{ ...state, solve: { phase: 'failed', id: event.id, problems: event.outcome.problems } }, []];
+  if (!state.request) return [state, []];
+  const request = { ...state.request, sweepBytes: event.outcome.value, windowSpec: state.windowSpec };
+  return [{ ...state, request }, [{ type: 'solve', id: event.id, request }]];
+}
