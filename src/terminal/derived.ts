@@ -50,7 +50,7 @@ export function spanOf(state: State, analysis: Analysis): Domain {
 /** The row chosen in the list; null when nothing was found at all. */
 export function chosenOf(state: State): Found | null {
   const analysis = analysisOf(state);
-  return analysis ? (foundIn(analysis)[state.chosen] ?? null) : null;
+  return analysis ? (foundIn(analysis, state.units)[state.chosen] ?? null) : null;
 }
 
 /** The window in use; while windows are being chosen, the one under the pointer. */

@@ -1,8 +1,10 @@
 /** What was found along the line, worst first: the rows of the list. */
 import type { Analysis } from '../app/analysis.ts';
+import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { echoWords, STRETCH_WORDS } from '../app/echo-words.ts';
 import type { Finding } from '../assess/finding.ts';
 import type { Echo, Severity, StretchKind } from '../locate/echo.ts';
+import type { Units } from '../plot/quantity-text.ts';
 
 /** One row of the list: a finding, or an echo that is as it should be. */
 export type Found = {
@@ -30,21 +32,32 @@ export type Found = {
 
 const SEVERITY_ORDER: Readonly<Record<Severity, number>> = { fault: 0, watch: 1, sound: 2 };
 
-const listed = new WeakMap<Analysis, readonly Found[]>();
+const listed: Readonly<Record<Units, WeakMap<Analysis, readonly Found[]>>> = {
+  m: new WeakMap(),
+  ft: new WeakMap(),
+};
 
-/** The findings by severity and distance, then the echoes without a finding by distance. */
-export function foundIn(analysis: Analysis): readonly Found[] {
-  const known = listed.get(analysis);
+/**
+ * The findings by severity and distance, then the echoes without a finding by distance.
+ *
+ * @param units Of lengths in the words; the numbers are metres.
+ */
+export function foundIn(analysis: Analysis, units: Units = 'm'): readonly Found[] {
+  const known = listed[units].get(analysis);
   if (known) return known;
+  const rows = rowsOf(analysisInUnits(analysis, units));
+  listed[units].set(analysis, rows);
+  return rows;
+}
+
+function rowsOf(analysis: Analysis): readonly Found[] {
   const spokenOf = new Set(analysis.findings.map((finding) => finding.echo));
   const others = analysis.solution.echoes.flatMap((echo, index): readonly Found[] =>
     spokenOf.has(index) ? [] : [soundEcho(analysis, echo, index)],
   );
-  const rows = [...analysis.findings.map((finding) => foundOf(analysis, finding)), ...others].sort(
+  return [...analysis.findings.map((finding) => foundOf(analysis, finding)), ...others].sort(
     (a, b) => SEVERITY_ORDER[a.severity] - SEVERITY_ORDER[b.severity] || a.distanceM - b.distanceM,
   );
-  listed.set(analysis, rows);
-  return rows;
 }
 
 /** How many faults and watches there are. */

@@ -10,7 +10,7 @@ import type { State } from '../state.ts';
 /** Widths of the columns; the place takes what is left. */
 const POINTER = 3;
 const DISTANCE = 16;
-const LEVEL = 9;
+const LEVEL = 8;
 const WORDS = 26;
 const SURE = 6;
 const GAP = '  ';
@@ -31,7 +31,7 @@ export function foundHeading(width: number): readonly Run[] {
     corrected: width - ARROW >= BOTH_LEVELS_FROM ? 'corrected' : 'level',
     words: 'what',
     sure: 'sure',
-    place: 'where',
+    place: width - ARROW >= WHOLE_PLACE_FROM ? 'where' : 'at',
   });
   return [run(' '.repeat(POINTER) + titles, 'dim')];
 }
@@ -43,7 +43,7 @@ export function foundRows(
   width: number,
   rows: number,
 ): readonly (readonly Run[])[] {
-  const found = foundIn(analysis);
+  const found = foundIn(analysis, state.units);
   const nothing = run(`${' '.repeat(POINTER)}nothing stands out along this line`);
   if (found.length === 0) return blankTo(rows, [fitRuns([nothing], width)], width);
   const first = firstShown(found.length, state.chosen, rows);
@@ -89,8 +89,8 @@ function columnsOf(
 ): string {
   return (
     fitText(cells.distance, DISTANCE) +
-    (width >= BOTH_LEVELS_FROM ? fitText(cells.seen, LEVEL, 'right') : '') +
-    fitText(cells.corrected, width >= BOTH_LEVELS_FROM ? LEVEL + 2 : LEVEL, 'right') +
+    (width >= BOTH_LEVELS_FROM ? fitText(cells.seen, LEVEL + 1, 'right') : '') +
+    fitText(cells.corrected, width >= BOTH_LEVELS_FROM ? LEVEL + 3 : LEVEL, 'right') +
     GAP +
     fitText(cells.words, WORDS) +
     fitText(cells.sure, SURE, 'right') +

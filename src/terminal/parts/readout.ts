@@ -38,7 +38,7 @@ function placeRuns(state: State, analysis: Analysis, layout: Layout): readonly R
   const nearM = (NEAR_CELLS * (to - from)) / layout.plotWidth;
   const isNear = ({ distanceM }: { readonly distanceM: number }) =>
     Math.abs(distanceM - state.cursorM) <= nearM;
-  const found = foundIn(analysis).find(isNear);
+  const found = foundIn(analysis, state.units).find(isNear);
   if (found) return [run(`${SEVERITY_GLYPHS[found.severity]} ${found.short}`, found.severity)];
   const ghost = analysis.solution.ghosts.find(isNear);
   if (ghost) {

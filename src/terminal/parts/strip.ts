@@ -26,7 +26,7 @@ function stripSpec(state: State): LineStripSpec | null {
       domainM: spanOf(state, analysis),
       sections: stripSections(analysis.line, analysis.solution.lengthM, state.units),
       endText: endText(analysis),
-      marks: foundIn(analysis).map((row) => ({
+      marks: foundIn(analysis, state.units).map((row) => ({
         distanceM: row.distanceM,
         severity: row.severity,
         chosen: row === chosen,

@@ -31,7 +31,7 @@ export function ohmsPicture(state: State, analysis: Analysis): Picture {
       levels: [{ y: sweep.portOhm, role: 'guide' }],
       marks: [
         ...levelLabel('port', sweep.portOhm, span, layoutOf(state).plotWidth),
-        ...foundIn(analysis)
+        ...foundIn(analysis, state.units)
           .filter((row) => row.severity !== 'sound' || row === chosen)
           .map(findingMark)
           .reverse(),

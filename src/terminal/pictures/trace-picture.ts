@@ -24,6 +24,8 @@ const ROOM_BELOW_DB = 14;
 const LEAST_DEPTH_DB = 40;
 const MOST_DEPTH_DB = 120;
 const STEP_DB = 10;
+/** A peak less than this above 0 dB is drawn at the top: a full reflection and its noise. */
+const ROOM_ABOVE_DB = 2;
 
 /** The trace with what was found on it. */
 export function tracePicture(state: State, analysis: Analysis): Picture {
@@ -83,6 +85,7 @@ function depthOf(analysis: Analysis, levelDb: Float64Array): Domain {
   const lowest = whole.length > 0 ? median(whole) - ROOM_BELOW_DB : -LEAST_DEPTH_DB;
   let highest = 0;
   for (const value of levelDb) if (value > highest) highest = value;
+  if (highest < ROOM_ABOVE_DB) highest = 0;
   const down = Math.max(-MOST_DEPTH_DB, Math.min(-LEAST_DEPTH_DB, lowest));
   return [STEP_DB * Math.floor(down / STEP_DB), STEP_DB * Math.ceil(highest / STEP_DB)];
 }
@@ -93,7 +96,7 @@ function marksOf(state: State, analysis: Analysis): readonly ChartMark[] {
     (ghost): ChartMark => ({ x: ghost.distanceM, y: null, glyph: GHOST_GLYPH, role: 'dim' }),
   );
   const chosen = chosenOf(state);
-  const found = foundIn(analysis)
+  const found = foundIn(analysis, state.units)
     .filter((row) => row.severity !== 'sound' || row === chosen)
     .map(findingMark);
   return [...ghosts, ...found.reverse()];
