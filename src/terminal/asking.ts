@@ -1,7 +1,8 @@
 /** Questions to the solver, and its answers. */
 import type { AnalyseRequest } from '../app/solver.ts';
 import type { Notice } from '../outcome.ts';
-import { outerSpan } from './derived.ts';
+import { lookWish, outerSpan } from './derived.ts';
+import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 import { foundIn } from './found.ts';
 import { insideOf, inView } from './looking.ts';
@@ -11,7 +12,16 @@ import type { Step } from './step.ts';
 /** Puts a question in place of the present one; the answer on the screen goes at once. */
 export function ask(state: State, request: AnalyseRequest, stage: string): readonly [State, number] {
   const id = state.lastId + 1;
-  return [{ ...state, request, lastId: id, solve: { phase: 'running', id, stage, fraction: 0 } }, id];
+  return [
+    { ...state, request, lastId: id, solve: { phase: 'running', id, stage, fraction: 0, look: null } },
+    id,
+  ];
+}
+
+/** Solves, and has a first look at the described line meanwhile. */
+export function solveEffects(state: State, id: number, request: AnalyseRequest): readonly Effect[] {
+  const view = lookWish(state, request);
+  return [{ type: 'solve', id, request }, ...(view ? [{ type: 'look', id, request, view } as const] : [])];
 }
 
 /** Takes the answer: the first of what was found is chosen, a zoomed view stays as far as it can. */
@@ -49,5 +59,6 @@ export function sweepRead(state: State, event: Extract<Event, { type: 'sweepRead
     return [{ ...state, solve: { phase: 'failed', id: event.id, problems: event.outcome.problems } }, []];
   if (!state.request) return [state, []];
   const request = { ...state.request, sweepBytes: event.outcome.value, windowSpec: state.windowSpec };
-  return [{ ...state, request }, [{ type: 'solve', id: event.id, request }]];
+  const next = { ...state, request };
+  return [next, solveEffects(next, event.id, request)];
 }

@@ -17,6 +17,9 @@ export type TraceView = {
   readonly corrected: boolean;
 };
 
+/** Which piece of the trace is wanted before the line is solved. */
+export type LookView = Pick<TraceView, 'fromM' | 'toM' | 'points'>;
+
 /** Draws a piece of an analysis' trace anew. */
 export type TraceWindow = (analysis: Analysis, view: TraceView) => DistanceTrace;
 

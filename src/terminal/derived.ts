@@ -1,9 +1,10 @@
 /** What follows from the state: spans, the chosen row, the trace that is wanted. Pure and cheap. */
 import type { Analysis } from '../app/analysis.ts';
+import type { AnalyseRequest } from '../app/solver.ts';
 import { describedLengthM } from '../line/line.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import { DOTS_ACROSS, type Domain } from '../plot/scale.ts';
-import type { TraceView } from './config.ts';
+import type { LookView, TraceView } from './config.ts';
 import { type Found, foundIn } from './found.ts';
 import { layoutOf, tooSmall } from './layout.ts';
 import { picksOf } from './picks.ts';
@@ -80,6 +81,17 @@ export function traceWish(state: State): TraceView | null {
     windowSpec: windowInUse(state),
     corrected: state.corrected,
   };
+}
+
+/** Samples per dot of the first look: the width of an echo is not known yet. */
+const LOOK_SAMPLES_PER_DOT = 12;
+
+/** The piece of trace for a first look at the described line; null when its length is not described. */
+export function lookWish(state: State, request: AnalyseRequest): LookView | null {
+  const lengthM = describedLengthM(request.line);
+  if (lengthM === null || !(lengthM > 0) || tooSmall(state)) return null;
+  const [fromM, toM] = lineSpan(lengthM);
+  return { fromM, toM, points: layoutOf(state).plotWidth * DOTS_ACROSS * LOOK_SAMPLES_PER_DOT };
 }
 
 /** The trace to draw: the one computed for this view, or the analysis' own until it is there. */

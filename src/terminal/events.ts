@@ -35,6 +35,7 @@ export type WorldEvent =
   | { readonly type: 'started' }
   | { readonly type: 'resized'; readonly columns: number; readonly rows: number }
   | { readonly type: 'progress'; readonly id: number; readonly stage: string; readonly fraction: number }
+  | { readonly type: 'looked'; readonly id: number; readonly trace: DistanceTrace }
   | { readonly type: 'solved'; readonly id: number; readonly outcome: Outcome<Analysis> }
   | { readonly type: 'sweepRead'; readonly id: number; readonly outcome: Outcome<Uint8Array> }
   | { readonly type: 'traced'; readonly id: number; readonly trace: DistanceTrace };

@@ -1,7 +1,8 @@
 /** The one place where effects are done. */
-import type { Solver } from '../app/solver.ts';
+import type { AnalyseRequest, Solver } from '../app/solver.ts';
+import type { DistanceTrace } from '../locate/distance-trace.ts';
 import { assertNever, fail } from '../outcome.ts';
-import type { FileAccess, TraceWindow } from './config.ts';
+import type { FileAccess, LookView, TraceWindow } from './config.ts';
 import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 
@@ -13,6 +14,8 @@ export type World = {
   readonly solver: Solver;
   readonly files: FileAccess;
   readonly traceWindow: TraceWindow;
+  /** A first trace of the described line; null when there is none. */
+  readonly firstLook: (request: AnalyseRequest, view: LookView) => Promise<DistanceTrace | null>;
   readonly redraw: () => void;
   readonly suspend: () => void;
   readonly quit: () => void;
@@ -66,6 +69,13 @@ export function createPerform(world: World): (effect: Effect, dispatch: (event: 
     switch (effect.type) {
       case 'solve':
         return solve(effect, dispatch);
+      case 'look':
+        // A first look is no answer: when it fails, the answer itself will say why.
+        world.firstLook(effect.request, effect.view).then(
+          (trace) => trace && dispatch({ type: 'looked', id: effect.id, trace }),
+          () => {},
+        );
+        return;
       case 'stopSolving':
         stop?.();
         stop = null;

@@ -1,5 +1,5 @@
 /** Choosing a window or a cable from a list. */
-import { ask } from './asking.ts';
+import { ask, solveEffects } from './asking.ts';
 import { longestCoax, withCable } from './change-cable.ts';
 import { picksOf, presentPick } from './picks.ts';
 import { analysisOf, type Choice, type State } from './state.ts';
@@ -51,5 +51,5 @@ function takeCable(state: State, cableId: string): Step {
   if (!cable || !line || !state.request) return [state, []];
   const request = { ...state.request, line, windowSpec: state.windowSpec };
   const [next, id] = ask(state, request, `solving with ${cable.name}`);
-  return [next, [{ type: 'solve', id, request }]];
+  return [next, solveEffects(next, id, request)];
 }

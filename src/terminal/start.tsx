@@ -34,6 +34,10 @@ export async function startWorkspace(config: WorkspaceConfig): Promise<void> {
       solver,
       files,
       traceWindow,
+      firstLook: async (request, view) => {
+        const { firstLook } = await import('../app/first-look.ts');
+        return firstLook(request, view);
+      },
       redraw: () => {
         screen.forget();
         // One turn for the new frame to be drawn; if none comes, the latest stands again.

@@ -12,7 +12,14 @@ import type { ViewId } from './view-ids.ts';
 /** How far the answer to the present question is. Each question has its own number. */
 export type Solve =
   | { readonly phase: 'idle' }
-  | { readonly phase: 'running'; readonly id: number; readonly stage: string; readonly fraction: number }
+  | {
+      readonly phase: 'running';
+      readonly id: number;
+      readonly stage: string;
+      readonly fraction: number;
+      /** The trace along the described line, for a first look; null until it is there, or when there is none. */
+      readonly look: DistanceTrace | null;
+    }
   | {
       readonly phase: 'ready';
       readonly id: number;
@@ -80,7 +87,9 @@ export function initialState(start: {
     columns: start.columns,
     rows: start.rows,
     request: start.request,
-    solve: start.request ? { phase: 'running', id: 1, stage: 'starting', fraction: 0 } : { phase: 'idle' },
+    solve: start.request
+      ? { phase: 'running', id: 1, stage: 'starting', fraction: 0, look: null }
+      : { phase: 'idle' },
     lastId: start.request ? 1 : 0,
     view: 'trace',
     span: null,

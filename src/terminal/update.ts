@@ -1,6 +1,6 @@
 /** What each event does to the state, and what it asks of the world. Pure: the whole workspace can be run without a terminal. */
 import { assertNever } from '../outcome.ts';
-import { readAgain, solved, sweepRead } from './asking.ts';
+import { readAgain, solved, solveEffects, sweepRead } from './asking.ts';
 import { chosenOf, traceWish } from './derived.ts';
 import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
@@ -21,13 +21,17 @@ function apply(state: State, event: Event): Step {
   switch (event.type) {
     case 'started':
       return state.request && state.solve.phase === 'running'
-        ? [state, [{ type: 'solve', id: state.solve.id, request: state.request }]]
+        ? [state, solveEffects(state, state.solve.id, state.request)]
         : [state, []];
     case 'resized':
       return [{ ...state, columns: event.columns, rows: event.rows }, [{ type: 'redraw' }]];
     case 'progress':
       return state.solve.phase === 'running' && state.solve.id === event.id
         ? [{ ...state, solve: { ...state.solve, stage: event.stage, fraction: event.fraction } }, []]
+        : [state, []];
+    case 'looked':
+      return state.solve.phase === 'running' && state.solve.id === event.id
+        ? [{ ...state, solve: { ...state.solve, look: event.trace } }, []]
         : [state, []];
     case 'solved':
       return state.solve.phase === 'running' && state.solve.id === event.id
@@ -94,7 +98,7 @@ function apply(state: State, event: Event): Step {
 
 /** A remark stands until the next key. */
 function withoutRemark(state: State, event: Event): State {
-  const answers = ['started', 'resized', 'progress', 'solved', 'sweepRead', 'traced'];
+  const answers = ['started', 'resized', 'progress', 'looked', 'solved', 'sweepRead', 'traced'];
   return state.remark === null || answers.includes(event.type) ? state : { ...state, remark: null };
 }
 

@@ -1,19 +1,21 @@
 /** What stands in place of the plot while there is no answer. */
 import type { Problem } from '../../outcome.ts';
+import { cutText, fitRuns } from '../../plot/cells.ts';
 import { type Run, run } from '../../plot/run.ts';
 import type { Layout } from '../layout.ts';
-import type { State } from '../state.ts';
-import { progressRuns, wordsInPlaceOfPlot } from './plot.ts';
+import { lookChart } from '../pictures/trace-picture.ts';
+import type { Solve, State } from '../state.ts';
+import { plotRows, progressRuns, wordsInPlaceOfPlot } from './plot.ts';
 
 const BAR_WIDTH = 46;
 
-/** Progress, problems, or how to open something: as many rows as the plot and its axis. */
+/** Progress, problems, or how to open something: as many rows as the plot, its axis and the readout. */
 export function waitingRows(state: State, layout: Layout): readonly (readonly Run[])[] {
   switch (state.solve.phase) {
     case 'running':
-      return wordsInPlaceOfPlot([state.solve.stage, progressRuns(state.solve.fraction, BAR_WIDTH)], layout);
+      return runningRows(state, state.solve, layout);
     case 'failed':
-      return wordsInPlaceOfPlot(
+      return wordsAlone(
         [
           ...state.solve.problems.flatMap(problemTexts),
           '',
@@ -22,13 +24,33 @@ export function waitingRows(state: State, layout: Layout): readonly (readonly Ru
         layout,
       );
     case 'idle':
-      return wordsInPlaceOfPlot(
+      return wordsAlone(
         ['Nothing is open. Start with a sweep: feedsonde SWEEP --line FILE', 'feedsonde --help says more.'],
         layout,
       );
     case 'ready':
-      return wordsInPlaceOfPlot([], layout);
+      return wordsAlone([], layout);
   }
+}
+
+/** The first look with the progress under it; without one the progress alone. */
+function runningRows(
+  state: State,
+  solve: Extract<Solve, { phase: 'running' }>,
+  layout: Layout,
+): readonly (readonly Run[])[] {
+  const bar = progressRuns(solve.fraction, BAR_WIDTH);
+  if (!solve.look) return wordsAlone([solve.stage, bar], layout);
+  const room = layout.columns - BAR_WIDTH - 4;
+  const row = [run(' '), ...bar, run('  '), run(cutText(solve.stage, room))];
+  return [...plotRows(lookChart(state, solve.look), layout), fitRuns(row, layout.columns)];
+}
+
+function wordsAlone(
+  paragraphs: readonly (string | readonly Run[])[],
+  layout: Layout,
+): readonly (readonly Run[])[] {
+  return [...wordsInPlaceOfPlot(paragraphs, layout), fitRuns([], layout.columns)];
 }
 
 /** Where, what and what was found there; then how to mend it. */

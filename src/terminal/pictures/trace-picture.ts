@@ -2,7 +2,7 @@
 import type { Analysis } from '../../app/analysis.ts';
 import type { DistanceTrace } from '../../locate/distance-trace.ts';
 import { median } from '../../numerics/statistics.ts';
-import type { ChartMark } from '../../plot/chart.ts';
+import type { ChartMark, ChartSpec } from '../../plot/chart.ts';
 import { decibelText, fixedText, lengthPerMetre, lengthText } from '../../plot/quantity-text.ts';
 import { type Run, run } from '../../plot/run.ts';
 import { cellScale, type Domain } from '../../plot/scale.ts';
@@ -27,6 +27,20 @@ const STEP_DB = 10;
 /** A peak less than this above 0 dB is drawn at the top: a full reflection and its noise. */
 const ROOM_ABOVE_DB = 2;
 
+/** The trace of the described line, before anything is known to be on it. */
+export function lookChart(state: State, trace: DistanceTrace): ChartSpec {
+  const span: Domain = [trace.distanceM[0]!, trace.distanceM.at(-1)!];
+  const curve = highestPerDot(trace, span, layoutOf(state).plotWidth);
+  return {
+    x: { domain: span, unit: state.units, perUnit: lengthPerMetre(state.units) },
+    y: { domain: depthOf(trace, curve.y), unit: 'dB' },
+    series: [{ ...curve, role: 'trace' }],
+    levels: [],
+    marks: [],
+    cursor: null,
+  };
+}
+
 /** The trace with what was found on it. */
 export function tracePicture(state: State, analysis: Analysis): Picture {
   const trace = traceInUse(state, analysis);
@@ -37,7 +51,7 @@ export function tracePicture(state: State, analysis: Analysis): Picture {
   return {
     chart: {
       x: { domain: span, unit: state.units, perUnit: lengthPerMetre(state.units) },
-      y: { domain: depthOf(analysis, curve.y), unit: 'dB' },
+      y: { domain: depthOf(analysis.trace, curve.y), unit: 'dB' },
       series: [{ ...curve, role: 'trace' }],
       levels: limitDb === null ? [] : [{ y: -limitDb, role: 'guide' }],
       marks: [
@@ -80,9 +94,9 @@ function levelsOf(trace: DistanceTrace): Float64Array {
 }
 
 /** From the depth of the whole trace, so that the axis stands still while one zooms and pans. */
-function depthOf(analysis: Analysis, levelDb: Float64Array): Domain {
-  const whole = levelsOf(analysis.trace).filter(Number.isFinite);
-  const lowest = whole.length > 0 ? median(whole) - ROOM_BELOW_DB : -LEAST_DEPTH_DB;
+function depthOf(whole: DistanceTrace, levelDb: Float64Array): Domain {
+  const levels = levelsOf(whole).filter(Number.isFinite);
+  const lowest = levels.length > 0 ? median(levels) - ROOM_BELOW_DB : -LEAST_DEPTH_DB;
   let highest = 0;
   for (const value of levelDb) if (value > highest) highest = value;
   if (highest < ROOM_ABOVE_DB) highest = 0;

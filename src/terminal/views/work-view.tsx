@@ -35,7 +35,7 @@ export function WorkView({ state, theme }: { readonly state: State; readonly the
 /** Plot, axis and readout. */
 function middleRows(state: State, layout: Layout): readonly (readonly Run[])[] {
   const analysis = analysisOf(state);
-  if (!analysis) return [...waitingRows(state, layout), fitRuns([], layout.columns)];
+  if (!analysis) return waitingRows(state, layout);
   const picture = pictureOf(state, analysis);
   return [
     ...(picture.chart ? plotRows(picture.chart, layout) : wordsInPlaceOfPlot(picture.instead, layout)),
