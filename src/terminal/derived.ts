@@ -84,7 +84,7 @@ export function traceWish(state: State): TraceView | null {
 }
 
 /** Samples per dot of the first look: the width of an echo is not known yet. */
-const LOOK_SAMPLES_PER_DOT = 12;
+const LOOK_SAMPLES_PER_DOT = 6;
 
 /** The piece of trace for a first look at the described line; null when its length is not described. */
 export function lookWish(state: State, request: AnalyseRequest): LookView | null {
