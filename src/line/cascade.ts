@@ -53,6 +53,8 @@ export type Cascade = {
   behind(index: number): ComplexArray;
   /** ∂Γport/∂Γ at that place, from the last `linearise`. */
   sensitivity(index: number): ComplexArray;
+  /** S11 of stage `index` by itself, which is no stretch of line, from the last call. */
+  reflection(index: number): ComplexArray;
 };
 
 /**
@@ -155,6 +157,7 @@ export function createCascade(frequencyHz: Float64Array): Cascade {
     },
     behind: (index) => states[count - index]!,
     sensitivity: (index) => sensitivities[index]!,
+    reflection: (index) => known[count - index - 1]!.twoPort.s11,
   };
 }
 

@@ -20,7 +20,7 @@ import {
   sectionAt,
   translate,
 } from './line-model.ts';
-import { bestOfEach, type Candidate, lumpedTypeOf, type PureType, probeAcross } from './probe.ts';
+import { bestOfEach, type Candidate, lumpedTypeOf, PURE_TYPES, type PureType, probeAcross } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 
@@ -197,11 +197,13 @@ export function probeAround(
   model: LineModel,
   settings: SearchSettings,
   distanceM: number,
+  without: readonly number[] = [],
 ): Candidate[] {
   const reachM = settings.resolutionM * 0.8;
-  return probeAcross(context, model, distanceM - reachM, distanceM + reachM)
+  const all = probeAcross(context, model, distanceM - reachM, distanceM + reachM, without)
     .flatMap((probe) => bestOfEach(probe))
     .sort((a, b) => b.gain - a.gain);
+  return PURE_TYPES.flatMap((type) => all.find((candidate) => candidate.type === type) ?? []);
 }
 
 /** Tries every other pure type in the place of each free lump, with its distance refitted. */

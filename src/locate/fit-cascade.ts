@@ -254,6 +254,9 @@ function productsOf(columns: readonly ComplexArray[], factor: number): Float64Ar
   return products;
 }
 
+/** Share of the fourth power in a stiff prior: as much as the square at four standard deviations. */
+const STIFFNESS = 1 / 16;
+
 /** Adds the priors to gradient and curvature (when given) and returns their share of the cost. */
 function addPriors(
   model: LineModel,
@@ -267,10 +270,12 @@ function addPriors(
     if (parameter.sigma === null) return;
     const precision = 1 / (parameter.sigma * parameter.sigma);
     const off = parameter.get() - parameter.mean;
-    cost += off * off * precision;
+    const square = off * off * precision;
+    const stiffness = parameter.stiff ? STIFFNESS : 0;
+    cost += square + stiffness * square * square;
     if (gradient && curvature) {
-      gradient[k] = gradient[k]! - off * precision;
-      curvature[k * p + k] = curvature[k * p + k]! + precision;
+      gradient[k] = gradient[k]! - off * precision * (1 + 2 * stiffness * square);
+      curvature[k * p + k] = curvature[k * p + k]! + precision * (1 + 6 * stiffness * square);
     }
   });
   const { boundaryMeanM, boundaryPrecision } = model.priors;

@@ -113,7 +113,8 @@ function judgeJoint(
   const bare = cloneModel(model);
   dress(bare, boundary, 'bare');
   const reachM = settings.resolutionM;
-  const probes = boundary === 0 ? [] : probeAcross(context, bare, atM - reachM, atM + reachM);
+  const mine = model.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id);
+  const probes = boundary === 0 ? [] : probeAcross(context, model, atM - reachM, atM + reachM, mine);
   const others = new Set(model.boundaryM.keys());
   const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
   const tryOut = (state: JointState): Trial => {
@@ -122,7 +123,14 @@ function judgeJoint(
     const trial = cloneModel(bare);
     if (place) trial.boundaryM[boundary - 1] = place.distanceM;
     dress(trial, boundary, state, place);
-    refine(context, trial, around(trial, atM - reachM, atM + reachM), { variance, maxIterations: 10 });
+    const near = around(trial, atM - reachM, atM + reachM);
+    if (state !== 'sound') {
+      // The fault first, and what it does to everything behind it: the rest would lean over to fill its place.
+      const fault = trial.lumps.filter((lump) => lump.boundary === boundary && lump.strengthSigma === null);
+      const first = { ...near, impedances: new Set<number>(), lumps: new Set(fault.map((lump) => lump.id)) };
+      refine(context, trial, first, { variance, maxIterations: 6 });
+    }
+    refine(context, trial, near, { variance, maxIterations: 10 });
     return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
   };
   const sound = tryOut('sound');

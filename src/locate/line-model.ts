@@ -65,6 +65,8 @@ export type Parameter = {
   /** Standard deviation of an independent prior around `mean`; null for none (or for the joint boundary prior). */
   readonly sigma: number | null;
   readonly mean: number;
+  /** True where the prior grows faster than a Gaussian: what is sound has limits, and beyond them it is a fault. */
+  readonly stiff?: boolean;
   /** Largest change in one step of the search. */
   readonly stepLimit: number;
   readonly minimum: number;
@@ -90,12 +92,6 @@ export type Translation = {
 
 /** Prior of a sound section's impedance around its description, Ω. Common practice: about ±1 Ω. */
 const IMPEDANCE_TOLERANCE_OHM = 1;
-
-/** A sample of a cable differs from its type by this many standard deviations at most; beyond that it is a fault. */
-const SAMPLE_SIGMAS = 2.5;
-
-/** The same for the reactance of a sound connector's face. */
-const FACE_SIGMAS = 1.5;
 
 /** Length that a described section may be off by, beside its velocity tolerance: tape and trim, m and relative. */
 const LENGTH_SIGMA_M = 0.015;
@@ -351,8 +347,9 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
           },
           sigma: model.priors.impedanceSigma[i]!,
           stepLimit: 0.2,
-          minimum: -SAMPLE_SIGMAS * model.priors.impedanceSigma[i]!,
-          maximum: SAMPLE_SIGMAS * model.priors.impedanceSigma[i]!,
+          stiff: true,
+          minimum: -1.5,
+          maximum: 1.5,
         })
       : -1,
   );
@@ -453,8 +450,9 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
           sigma: lump.strengthSigma,
           mean: 0,
           stepLimit: Number.POSITIVE_INFINITY,
-          minimum: lump.strengthSigma === null ? Number.NEGATIVE_INFINITY : -FACE_SIGMAS * lump.strengthSigma,
-          maximum: lump.strengthSigma === null ? Number.POSITIVE_INFINITY : FACE_SIGMAS * lump.strengthSigma,
+          stiff: true,
+          minimum: Number.NEGATIVE_INFINITY,
+          maximum: Number.POSITIVE_INFINITY,
         });
         slots.push({ stage, of: 'strength', column, factor: 1 });
       }

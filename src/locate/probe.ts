@@ -50,11 +50,24 @@ export type Probe = {
   readonly sums: Float64Array;
 };
 
-/** Sums of every pure type around a joint, in all stretches that the range touches. */
-export function probeAcross(context: FitContext, model: LineModel, fromM: number, toM: number): Probe[] {
-  const { stages } = linearise(context, model, NOTHING_FREE, 1).translation;
+/**
+ * Sums of every pure type between two distances, in all stretches that the range touches.
+ *
+ * @param without Lumps whose own echoes are put back into the residual, as if they had not been found yet; what they do
+ *   to everything behind them stays explained.
+ */
+export function probeAcross(
+  context: FitContext,
+  model: LineModel,
+  fromM: number,
+  toM: number,
+  without: readonly number[] = [],
+): Probe[] {
+  const { stages, stageOfLump } = linearise(context, model, NOTHING_FREE, 1).translation;
+  for (const id of without) putBack(context, stageOfLump.get(id)!);
   const top = context.frequencyHz.length - 1;
   const probes: Probe[] = [];
+  // Stretches that only a lump parts belong to one probe's range; each is searched from its own start.
   let atM = 0;
   stages.forEach((stage, stageIndex) => {
     if (stage.type !== 'line') return;
@@ -66,6 +79,18 @@ export function probeAcross(context: FitContext, model: LineModel, fromM: number
     atM += stage.lengthM;
   });
   return probes;
+}
+
+/** Adds a lump's own echo to the residual. */
+function putBack(context: FitContext, stage: number): void {
+  const own = context.cascade.reflection(stage);
+  const through = context.cascade.sensitivity(stage);
+  const { residual, weight } = context;
+  for (let i = 0; i < weight.length; i++) {
+    const w = weight[i]!;
+    residual.re[i] = residual.re[i]! + w * (own.re[i]! * through.re[i]! - own.im[i]! * through.im[i]!);
+    residual.im[i] = residual.im[i]! + w * (own.re[i]! * through.im[i]! + own.im[i]! * through.re[i]!);
+  }
 }
 
 const POINTS_PER_HALF_WAVE = 12;
