@@ -4,8 +4,8 @@
  * Working on the whole cascade instead of a sum of echoes means that ghosts are explained, never found.
  */
 
-import type { LumpedType } from '../line/discontinuity.ts';
 import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
+import { type JointVerdict, judgeJoint } from './judge-joints.ts';
 import {
   ALL_FREE,
   addLump,
@@ -20,7 +20,15 @@ import {
   sectionAt,
   translate,
 } from './line-model.ts';
-import { bestOfEach, type Candidate, lumpedTypeOf, PURE_TYPES, type PureType, probeAcross } from './probe.ts';
+import { placeJoints } from './place-joints.ts';
+import {
+  bestOfEach,
+  type Candidate,
+  lumpedTypeOf,
+  lumpReturnLossDb,
+  PURE_TYPES,
+  probeAcross,
+} from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 
@@ -43,57 +51,72 @@ const TRACE_SLACK_DB = 3;
 /** How far from a boundary, in resolutions, an echo still belongs to the joint there. */
 const JOINT_CELL = 0.75;
 
+/** A reflection above this level distorts everything fitted beside it, and is seen to first. −26 dB. */
+const STRONG_LEVEL = 0.05;
+
+/** Rounds of the search. */
+const MOST_ROUNDS = 24;
+
+/** A joint that was judged because something stood out there, or that looks worse than sound by itself. */
+export type Extracted = { readonly verdicts: ReadonlyMap<number, JointVerdict> };
+
 /**
- * Adds free lumps to the model until nothing stands above the floor, refining as it goes.
+ * Explains what stands above the floor, the strongest first: a joint is judged, anything else becomes a free lump.
  *
- * @returns Boundaries at which something beyond a sound joint was seen.
+ * As long as something strong is unexplained only its surroundings are fitted; the small freedoms of a sound line would
+ * lean over to fill its place.
  */
-export function extractEchoes(
-  context: FitContext,
-  model: LineModel,
-  settings: SearchSettings,
-): { readonly suspectBoundaries: ReadonlySet<number>; readonly floor: ResidualTrace } {
-  const suspects = new Set<number>();
+export function extractEchoes(context: FitContext, model: LineModel, settings: SearchSettings): Extracted {
+  const verdicts = new Map<number, JointVerdict>();
   const refused: number[] = [];
-  let trace = refineAndTrace(context, model, settings);
-  for (let round = 0; round < MOST_FREE_LUMPS + 8; round++) {
-    settings.onRound?.(round, MOST_FREE_LUMPS + 8);
-    const free = model.lumps.filter((lump) => lump.boundary === null);
-    if (free.length >= MOST_FREE_LUMPS) break;
-    const peak = strongestAboveFloor(model, trace, settings, refused, suspects);
-    if (peak === null) break;
-    if (peak.boundary !== null) {
-      suspects.add(peak.boundary);
-      loosenJoint(model, peak.boundary);
-    } else if (!insertLump(context, model, settings, peak.distanceM)) {
-      refused.push(peak.distanceM);
+  let trace = traceResidual(context, model, settings);
+  let calm = false;
+  for (let round = 0; round < MOST_ROUNDS; round++) {
+    settings.onRound?.(round, MOST_ROUNDS);
+    const peak = strongestAboveFloor(model, trace, settings, refused, verdicts);
+    if (!calm && (peak === null || peak.level < STRONG_LEVEL)) {
+      calm = true;
+      placeJoints(context, model, verdicts);
+      refineAll(context, model);
+      trace = traceResidual(context, model, settings);
       continue;
     }
-    trace = refineAndTrace(context, model, settings);
+    if (peak === null) break;
+    if (peak.boundary !== null) {
+      verdicts.set(peak.boundary, judgeJoint(context, model, settings, peak.boundary));
+    } else {
+      const free = model.lumps.filter((lump) => lump.boundary === null).length;
+      if (free >= MOST_FREE_LUMPS) break;
+      if (!insertLump(context, model, settings, peak.distanceM)) {
+        refused.push(peak.distanceM);
+        continue;
+      }
+    }
+    if (calm) refineAll(context, model);
+    else evaluateCost(context, model, ALL_FREE, 1);
+    trace = traceResidual(context, model, settings);
   }
+  if (!calm) refineAll(context, model);
   retestTypes(context, model, settings);
   pruneLumps(context, model, settings);
-  trace = refineAndTrace(context, model, settings);
-  return { suspectBoundaries: suspects, floor: trace };
+  refineAll(context, model);
+  return { verdicts };
 }
 
-/** Refines with the variance renewed, and gives the trace of what is left. */
-function refineAndTrace(context: FitContext, model: LineModel, settings: SearchSettings): ResidualTrace {
+/** Refines everything against the residual as it stands. */
+function refineAll(context: FitContext, model: LineModel): void {
   evaluateCost(context, model, ALL_FREE, 1);
-  for (let pass = 0; pass < 2; pass++) {
-    refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 8 });
-  }
-  return traceResidual(context, model, settings);
+  refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 8 });
 }
 
-type FloorPeak = { readonly distanceM: number; readonly boundary: number | null };
+type FloorPeak = { readonly distanceM: number; readonly boundary: number | null; readonly level: number };
 
 function strongestAboveFloor(
   model: LineModel,
   trace: ResidualTrace,
   settings: SearchSettings,
   refused: readonly number[],
-  suspects: ReadonlySet<number>,
+  judged: ReadonlyMap<number, JointVerdict>,
 ): FloorPeak | null {
   const { resolutionM } = settings;
   const n = model.boundaryM.length;
@@ -108,13 +131,13 @@ function strongestAboveFloor(
     const boundary = nearestBoundary(model, distanceM, resolutionM);
     // What the end leaves over is not an echo before it; the search stops a cell short.
     if (distanceM > endM - resolutionM * JOINT_CELL) continue;
-    if (boundary !== null && (suspects.has(boundary) || boundary === n)) continue;
+    if (boundary !== null && (judged.has(boundary) || boundary === n)) continue;
     if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
     const ratio = level / floorAt(trace, k, resolutionM);
     const threshold = boundary === null ? THRESHOLD_OVER_FLOOR : THRESHOLD_AT_JOINT;
     if (ratio / threshold > Math.max(1, bestRatio)) {
       bestRatio = ratio / threshold;
-      best = { distanceM, boundary };
+      best = { distanceM, boundary, level };
     }
   }
   return best;
@@ -134,17 +157,6 @@ export function nearestBoundary(model: LineModel, distanceM: number, resolutionM
   return best;
 }
 
-/** Lets a joint be more than sound: reactances of any size at both faces, until it is judged. */
-function loosenJoint(model: LineModel, boundary: number): void {
-  for (const lump of model.lumps) {
-    if (lump.boundary === boundary && lump.strengthSigma !== null)
-      lump.strengthSigma = LOOSE_STRENGTH / (2 * Math.PI * model.frequencyHz.at(-1)!);
-  }
-}
-
-/** Reactance of a loosened joint's face at the top of the band, one standard deviation, in line impedances. */
-const LOOSE_STRENGTH = 1;
-
 /** Inserts the pure type that explains most around a distance; false when none helps. */
 function insertLump(
   context: FitContext,
@@ -161,21 +173,6 @@ function insertLump(
   const [best] = fitTypes(context, model, settings, found);
   if (best) restoreModel(model, best.model);
   return best !== undefined;
-}
-
-/** RMS return loss over the band of a lump by itself, dB. */
-export function lumpReturnLossDb(
-  frequencyHz: Float64Array,
-  lump: { readonly type: LumpedType | PureType; readonly strength: number },
-): number {
-  const reactive =
-    lump.type === 'resistive' ? false : lump.type === 'reactive' || lumpedTypeOf(lump.type) === 'reactive';
-  let power = 0;
-  for (const f of frequencyHz) {
-    const u = Math.abs(lump.strength) * (reactive ? 2 * Math.PI * f : 1);
-    power += (u * u) / (reactive ? 4 + u * u : (2 + u) ** 2);
-  }
-  return -10 * Math.log10(power / frequencyHz.length + 1e-30);
 }
 
 function addCandidate(model: LineModel, candidate: Candidate): Lump {
@@ -260,7 +257,8 @@ const PRUNE_COST = 30;
 
 /** Drops lumps without which the sweep is explained as well. */
 function pruneLumps(context: FitContext, model: LineModel, settings: SearchSettings): void {
-  const trace = refineAndTrace(context, model, settings);
+  refineAll(context, model);
+  const trace = traceResidual(context, model, settings);
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
     evaluateCost(context, model, ALL_FREE, 1);
     const mean = residualVariance(context);

@@ -6,7 +6,6 @@
  * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
  */
 
-import { lumpReturnLossDb } from './extract-echoes.ts';
 import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
 import {
   ALL_FREE,
@@ -19,7 +18,7 @@ import {
   restoreModel,
 } from './line-model.ts';
 import { bestPlaceOf, expectBoundary } from './place-joints.ts';
-import { lumpedTypeOf, PURE_TYPES, probeAcross, pureTypeOf } from './probe.ts';
+import { lumpedTypeOf, lumpReturnLossDb, PURE_TYPES, probeAcross, pureTypeOf } from './probe.ts';
 import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 
 export type JointState =
@@ -42,6 +41,9 @@ export type JointVerdict = {
 
 /** Nats that a fault must have over a sound joint. */
 const FAULT_ODDS = 9;
+
+/** The same at the port, where the residue of the correction looks like anything. */
+const PORT_ODDS = 1000;
 
 /** Nats between two kinds of fault below which it is a coin toss. */
 const KIND_ODDS = 2;
@@ -84,13 +86,40 @@ function soundStrength(topHz: number): number {
   return (2 * 10 ** (-SOUND_RETURN_LOSS_DB / 20)) / (2 * Math.PI * topHz);
 }
 
-/** Judges every joint before the end, leaving the best fit in the model. */
-export function judgeJoints(context: FitContext, model: LineModel, settings: SearchSettings): JointVerdict[] {
+/** Own reactance of a joint that is not worth a judgement, as return loss over the band, dB. */
+const QUIET_JOINT_DB = 34;
+
+/** The verdict of a joint at which nothing stood out. */
+export function quietJoint(boundary: number): JointVerdict {
+  return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
+}
+
+/** Judges every joint before the end that is suspect or not quiet, leaving the best fit in the model. */
+export function judgeJoints(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  suspects: { has(boundary: number): boolean },
+): JointVerdict[] {
   const verdicts: JointVerdict[] = [];
   for (let boundary = 0; boundary < model.boundaryM.length; boundary++) {
-    verdicts.push(judgeJoint(context, model, settings, boundary));
+    const loud = suspects.has(boundary) || ownReturnLossDb(model, boundary) < QUIET_JOINT_DB;
+    verdicts.push(loud ? judgeJoint(context, model, settings, boundary) : quietJoint(boundary));
   }
   return verdicts;
+}
+
+/** Return loss over the band of what a joint's lumps and the step of impedances there may add up to, dB. */
+function ownReturnLossDb(model: LineModel, boundary: number): number {
+  const faces = model.lumps.filter((lump) => lump.boundary === boundary);
+  const reactive = faces.reduce(
+    (sum, face) => sum + (face.type === 'reactive' ? Math.abs(face.strength) : 0),
+    0,
+  );
+  const before = boundary > 0 ? model.impedanceRatio[boundary - 1]! : 0;
+  const step = Math.abs(model.impedanceRatio[boundary]! - before) / 2;
+  const reactiveDb = lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength: reactive });
+  return -20 * Math.log10(10 ** (-reactiveDb / 20) + step + 1e-12);
 }
 
 type Trial = {
@@ -99,7 +128,8 @@ type Trial = {
   readonly cost: number;
 };
 
-function judgeJoint(
+/** Judges one joint, leaving the best fit in the model. */
+export function judgeJoint(
   context: FitContext,
   model: LineModel,
   settings: SearchSettings,
@@ -138,7 +168,7 @@ function judgeJoint(
   const bad = faults.filter((trial) => isBeyondSound(trial, boundary));
   const best = bad[0];
   const odds = best ? (sound.cost - best.cost) / 2 : 0;
-  if (!best || best.state === 'sound' || odds < FAULT_ODDS) {
+  if (!best || odds < (boundary === 0 ? PORT_ODDS : FAULT_ODDS)) {
     restoreModel(model, sound.model);
     return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
   }

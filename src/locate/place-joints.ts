@@ -16,13 +16,24 @@ export type Expectation = { readonly meanM: number; readonly sigmaM: number };
 /** Standard deviations that a joint is searched over. */
 const SEARCH_SIGMAS = 3.5;
 
-/** Places every joint between port and end, from the port on; the end and `placed` joints stay. */
-export function placeJoints(context: FitContext, model: LineModel): void {
+/**
+ * Places every joint between port and end, from the port on.
+ *
+ * @param known Joints, counted as boundaries from the port's 0, that stay where they are; the end does anyway.
+ */
+export function placeJoints(
+  context: FitContext,
+  model: LineModel,
+  known: { has(boundary: number): boolean } = new Set<number>(),
+): void {
   const last = model.boundaryM.length - 1;
   const placed = new Set([last]);
+  for (let joint = 0; joint < last; joint++) if (known.has(joint + 1)) placed.add(joint);
   for (let joint = 0; joint < last; joint++) {
+    if (known.has(joint + 1)) continue;
     for (let later = joint; later < last; later++)
-      model.boundaryM[later] = clampInside(model, later, expectBoundary(model, placed, later).meanM);
+      if (!placed.has(later))
+        model.boundaryM[later] = clampInside(model, later, expectBoundary(model, placed, later).meanM);
     const expected = expectBoundary(model, placed, joint);
     const best = mostLikelyPlace(context, model, joint + 1, expected);
     if (best !== null) model.boundaryM[joint] = best;

@@ -6,8 +6,10 @@
  * echoes behind it is left out here, though the cascade has it: the loss, the end and the instrument's residue, fitted
  * before, have taken part of that for their own and would hide the rest.
  */
+
 import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
+
 import { type FitContext, linearise } from './fit-cascade.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
 
@@ -184,4 +186,19 @@ function bestOf(type: PureType, probe: Probe): Candidate[] {
     if (gain > (best?.gain ?? 0)) best = { type, distanceM: probe.fromM + k * probe.stepM, strength, gain };
   }
   return best ? [best] : [];
+}
+
+/** RMS return loss over the band of a lump by itself, dB. */
+export function lumpReturnLossDb(
+  frequencyHz: Float64Array,
+  lump: { readonly type: LumpedType | PureType; readonly strength: number },
+): number {
+  const reactive =
+    lump.type === 'resistive' ? false : lump.type === 'reactive' || lumpedTypeOf(lump.type) === 'reactive';
+  let power = 0;
+  for (const f of frequencyHz) {
+    const u = Math.abs(lump.strength) * (reactive ? 2 * Math.PI * f : 1);
+    power += (u * u) / (reactive ? 4 + u * u : (2 + u) ** 2);
+  }
+  return -10 * Math.log10(power / frequencyHz.length + 1e-30);
 }

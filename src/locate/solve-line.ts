@@ -72,11 +72,12 @@ export function solveLine(
   const { model } = end;
   placeJoints(context, model);
   addSoundJoints(model);
-  extractEchoes(context, model, settings);
+  evaluateCost(context, model, ALL_FREE, 1);
+  const { verdicts } = extractEchoes(context, model, settings);
   // Carriers that stronger things on the line had hidden.
   interfered.push(...leaveOutInterference(context));
   onProgress('judging joints', 0.8);
-  const joints = judgeJoints(context, model, settings);
+  const joints = judgeJoints(context, model, settings, verdicts);
   evaluateCost(context, model, ALL_FREE, 1);
   refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
   const lumps = nameLumps(context, model, settings);
