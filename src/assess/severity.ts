@@ -4,8 +4,9 @@ import type { Echo, Severity } from '../locate/echo.ts';
 import type { Solution } from '../locate/solution.ts';
 
 /**
- * Return loss of a joint, or of a flaw in the cable, below which it is a fault whatever else is said, dB.
- * Above it, a flaw that is sure to be there is a fault too, unless it is no larger than cable as sold may show.
+ * Return loss of a flaw in the cable below which it is a fault whatever else is said, where the line file gives no
+ * limit, dB. Above it, a flaw that is sure to be there is a fault too, unless it is no larger than cable as sold may
+ * show; where a limit is given, what keeps to it is something to watch.
  *
  * @source references.md section 8: ordinary connectors return −30 to −40 dB (common practice).
  */
@@ -50,8 +51,9 @@ function echoSeverity(line: Line, echo: Echo): Severity {
       : 'sound';
   }
   if (echo.joint !== null) return 'fault';
-  const limitDb = limits.cableReturnLossDb ?? ALWAYS_FAULT_DB;
-  if (echo.correctedReturnLossDb < limitDb) return 'fault';
+  const limitDb = limits.cableReturnLossDb;
+  if (echo.correctedReturnLossDb < (limitDb ?? ALWAYS_FAULT_DB)) return 'fault';
   if (echo.correctedReturnLossDb > STRUCTURE_DB) return 'sound';
-  return echo.confidence >= SURE || echo.kind !== 'unresolved' ? 'fault' : 'watch';
+  const sure = echo.confidence >= SURE || echo.kind !== 'unresolved';
+  return sure && limitDb === null ? 'fault' : 'watch';
 }

@@ -1,6 +1,6 @@
 /** What a sweep cannot do on its line, and what sweep would: said with the result, since it bounds what it can mean. */
 import { medianStepHz } from '../locate/grid-weights.ts';
-import { type Reach, startsNearDc } from '../locate/reach.ts';
+import type { Reach } from '../locate/reach.ts';
 import type { Notice } from '../outcome.ts';
 import { formatFrequency, formatSweepRange } from '../sweep/quantity-format.ts';
 
@@ -58,20 +58,18 @@ function narrowNotice({ frequencyHz, reach, lengthM }: SweepOnLine): Notice | nu
   };
 }
 
-/** A start too high for ohms. */
+/** A start too high for ohms: what keeps a line that does not fold from being measured. */
 function ohmsNotice(given: SweepOnLine): Notice | null {
   const { frequencyHz, reach } = given;
-  if (reach.impedanceProfile === 'measured' || startsNearDc(frequencyHz)) return null;
+  if (reach.impedanceProfile !== 'modelled') return null;
   const stepHz = wantedStepHz(given);
   const points = Math.floor(frequencyHz[frequencyHz.length - 1]! / stepHz);
   const range = formatSweepRange({ startHz: stepHz, stopHz: points * stepHz, points });
-  const drawn =
-    reach.impedanceProfile === 'modelled' ? '; until then they are drawn from the solved line' : '';
   return {
     code: 'ohms-not-measured',
     what:
       `the sweep starts too high, at ${formatFrequency(frequencyHz[0]!)}, for ohms against distance to be measured; ` +
-      `one of ${range} would do${drawn}`,
+      `one of ${range} would do; until then they are drawn from the solved line`,
   };
 }
 

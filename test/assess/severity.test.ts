@@ -27,11 +27,13 @@ describe('severitiesOf', () => {
     expect(severityOf(makeEcho({ ...weak, confidence: 0.9 }))).toBe('fault');
   });
 
-  it("takes the line's own limit for the cable", () => {
-    const strict = makeLine({ limits: { ...NO_LIMITS, cableReturnLossDb: 44 } });
-    const unsure = makeEcho({ correctedReturnLossDb: 43, kind: 'unresolved', confidence: 0.5 });
-    expect(severityOf(unsure)).toBe('watch');
-    expect(severityOf(unsure, strict)).toBe('fault');
+  it("takes the line's own limit for the cable: what keeps to it is watched, however sure", () => {
+    const limited = makeLine({ limits: { ...NO_LIMITS, cableReturnLossDb: 38 } });
+    const sure = { kind: 'series-resistance', confidence: 0.99 } as const;
+    expect(severityOf(makeEcho({ ...sure, correctedReturnLossDb: 37 }), limited)).toBe('fault');
+    expect(severityOf(makeEcho({ ...sure, correctedReturnLossDb: 39 }), limited)).toBe('watch');
+    expect(severityOf(makeEcho({ ...sure, correctedReturnLossDb: 39 }))).toBe('fault');
+    expect(severityOf(makeEcho({ ...sure, correctedReturnLossDb: 49 }), limited)).toBe('sound');
   });
 
   describe('at a joint', () => {
