@@ -123,13 +123,3 @@ export function pathTo(run: MediumRun, distanceM: number): PathToDistance {
   }
   return { attenuation, phase };
 }
-
-/**
- * Mean round-trip group delay to the end of the run over the sweep's band, s.
- *
- * @param frequencyHz Frequencies of the run, rising, length n ≥ 2.
- */
-export function roundTripS(run: MediumRun, frequencyHz: Float64Array): number {
-  const delays = groupDelaySPerM(run, frequencyHz);
-  return 2 * delays.reduce((sum, delay, i) => sum + delay * (run.startM[i + 1]! - run.startM[i]!), 0);
-}

@@ -1,147 +1,168 @@
-/** A sweep brought down to 0 Hz on even steps, against the line's own impedance: what a low-pass response is made of. */
-import type { Line, Section } from '../line/line.ts';
-import { type Medium, sectionMedium } from '../line/medium.ts';
-import { groupDelaySPerM, type MediumRun } from '../line/medium-run.ts';
+/** A reflection brought down to 0 Hz on even steps, against the line's own impedance: what a low-pass response is made of. */
+import type { Medium } from '../line/medium.ts';
+import { type MediumRun, pathTo, runLengthM } from '../line/medium-run.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
-import type { Sweep } from '../sweep/sweep.ts';
-import { bandLimitedValues, type DelaySupport } from './band-limited.ts';
-import { medianStepHz } from './grid-weights.ts';
+import { spacingOf } from '../sweep/spacing.ts';
+import { type PointsOnPath, planBandLimited } from './band-limited.ts';
+import { gridShares, medianStepHz } from './grid-weights.ts';
 
-export type LowPassSpectrum = {
-  /** Even steps from 0 on, Hz. */
-  readonly frequencyHz: Float64Array;
-  /** Reflection against the reference's impedance, same length; real at 0. */
-  readonly gamma: ComplexArray;
-};
+/** Share of the unambiguous distance that the line may fill: the rest shows where it has ended. */
+const FULLEST_TURNS = 0.9;
 
-/** Share of the unambiguous delay that echoes may fill; the rest shows where the line has ended. */
-export const FULLEST_SUPPORT = 0.9;
+/** Where points are to spare, the line fills this share: its first bounces still come back within the distance. */
+const SPARE_TURNS = 0.45;
 
-/** Where points are to spare, so much of the unambiguous delay is filled: twice the line fits, with its bounces. */
-const SPARE_SUPPORT = 0.45;
-
-/** The port's reflection begins before 0 by the width of the pulse, and the last one ends after its delay. */
-const MARGIN_OF_DELAY = 0.02;
-const MARGIN_OF_BAND = 2;
-
-/**
- * Delays within which a line's echoes come back.
- *
- * @param roundTripS To the end and back, at its slowest.
- */
-export function delaySupport(frequencyHz: Float64Array, roundTripS: number): DelaySupport {
-  const marginS = MARGIN_OF_DELAY * roundTripS + MARGIN_OF_BAND / frequencyHz[frequencyHz.length - 1]!;
-  return { fromS: -marginS, toS: roundTripS + marginS };
-}
-
-/**
- * Mean round-trip group delay to the end of the run over the sweep's band, s.
- *
- * @param frequencyHz Frequencies of the run, rising, length n ≥ 2.
- */
-export function roundTripS(run: MediumRun, frequencyHz: Float64Array): number {
-  const delays = groupDelaySPerM(run, frequencyHz);
-  return 2 * delays.reduce((sum, delay, i) => sum + delay * (run.startM[i + 1]! - run.startM[i]!), 0);
-}
-
-/** Expected error at 0 Hz, against the sweep's RMS, up to which it counts as known. Chosen by the tests of profiles. */
+/** Expected error at 0 Hz, for a line whose end returns 1, up to which it counts as known. Set by the profiles' tests. */
 const LARGEST_ERROR_AT_ZERO = 0.12;
 
-/** Steps seen at the low end of a sweep, which is the end that counts here. */
+/**
+ * Whether a sweep starts low enough, and has steps fine enough, to say what lies at 0 Hz: f1 at the first harmonic
+ * where the line fills most of the unambiguous distance, at one of the next where it is shorter.
+ *
+ * @param frequencyHz Rising, above 0, length n ≥ 2.
+ * @param run The line at these frequencies.
+ */
+export function reachesZero(frequencyHz: Float64Array, run: MediumRun): boolean {
+  const measured = { frequencyHz, path: roundTrip(run) };
+  if (turnsPerHz(measured) * medianStepHz(frequencyHz) > FULLEST_TURNS) return false;
+  const zero = { frequencyHz: new Float64Array(1), path: complexZeros(1) };
+  return planBandLimited(measured, zero).error[0]! <= LARGEST_ERROR_AT_ZERO;
+}
+
+/** Below the sweep, and over so many of its steps, points stand so much closer: there skin effect bends all like √f. */
+const FINER = 6;
+const FADING_STEPS = 8;
+
+/** Steps at the low end of a sweep that are looked at. */
 const LOW_STEPS = 8;
 
+/** Frequencies over which a low-pass response is summed, and what each stands for; length n. */
+export type LowPassNodes = {
+  /** From 0, not falling, Hz. */
+  readonly frequencyHz: Float64Array;
+  /** Edges of the cell of each, Hz; at 0 the cell begins there. */
+  readonly fromHz: Float64Array;
+  readonly toHz: Float64Array;
+  /** Share of the cell that counts, 0..1. */
+  readonly share: Float64Array;
+  /** Point of the sweep that stands there, or −1 where it has to be filled in. */
+  readonly measured: Int32Array;
+};
+
 /**
- * Whether a sweep starts low enough, and has steps fine enough, to say what lies at 0 Hz: f1 at the first or second
- * harmonic where the line fills the unambiguous distance, some steps more where it is shorter.
+ * The points of a sweep, and a finer row of points from 0 up to them. Over the lowest steps of the sweep the two fade
+ * into each other: a sum over even steps is then as good as the integral, wherever the steps begin.
  *
- * @param frequencyHz Rising, above 0.
- * @param roundTripS To the end of the line and back.
+ * @param frequencyHz Of the sweep: rising, above 0, length n ≥ 2. Where it has points to spare, some are left out.
+ * @param run The line at these frequencies.
+ * @param topHz Where the nodes end, at the sweep's highest frequency at the latest.
  */
-export function reachesZero(frequencyHz: Float64Array, roundTripS: number): boolean {
-  const support = delaySupport(frequencyHz, roundTripS);
-  const lowStepHz = medianStepHz(frequencyHz.subarray(0, Math.min(frequencyHz.length, LOW_STEPS)));
-  if (lowStepHz * (support.toS - support.fromS) > FULLEST_SUPPORT) return false;
-  const none = complexZeros(frequencyHz.length);
-  return (
-    bandLimitedValues(frequencyHz, none, support, new Float64Array(1)).error[0]! <= LARGEST_ERROR_AT_ZERO
+export function lowPassNodes(frequencyHz: Float64Array, run: MediumRun, topHz: number): LowPassNodes {
+  const nodes: { hz: number; widthHz: number; share: number; measured: number }[] = [];
+  const stride = strideOf(frequencyHz, turnsPerHz({ frequencyHz, path: roundTrip(run) }));
+  const lowHz = frequencyHz[0]!;
+  const lowStepHz = stride * medianStepHz(frequencyHz.subarray(0, Math.min(frequencyHz.length, LOW_STEPS)));
+  const fadeHz = Math.min(FADING_STEPS * lowStepHz, frequencyHz[frequencyHz.length - 1]! - lowHz);
+  const { widthHz } = gridShares(frequencyHz);
+  for (let k = 0; k < frequencyHz.length && frequencyHz[k]! <= topHz; k += stride) {
+    const hz = frequencyHz[k]!;
+    const share = 1 - fading((hz - lowHz) / fadeHz);
+    if (share > 0) nodes.push({ hz, widthHz: stride * widthHz[k]!, share, measured: k });
+  }
+  const fineHz =
+    Math.min(lowHz, lowStepHz) / Math.max(1, Math.round((FINER * Math.min(lowHz, lowStepHz)) / lowStepHz));
+  for (let k = 0; k * fineHz < lowHz + fadeHz; k++)
+    nodes.push({
+      hz: k * fineHz,
+      widthHz: fineHz,
+      share: fading((k * fineHz - lowHz) / fadeHz),
+      measured: -1,
+    });
+  nodes.sort((a, b) => a.hz - b.hz);
+  return {
+    frequencyHz: Float64Array.from(nodes, (node) => node.hz),
+    fromHz: Float64Array.from(nodes, (node) => Math.max(0, node.hz - node.widthHz / 2)),
+    toHz: Float64Array.from(nodes, (node) => node.hz + node.widthHz / 2),
+    share: Float64Array.from(nodes, (node) => node.share),
+    measured: Int32Array.from(nodes, (node) => node.measured),
+  };
+}
+
+/** Every how many points of an even sweep are enough for the line; 1 for an uneven one. */
+function strideOf(frequencyHz: Float64Array, turnsPerHertz: number): number {
+  const { even, stepHz } = spacingOf(frequencyHz);
+  return even ? Math.max(1, Math.floor(SPARE_TURNS / (turnsPerHertz * stepHz))) : 1;
+}
+
+/** 1 up to 0, 0 from 1 on, flat at both. */
+function fading(x: number): number {
+  if (x <= 0) return 1;
+  return x >= 1 ? 0 : Math.cos((Math.PI / 2) * x) ** 2;
+}
+
+/**
+ * Plans how a sweep is brought to the nodes of a low-pass sum: its own points are used as they are, the rest, 0 Hz
+ * among them, is filled in by `planBandLimited`.
+ *
+ * @param frequencyHz Of the sweep, above 0.
+ * @param run The line there.
+ * @param nodesRun The line at the nodes.
+ * @returns From a reflection at the sweep's frequencies to one at the nodes, real at 0.
+ */
+export function planLowPassSpectrum(
+  frequencyHz: Float64Array,
+  run: MediumRun,
+  nodes: LowPassNodes,
+  nodesRun: MediumRun,
+): (gamma: ComplexArray) => ComplexArray {
+  const missing = Array.from(nodes.measured.keys()).filter((i) => nodes.measured[i]! < 0);
+  const path = roundTrip(nodesRun);
+  const plan = planBandLimited(
+    { frequencyHz, path: roundTrip(run) },
+    {
+      frequencyHz: Float64Array.from(missing, (i) => nodes.frequencyHz[i]!),
+      path: {
+        re: Float64Array.from(missing, (i) => path.re[i]!),
+        im: Float64Array.from(missing, (i) => path.im[i]!),
+      },
+    },
   );
+  return (gamma) => {
+    const filled = plan.fill(gamma);
+    const value = complexZeros(nodes.measured.length);
+    nodes.measured.forEach((k, i) => {
+      if (k < 0) return;
+      value.re[i] = gamma.re[k]!;
+      value.im[i] = gamma.im[k]!;
+    });
+    missing.forEach((i, m) => {
+      value.re[i] = filled.re[m]!;
+      value.im[i] = filled.im[m]!;
+    });
+    return value;
+  };
 }
 
-/** A grid counts as harmonic when its first frequency is this close to a whole number of steps. */
-const HARMONIC_TOLERANCE = 1e-6;
+/** Exponent of the way to the end and back. */
+function roundTrip(run: MediumRun): ComplexArray {
+  const { attenuation, phase } = pathTo(run, runLengthM(run));
+  return { re: attenuation.map((v) => 2 * v), im: phase.map((v) => 2 * v) };
+}
+
+/** Mean turns of the end's phase per hertz. */
+function turnsPerHz({ frequencyHz, path }: PointsOnPath): number {
+  const last = frequencyHz.length - 1;
+  return (path.im[last]! - path.im[0]!) / (2 * Math.PI * (frequencyHz[last]! - frequencyHz[0]!));
+}
 
 /**
- * The sweep on even steps from 0, against the impedance of one medium.
+ * Γ seen from the port turned into Γ seen from a medium: (Γ − g)/(1 − g·Γ), g = (Zc − R)/(Zc + R).
  *
- * Measured points that stand on the steps are used as they are; the rest, 0 Hz among them, is filled in from the
- * neighbours by `bandLimitedValues`. Taking the reflection against the line's own complex impedance instead of the
- * port's keeps the slow rise that skin effect gives to every long line out of the profile.
- *
- * @param sweep Its point at 0 Hz, if any, is not used.
- * @param reference Section whose impedance counts as no reflection.
- * @param roundTripS To the end of the line and back.
+ * Taking a reflection against the line's own complex impedance keeps the slow rise that skin effect gives to every
+ * long line out of its profile.
  */
-export function lowPassSpectrum(
-  sweep: Sweep,
-  line: Line,
-  reference: Section,
-  roundTripS: number,
-): LowPassSpectrum {
-  const first = sweep.frequencyHz[0]! > 0 ? 0 : 1;
-  const measuredHz = sweep.frequencyHz.subarray(first);
-  const medium = sectionMedium(reference, measuredHz, {
-    temperatureC: line.temperatureC,
-    z0Ohm: sweep.portOhm,
-  });
-  const seen = { re: sweep.gamma.re.subarray(first), im: sweep.gamma.im.subarray(first) };
-  const own = againstMedium(seen, sweep.portOhm, medium);
-  const support = delaySupport(measuredHz, roundTripS);
-  const stepHz = harmonicStepHz(measuredHz, support.toS - support.fromS);
-  const highestHz = measuredHz[measuredHz.length - 1]!;
-  const count = Math.floor(highestHz / stepHz + HARMONIC_TOLERANCE);
-  const wantedHz = Float64Array.from({ length: count + 1 }, (_, k) => Math.min(k * stepHz, highestHz));
-  return { frequencyHz: wantedHz, gamma: onSteps(measuredHz, own, support, wantedHz, stepHz) };
-}
-
-/** The measured step, taken so many times as the line's delay leaves points to spare. */
-function harmonicStepHz(frequencyHz: Float64Array, widthS: number): number {
-  const measuredHz = medianStepHz(frequencyHz);
-  return measuredHz * Math.max(1, Math.floor(SPARE_SUPPORT / (widthS * measuredHz)));
-}
-
-function onSteps(
-  measuredHz: Float64Array,
-  own: ComplexArray,
-  support: DelaySupport,
-  wantedHz: Float64Array,
-  stepHz: number,
-): ComplexArray {
-  const value = complexZeros(wantedHz.length);
-  const missing: number[] = [];
-  let at = 0;
-  wantedHz.forEach((wanted, k) => {
-    while (at < measuredHz.length && measuredHz[at]! < wanted - HARMONIC_TOLERANCE * stepHz) at++;
-    if (at < measuredHz.length && measuredHz[at]! <= wanted + HARMONIC_TOLERANCE * stepHz) {
-      value.re[k] = own.re[at]!;
-      value.im[k] = own.im[at]!;
-    } else missing.push(k);
-  });
-  const filled = bandLimitedValues(
-    measuredHz,
-    own,
-    support,
-    Float64Array.from(missing, (k) => wantedHz[k]!),
-  ).value;
-  missing.forEach((k, i) => {
-    value.re[k] = filled.re[i]!;
-    value.im[k] = filled.im[i]!;
-  });
-  return value;
-}
-
-/** Γ seen from the port turned into Γ seen from a medium: (Γ − g)/(1 − g·Γ), g = (Zc − R)/(Zc + R). */
-function againstMedium(gamma: ComplexArray, portOhm: number, medium: Medium): ComplexArray {
+export function againstMedium(gamma: ComplexArray, portOhm: number, medium: Medium): ComplexArray {
   const own = complexZeros(gamma.re.length);
   for (let k = 0; k < own.re.length; k++) {
     const [gRe, gIm] = quotient(

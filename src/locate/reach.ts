@@ -6,6 +6,7 @@ import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { planApparentTrace } from './distance-trace.ts';
 import { medianStepHz, traceWeights } from './grid-weights.ts';
+import { reachesZero } from './low-pass-spectrum.ts';
 
 export type Reach = {
   /** 6 dB width of one echo with the window in use, m; mean over the run. */
@@ -49,25 +50,8 @@ export function reachOf({ sweep, run, window }: ReachOptions): Reach {
     resolutionM,
     unambiguousM,
     weakestReturnLossDb: weakestAtEndDb(sweep, run, window, { resolutionM, unambiguousM }),
-    impedanceProfile: profileOrigin(frequencyHz, runLengthM(run), { resolutionM, unambiguousM }),
+    impedanceProfile: profileOrigin(frequencyHz, run, resolutionM),
   };
-}
-
-/** A sweep may begin this many steps above 0 and still say what lies at 0. Choice of this program. */
-const MOST_STEPS_TO_DC = 4;
-
-/** How far off a whole number f1/Δf may be for the grid to count as harmonic. */
-const HARMONIC_TOLERANCE = 1e-6;
-
-/**
- * Whether a sweep starts low enough for a low-pass response: no more than a few of its steps above 0, counted at its
- * low end, so that Γ(0) can be found honestly.
- *
- * @source Common practice (a harmonic grid is ideal; other low starts go through a direct sum).
- */
-export function startsNearDc(frequencyHz: Float64Array): boolean {
-  const lowStepHz = medianStepHz(frequencyHz.subarray(0, Math.min(frequencyHz.length, 8)));
-  return frequencyHz[0]! / lowStepHz <= MOST_STEPS_TO_DC + HARMONIC_TOLERANCE;
 }
 
 /** Notice for a line longer than the sweep can tell apart, or null. */
@@ -93,11 +77,11 @@ type Distances = Pick<Reach, 'resolutionM' | 'unambiguousM'>;
 
 function profileOrigin(
   frequencyHz: Float64Array,
-  lengthM: number,
-  { resolutionM, unambiguousM }: Distances,
+  run: MediumRun,
+  resolutionM: number,
 ): Reach['impedanceProfile'] {
-  if (resolutionM > lengthM) return 'no';
-  return startsNearDc(frequencyHz) && lengthM < unambiguousM ? 'measured' : 'modelled';
+  if (resolutionM > runLengthM(run)) return 'no';
+  return reachesZero(frequencyHz, run) ? 'measured' : 'modelled';
 }
 
 /**

@@ -4,10 +4,14 @@ import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
 import { type DistanceGrid, factorAt, type Piece, piecesOf } from './path-factor.ts';
 
 export type ReflectionOptions = {
-  /** Reflection at 0 Hz (real) and at even steps above it, length n. */
+  /** From 0, not falling, Hz; length n. */
+  readonly frequencyHz: Float64Array;
+  /** Reflection there; real at 0. */
   readonly gamma: ComplexArray;
-  /** The line at the same frequencies. */
+  /** The line there. */
   readonly run: MediumRun;
+  /** For each section, by how much its γ changes over what each frequency stands for, 1/m. */
+  readonly cells: readonly ComplexArray[];
   /** Begins so far before 0 that nothing is reflected yet. */
   readonly grid: DistanceGrid;
   /** Weight at a share 0..1 of the band in use, 1 at 0. */
@@ -16,14 +20,14 @@ export type ReflectionOptions = {
   readonly mostLossNp: number;
 };
 
-/** A band cut to fewer steps than this says nothing. */
-const FEWEST_STEPS = 6;
+/** A band cut to fewer frequencies than this says nothing. */
+const FEWEST_FREQUENCIES = 60;
 
 /** The taper is fitted anew when the band in use has shrunk by this share. */
 const BAND_CHANGE = 0.01;
 
 /**
- * Running sum over distance of ρ(d) = (2/π)·Im Σ taper·Γ·e^{2∫γ}·Δγ, both sums by the trapezoid rule.
+ * Running sum over distance of ρ(d) = (2/π)·Im Σ taper·Γ·e^{2∫γ}·Δγ, the sum over distance by the trapezoid rule.
  *
  * Cost: steps of the band in use times distances.
  *
@@ -52,13 +56,11 @@ export function reflectionAlong(options: ReflectionOptions): Float64Array {
 /** Walks the distances of one piece; `next` gives ρ in 1/m, or null when the band has shrunk to nothing. */
 type Walk = { next(): number | null; inUse(): number };
 
-function walkPiece(
-  { gamma, run, grid, taper, mostLossNp }: ReflectionOptions,
-  piece: Piece,
-  from: number,
-): Walk {
+function walkPiece(options: ReflectionOptions, piece: Piece, from: number): Walk {
+  const { frequencyHz, gamma, run, grid, taper, mostLossNp } = options;
   const alpha = run.alpha[piece.section]!;
   const beta = run.beta[piece.section]!;
+  const cells = options.cells[piece.section]!;
   const startM = grid.fromM + piece.first * grid.stepM;
   const loss = pathTo(run, startM).attenuation;
   const turned = productOf(gamma, factorAt(run, startM, 'undo'), from);
@@ -71,10 +73,10 @@ function walkPiece(
     inUse: () => inUse,
     next() {
       while (inUse > 0 && 2 * (loss[inUse - 1]! + alpha[inUse - 1]! * offsetM) > mostLossNp) inUse--;
-      if (inUse < FEWEST_STEPS) return null;
+      if (inUse < FEWEST_FREQUENCIES) return null;
       if (tapered === 0 || inUse < tapered * (1 - BAND_CHANGE)) {
         tapered = inUse;
-        weight = weightsOf(alpha, beta, taper, inUse);
+        weight = weightsOf(cells, frequencyHz, taper, inUse);
       }
       let sum = 0;
       for (let k = 0; k < inUse; k++) {
@@ -109,20 +111,19 @@ function stepFactor(alpha: Float64Array, beta: Float64Array, stepM: number, leng
   return factor;
 }
 
-/** taper·Δγ: half the way between the neighbours; at 0 Hz half the way to the first step, its mirror has the rest. */
+/** taper·Δγ, the taper over the band in use. */
 function weightsOf(
-  alpha: Float64Array,
-  beta: Float64Array,
+  cells: ComplexArray,
+  frequencyHz: Float64Array,
   taper: (share: number) => number,
   length: number,
 ): ComplexArray {
   const weight = complexZeros(length);
+  const topHz = frequencyHz[length - 1]!;
   for (let k = 0; k < length; k++) {
-    const below = Math.max(0, k - 1);
-    const above = Math.min(alpha.length - 1, k + 1);
-    const share = taper(k / length) / 2;
-    weight.re[k] = share * (alpha[above]! - alpha[below]!);
-    weight.im[k] = share * (beta[above]! - beta[below]!);
+    const share = taper(frequencyHz[k]! / topHz);
+    weight.re[k] = share * cells.re[k]!;
+    weight.im[k] = share * cells.im[k]!;
   }
   return weight;
 }
