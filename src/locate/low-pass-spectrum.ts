@@ -14,7 +14,7 @@ const FULLEST_TURNS = 0.9;
 const SPARE_TURNS = 0.45;
 
 /** Expected error at 0 Hz, for a line whose end returns 1, up to which it counts as known. Set by the profiles' tests. */
-const LARGEST_ERROR_AT_ZERO = 0.12;
+const LARGEST_ERROR_AT_ZERO = 0.08;
 
 /**
  * Whether a sweep starts low enough, and has steps fine enough, to say what lies at 0 Hz: f1 at the first harmonic
