@@ -3,18 +3,12 @@ import type { Line } from '../line/line.ts';
 import { jointName } from '../line/line.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexRms, complexZeros } from '../numerics/complex.ts';
+import type { DistanceScale } from './distance-scale.ts';
 import type { Echo, EchoKind, EchoValue } from './echo.ts';
 import { type FitContext, fitCovariance, linearise } from './fit-cascade.ts';
 import { type JointVerdict, reactiveStrength, resistiveStrength } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, type Lump, lumpDistanceM, sectionAt } from './line-model.ts';
 import { pureTypeOf } from './probe.ts';
-
-/** How the model's distances become physical ones. */
-export type DistanceScale = {
-  readonly factor: number;
-  /** Relative standard deviation that is left after scaling. */
-  readonly relativeSigma: number;
-};
 
 /** What the type competition said of one free lump. */
 export type LumpVerdict = { readonly id: number; readonly confidence: number; readonly resolved: boolean };
@@ -46,30 +40,49 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
   const linear = linearise(context, model, ALL_FREE, meanVariance);
   const covariance = fitCovariance(linear);
   const { parameters, stageOfLump, stages, stageOfBoundary } = linear.translation;
-  const sigmaOf = (match: (k: number) => boolean, distanceM: number): number => {
-    const k = parameters.findIndex((_, index) => match(index));
-    if (k < 0 || !covariance) return 0;
+  // The floor where an echo lies stands for the noise that its own parameters saw.
+  const inflationAt = (distanceM: number): number => Math.max(1, parts.varianceAt(distanceM) / meanVariance);
+  /** Standard deviation of a sum of parameters, given as factors by column. */
+  const sigmaOf = (factors: ReadonlyMap<number, number>, distanceM: number): number => {
+    if (!covariance) return 0;
     const p = parameters.length;
-    // The floor where the echo lies stands for the noise that its own parameters saw.
-    const inflation = parts.varianceAt(distanceM) / meanVariance;
-    return Math.sqrt(Math.max(0, covariance[k * p + k]! * Math.max(1, inflation)));
+    let variance = 0;
+    for (const [k, a] of factors) for (const [j, b] of factors) variance += a * b * covariance[k * p + j]!;
+    return Math.sqrt(Math.max(0, variance * inflationAt(distanceM)));
   };
-  const place = (distanceM: number, ownSigmaM: number): Pick<Echo, 'distanceM' | 'distanceSigmaM'> => ({
-    distanceM: distanceM * parts.scale.factor,
-    distanceSigmaM: Math.hypot(ownSigmaM, distanceM * parts.scale.relativeSigma, LEAST_SIGMA_M),
-  });
+  const columnNamed = (name: string): number => parameters.findIndex((parameter) => parameter.name === name);
+  const columnOfBoundary = (index: number): number =>
+    parameters.findIndex((parameter) => parameter.boundary === index);
+  /** @param lump Set for what stands free in its section. @param boundary Set for what stands at a joint. */
+  const place = (
+    distanceM: number,
+    { lump = null, boundary = null }: { readonly lump?: number | null; readonly boundary?: number | null },
+  ): Pick<Echo, 'distanceM' | 'distanceSigmaM'> => {
+    const physical = parts.scale.place(distanceM, boundary);
+    const factors = new Map<number, number>();
+    const add = (column: number, factor: number): void => {
+      if (column >= 0) factors.set(column, (factors.get(column) ?? 0) + factor);
+    };
+    if (lump !== null) add(columnNamed(`place of lump ${lump}`), physical.perM);
+    for (const [index, factor] of physical.perBoundary) add(columnOfBoundary(index), factor);
+    return {
+      distanceM: physical.distanceM,
+      distanceSigmaM: Math.hypot(sigmaOf(factors, distanceM), physical.sigmaM, LEAST_SIGMA_M),
+    };
+  };
+  const strengthSigmaOf = (id: number, distanceM: number): number => {
+    const column = columnNamed(`strength of lump ${id}`);
+    return column < 0 ? 0 : sigmaOf(new Map([[column, 1]]), distanceM);
+  };
   const echoes: Echo[] = [];
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
     const distanceM = lumpDistanceM(model, lump);
     const verdict = parts.lumps.find((v) => v.id === lump.id);
     const own = lumpReflection(context, model, [lump]);
     const pure = pureTypeOf(lump.type, lump.strength);
-    const strengthSigma = sigmaOf((k) => parameters[k]!.name === `strength of lump ${lump.id}`, distanceM);
+    const strengthSigma = strengthSigmaOf(lump.id, distanceM);
     echoes.push({
-      ...place(
-        distanceM,
-        sigmaOf((k) => parameters[k]!.name === `place of lump ${lump.id}`, distanceM),
-      ),
+      ...place(distanceM, { lump: lump.id }),
       returnLossDb: levelDb(seenFromPort(context, own, stageOfLump.get(lump.id)!)),
       correctedReturnLossDb: levelDb(own),
       kind: verdict && !verdict.resolved ? 'unresolved' : pure,
@@ -94,12 +107,10 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     const corrected = levelDb(own);
     if (verdict.state === 'sound' && corrected > LISTED_JOINT_DB) return null;
     const distanceM = boundaryAt(model, boundary);
-    const boundarySigma =
-      boundary === 0 ? 0 : sigmaOf((k) => parameters[k]!.boundary === boundary - 1, distanceM);
     const joint = { index: boundary + 1, name: jointName(parts.line, boundary + 1) };
     const section = Math.min(boundary, model.media.length - 1);
     const base = {
-      ...place(distanceM, boundarySigma),
+      ...place(distanceM, { boundary }),
       returnLossDb: levelDb(seenFromPort(context, own, stageOfBoundary[boundary]!)),
       correctedReturnLossDb: corrected,
       joint,
@@ -111,7 +122,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     const resistive = verdict.state === 'series-resistance' || verdict.state === 'shunt-leakage';
     const strength = resistive ? resistiveStrength(model, boundary) : reactiveStrength(model, boundary);
     const main = mine.find((lump) => lump.type === (resistive ? 'resistive' : 'reactive'));
-    const sigma = main ? sigmaOf((k) => parameters[k]!.name === `strength of lump ${main.id}`, distanceM) : 0;
+    const sigma = main ? strengthSigmaOf(main.id, distanceM) : 0;
     return {
       ...base,
       kind: verdict.clear ? verdict.state : 'unresolved',
@@ -125,13 +136,12 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     const distanceM = boundaryAt(model, n);
     const own = context.cascade.behind(stages.length);
     const copy = { re: own.re.slice(), im: own.im.slice() };
-    const sigma = sigmaOf((k) => parameters[k]!.boundary === n - 1, distanceM);
     const full = parts.endKind === 'open' || parts.endKind === 'short';
     const kind: EchoKind =
       parts.endKind === 'open' ? 'open' : parts.endKind === 'short' ? 'short' : 'termination';
     const corrected = levelDb(copy);
     return {
-      ...place(distanceM, sigma),
+      ...place(distanceM, { boundary: n }),
       returnLossDb: levelDb(seenFromPort(context, copy, stages.length)),
       correctedReturnLossDb: corrected,
       kind,

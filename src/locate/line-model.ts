@@ -94,8 +94,8 @@ export type Translation = {
 const IMPEDANCE_TOLERANCE_OHM = 1;
 
 /** Length that a described section may be off by, beside its velocity tolerance: tape and trim, m and relative. */
-const LENGTH_SIGMA_M = 0.015;
-const LENGTH_SIGMA_RELATIVE = 0.002;
+export const LENGTH_SIGMA_M = 0.015;
+export const LENGTH_SIGMA_RELATIVE = 0.002;
 
 /** Correlation of the velocity error between sections: of the same cable, and of different cables. */
 const SAME_CABLE_CORRELATION = 0.95;

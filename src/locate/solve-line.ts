@@ -4,12 +4,12 @@
  * what the distances are scaled to, and say how sure all of it is.
  */
 import type { Line } from '../line/line.ts';
-import { describedLengthM } from '../line/line.ts';
 import { complexCopy, complexEnergy } from '../numerics/complex.ts';
 import { createWindow, parseWindow } from '../numerics/window.ts';
 import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
-import { buildEchoes, type DistanceScale, type LumpVerdict } from './build-echoes.ts';
+import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
+import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd } from './find-end.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
@@ -85,14 +85,14 @@ export function solveLine(
   evaluateCost(context, model, ALL_FREE, 1);
   const variance = residualVariance(context);
   const floor = traceResidual(context, model, settings);
-  const scaling = scaleTo(line, model, end.cut);
+  const scale = createDistanceScale(line, model, end.cut);
   const echoes = buildEchoes(context, model, {
     line: end.line,
     joints,
     lumps,
     endKind: end.kind,
     endConfidence: 1 / (1 + Math.exp(-Math.min(30, end.lead / 2))),
-    scale: scaling.scale,
+    scale,
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
   const endEcho = echoes.find((echo) => echo.joint?.index === model.boundaryM.length + 1)!;
@@ -102,17 +102,17 @@ export function solveLine(
     stretches: [],
     lengthM: endEcho.distanceM,
     lengthSigmaM: endEcho.distanceSigmaM,
-    distanceScale: scaling.scale.factor,
+    distanceScale: scale.factor,
     delayNs: groupDelayNs(model),
     end: end.kind,
     endsEarly: end.cut,
-    scaledTo: scaling.to,
+    scaledTo: scale.to,
     lossFactor: 1 + model.conductor,
     modelGamma: complexCopy(context.modelled),
     residualDb: residualDb(context),
     explained: 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300),
     elements: modelSize(model).elements,
-    notices: [...scaling.notices, ...interferenceNotices(sweep.frequencyHz, interfered)],
+    notices: [...scale.notices, ...interferenceNotices(sweep.frequencyHz, interfered)],
   };
 }
 
@@ -169,53 +169,4 @@ function groupDelayNs(model: LineModel): number {
     phase += 2 * length * (beta(b) - beta(a));
   });
   return (phase / (2 * Math.PI * (f[b]! - f[a]!))) * 1e9;
-}
-
-/** Measured and described length may differ by this much before the description is doubted. Common practice. */
-const LENGTH_TRUST = 0.01;
-
-/** Velocity tolerance that is left once the end fixes the scale, as a share. */
-const SHARE_LEFT_AFTER_SCALING = 0.1;
-
-function scaleTo(
-  line: Line,
-  model: LineModel,
-  cut: boolean,
-): { scale: DistanceScale; to: Solution['scaledTo']; notices: Notice[] } {
-  const described = describedLengthM(line);
-  const measured = boundaryAt(model, model.boundaryM.length);
-  const tolerance = velocityTolerance(line);
-  const byVelocity = { scale: { factor: 1, relativeSigma: tolerance }, to: 'velocity-factor' as const };
-  if (described === null || cut) return { ...byVelocity, notices: [] };
-  const off = measured / described - 1;
-  if (Math.abs(off) <= LENGTH_TRUST * 1.2) {
-    return {
-      scale: { factor: described / measured, relativeSigma: tolerance * SHARE_LEFT_AFTER_SCALING },
-      to: 'description',
-      notices: [],
-    };
-  }
-  const percent = (100 * off).toFixed(1);
-  return {
-    ...byVelocity,
-    notices: [
-      {
-        code: 'length-differs',
-        what: `The line measures ${measured.toFixed(2)} m by its velocity factor but is described as ${described.toFixed(2)} m (${percent} %). Either the description's lengths or the velocity factor is wrong; distances follow the velocity factor.`,
-      },
-    ],
-  };
-}
-
-/** Relative velocity tolerance of the run, weighted by length. */
-function velocityTolerance(line: Line): number {
-  let weighted = 0;
-  let total = 0;
-  for (const section of line.sections) {
-    if (section.type !== 'coax') continue;
-    const length = section.lengthM ?? 1;
-    weighted += (section.cable.velocityFactorTolerance / section.cable.velocityFactor) * length;
-    total += length;
-  }
-  return total > 0 ? weighted / total : 0.01;
 }
