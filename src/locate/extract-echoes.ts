@@ -76,6 +76,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
     const peak = strongestAboveFloor(model, trace, settings, refused, verdicts);
     if (!calm && (peak === null || peak.level < STRONG_LEVEL)) {
       calm = true;
+      settings.onCalm?.(round > 0);
       placeJoints(context, model, verdicts);
       refineAll(context, model);
       trace = traceResidual(context, model, settings);

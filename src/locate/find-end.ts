@@ -5,17 +5,27 @@
  * shows, an antenna reflects in its own way. Candidates come from the corrected trace of the raw sweep; each is fitted
  * on the cascade with its own kind, and the best by likelihood wins.
  */
-import type { EndModel } from '../line/end.ts';
+import { type EndModel, writeEnd } from '../line/end.ts';
 import type { EndKind, Line } from '../line/line.ts';
+import { complexZeros } from '../numerics/complex.ts';
 import { findPeaks } from '../numerics/peaks.ts';
+import { assertNever } from '../outcome.ts';
 import { fitAntenna } from './fit-antenna.ts';
-import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
+import {
+  evaluateCost,
+  type FitContext,
+  linearise,
+  refine,
+  residualEnergy,
+  residualVariance,
+} from './fit-cascade.ts';
 import {
   ALL_FREE,
   cloneModel,
   createLineModel,
   type Freedom,
   type LineModel,
+  NOTHING_FREE,
   restoreModel,
 } from './line-model.ts';
 import { type ResidualTrace, residualTrace } from './residual-trace.ts';
@@ -67,7 +77,8 @@ function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
   const base = createLineModel(line, context.frequencyHz, search.portOhm, lengths, {
     lossSigma: search.lossSigma,
   });
-  const slack = 0.03 * total + search.resolutionM;
+  const { sigmaM } = expectedEnd(base);
+  const slack = END_SIGMAS * sigmaM;
   const trace = measuredTrace(context, base, search, total + slack);
   const cutAt = fullReflectionBefore(trace, total - slack, search.resolutionM);
   const nearEnd = strongestBetween(trace, total - slack, total + slack);
@@ -81,25 +92,70 @@ function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
     const best = bestEnd(context, model, search, ['open', 'short'], [cutAt]);
     return { ...best, line: cutLine, cut: true };
   }
-  const kinds: FoundEnd[] =
-    nearEnd.level > FULL_REFLECTION_LEVEL && line.end !== 'antenna'
-      ? ['open', 'short']
-      : nearEnd.level > FULL_END_LEVEL
-        ? ['open', 'short', 'load', 'antenna']
-        : ['load', 'antenna'];
-  const wanted = kinds.filter((kind) => compatible(kind, line.end, nearEnd.level));
-  const best = bestEnd(context, base, search, wanted.length > 0 ? wanted : kinds, [nearEnd.distanceM, total]);
+  const best = bestEnd(context, base, search, likelyKinds(line.end, nearEnd.level), [
+    nearEnd.distanceM,
+    total,
+  ]);
   return { ...best, line, cut: false };
 }
 
-/** A described end is believed unless the trace speaks against it. */
-function compatible(kind: EndKind, described: EndKind, level: number): boolean {
-  if (described === 'unknown') return true;
-  if (kind === described) return true;
-  const full = kind === 'open' || kind === 'short';
-  if (described === 'open' || described === 'short') return full || level < 0.3;
-  // A load or antenna that reflects everything is off or broken.
-  return full && level > FULL_REFLECTION_LEVEL;
+/** Kinds that an end may be, given what was described and how large it looks. */
+function likelyKinds(described: EndKind, level: number): FoundEnd[] {
+  const full: FoundEnd[] = level > FULL_END_LEVEL ? ['open', 'short'] : [];
+  switch (described) {
+    case 'open':
+    case 'short':
+      // A described end is believed unless hardly anything comes back.
+      return level > NOTHING_LEVEL ? ['open', 'short'] : ['open', 'short', 'load', 'antenna'];
+    case 'load':
+    case 'antenna':
+      // A load or antenna that reflects everything is off or broken.
+      return level > FULL_REFLECTION_LEVEL ? [described, 'open', 'short'] : [described];
+    case 'unknown':
+      return [...full, 'load', 'antenna'];
+    default:
+      return assertNever(described);
+  }
+}
+
+/** An open or a short that is described, however much stands before it, shows more than this. */
+const NOTHING_LEVEL = 0.03;
+
+/**
+ * Looks at the end again once strong things before it are explained: only then does it show how large it is.
+ *
+ * @param model Changed in place when another kind explains the sweep better.
+ */
+export function reviseEnd(
+  context: FitContext,
+  model: LineModel,
+  search: EndSearch,
+  found: Pick<EndFound, 'kind' | 'lead'>,
+): Pick<EndFound, 'kind' | 'lead'> {
+  const level = endLevel(context, model);
+  const kinds = new Set<FoundEnd>([found.kind, ...likelyKinds(search.line.end, level)]);
+  if (kinds.size === 1) return found;
+  const atM = model.boundaryM[model.boundaryM.length - 1]!;
+  const before = cloneModel(model);
+  const best = bestEnd(context, model, search, [...kinds], [atM]);
+  if (best.kind === found.kind) restoreModel(model, before);
+  return { kind: best.kind, lead: best.lead };
+}
+
+/** RMS size of the end's own reflection as modelled, weighed by what comes back from it. */
+function endLevel(context: FitContext, model: LineModel): number {
+  const { stages } = linearise(context, model, NOTHING_FREE, 1).translation;
+  const through = context.cascade.sensitivity(stages.length);
+  const own = context.cascade.behind(stages.length);
+  const { residual } = context;
+  let power = 0;
+  let weight = 0;
+  for (let i = 0; i < residual.re.length; i++) {
+    const s2 = through.re[i]! ** 2 + through.im[i]! ** 2;
+    power += s2 * (own.re[i]! ** 2 + own.im[i]! ** 2);
+    weight += s2;
+  }
+  return Math.sqrt(power / Math.max(weight, 1e-30));
 }
 
 function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
@@ -221,7 +277,9 @@ function bestEnd(
   kinds: readonly FoundEnd[],
   startsM: readonly number[],
 ): Pick<EndFound, 'model' | 'kind' | 'lead'> {
-  const trials = kinds.flatMap((kind) => tryKind(context, base, search, kind, startsM));
+  const all = kinds.flatMap((kind) => tryKind(context, base, search, kind, startsM));
+  const plausible = all.filter(({ model }) => model.end.type !== 'antenna' || takesPower(model));
+  const trials = plausible.length > 0 ? plausible : all;
   const points = context.weight.reduce((a, b) => a + b, 0);
   const least = Math.max(Math.min(...trials.map((trial) => trial.energy)), 1e-12);
   const variance = least / (2 * points);
@@ -238,6 +296,16 @@ function bestEnd(
     lead: rival ? (rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY,
   };
 }
+
+/** An antenna that nowhere in the band takes power is an open or a short. */
+function takesPower(model: LineModel): boolean {
+  const gamma = complexZeros(model.frequencyHz.length);
+  writeEnd(model.end, model.frequencyHz, gamma, null);
+  return gamma.re.some((re, i) => Math.hypot(re, gamma.im[i]!) < LEAST_ANTENNA_DIP);
+}
+
+/** Common practice: an antenna in its band returns a fifth or less; one that is off frequency still dips below this. */
+const LEAST_ANTENNA_DIP = 0.6;
 
 type FoundEnd = Exclude<EndKind, 'unknown'>;
 type Trial = { readonly model: LineModel; readonly kind: FoundEnd; readonly energy: number };
@@ -275,17 +343,27 @@ function tryKind(
   });
 }
 
+/** Where the description puts the end, and how sure that is. */
+function expectedEnd(base: LineModel): { readonly meanM: number; readonly sigmaM: number } {
+  const n = base.boundaryM.length;
+  return {
+    meanM: base.priors.boundaryMeanM[n - 1]!,
+    sigmaM: Math.sqrt(base.priors.boundaryCovariance[n * n - 1]!),
+  };
+}
+
+/** Standard deviations of the description within which the end is looked for. */
+const END_SIGMAS = 3.5;
+
 /**
  * Starting distances of an antenna: the echo's tip lies behind the antenna by the delay of its resonances, which in a
  * narrow sweep is a resolution or more.
  */
 function antennaStarts(base: LineModel, search: EndSearch, startsM: readonly number[]): number[] {
-  const n = base.boundaryM.length;
-  const meanM = base.priors.boundaryMeanM[n - 1]!;
-  const sigmaM = Math.sqrt(base.priors.boundaryCovariance[n * n - 1]!);
+  const { meanM, sigmaM } = expectedEnd(base);
   const tipM = startsM[0]!;
   const back = [0, 0.25, 0.5, 0.75, 1].map((share) => tipM - share * search.resolutionM);
-  const starts = [...startsM, ...back].filter((m) => m > 0.05 && Math.abs(m - meanM) < 3.5 * sigmaM + 0.02);
+  const starts = [...startsM, ...back].filter((m) => m > 0.05 && Math.abs(m - meanM) < END_SIGMAS * sigmaM);
   if (starts.length === 0) return [meanM];
   // Starts nearer to each other than a tenth of a resolution settle at the same place.
   return starts
@@ -321,9 +399,11 @@ function phaseStarts(
   const beta = base.media.at(-1)!.gamma.im[context.frequencyHz.length - 1]!;
   const stepM = Math.PI / beta / 24;
   const starts: { distanceM: number; value: number }[] = [];
+  const { meanM, sigmaM } = expectedEnd(base);
   for (const startM of kind === 'load' || kind === 'antenna' ? startsM : startsM.slice(0, 1)) {
-    const fromM = Math.max(0, startM - search.resolutionM);
-    const points = Math.ceil((2 * search.resolutionM) / stepM) + 1;
+    const fromM = Math.max(0.02, startM - search.resolutionM, meanM - END_SIGMAS * sigmaM);
+    const toM = Math.min(startM + search.resolutionM, meanM + END_SIGMAS * sigmaM);
+    const points = Math.max(3, Math.ceil((toM - fromM) / stepM) + 1);
     const trace = residualTrace(base, context.measured, context.weight, { fromM, stepM, points });
     const sign = kind === 'short' ? -1 : 1;
     const real = trace.value.re.map((v) => (kind === 'load' || kind === 'antenna' ? Math.abs(v) : sign * v));

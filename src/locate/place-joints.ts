@@ -107,6 +107,9 @@ export function bestPlaceOf(
   return best;
 }
 
+/** A joint that shows less than this, in −2 ln likelihood, stays where it is expected: ripple shows as much. */
+const LEAST_EVIDENCE = 30;
+
 function mostLikelyPlace(
   context: FitContext,
   model: LineModel,
@@ -120,7 +123,7 @@ function mostLikelyPlace(
   const toM = Math.min(high, expected.meanM + reachM);
   const probes = probeAcross(context, model, fromM, toM);
   const best = bestPlaceOf(probes, PURE_TYPES, expected, residualVariance(context));
-  return best?.distanceM ?? null;
+  return best !== null && best.score > LEAST_EVIDENCE ? best.distanceM : null;
 }
 
 function clampInside(model: LineModel, index: number, distanceM: number): number {

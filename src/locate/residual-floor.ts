@@ -12,6 +12,8 @@ export type SearchSettings = {
   readonly taper: Float64Array;
   /** 6 dB width of an echo, m. */
   readonly resolutionM: number;
+  /** Called once when nothing strong is left to explain; `found` tells whether something strong was there. */
+  readonly onCalm?: (found: boolean) => void;
   /** Called before each round. */
   readonly onRound?: (round: number, limit: number) => void;
 };

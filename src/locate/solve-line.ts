@@ -11,7 +11,7 @@ import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
-import { type EndSearch, findEnd } from './find-end.ts';
+import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
@@ -73,7 +73,13 @@ export function solveLine(
   placeJoints(context, model);
   addSoundJoints(model);
   evaluateCost(context, model, ALL_FREE, 1);
-  const { verdicts } = extractEchoes(context, model, settings);
+  let endKind: Pick<typeof end, 'kind' | 'lead'> = end;
+  const { verdicts } = extractEchoes(context, model, {
+    ...settings,
+    onCalm(found) {
+      if (found && !end.cut) endKind = reviseEnd(context, model, search, endKind);
+    },
+  });
   // Carriers that stronger things on the line had hidden.
   interfered.push(...leaveOutInterference(context));
   onProgress('judging joints', 0.8);
@@ -90,8 +96,8 @@ export function solveLine(
     line: end.line,
     joints,
     lumps,
-    endKind: end.kind,
-    endConfidence: 1 / (1 + Math.exp(-Math.min(30, end.lead / 2))),
+    endKind: endKind.kind,
+    endConfidence: 1 / (1 + Math.exp(-Math.min(30, endKind.lead / 2))),
     scale,
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
@@ -104,7 +110,7 @@ export function solveLine(
     lengthSigmaM: endEcho.distanceSigmaM,
     distanceScale: scale.factor,
     delayNs: groupDelayNs(model),
-    end: end.kind,
+    end: endKind.kind,
     endsEarly: end.cut,
     scaledTo: scale.to,
     lossFactor: 1 + model.conductor,
