@@ -8,7 +8,7 @@ import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance
 import { type JointVerdict, judgeJoint } from './judge-joints.ts';
 import {
   ALL_FREE,
-  addLump,
+  addFreeLump,
   around,
   boundaryAt,
   cloneModel,
@@ -17,7 +17,6 @@ import {
   lumpDistanceM,
   removeLump,
   restoreModel,
-  sectionAt,
   translate,
 } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
@@ -31,6 +30,7 @@ import {
 } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
+import { resolvePair } from './resolve-pair.ts';
 
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
@@ -88,7 +88,10 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
     } else {
       const free = model.lumps.filter((lump) => lump.boundary === null).length;
       if (free >= MOST_FREE_LUMPS) break;
-      if (!insertLump(context, model, settings, peak.distanceM)) {
+      const explained = hasFreeLumpNear(model, peak.distanceM, MERGING * settings.resolutionM)
+        ? resolvePair(context, model, settings, peak.distanceM)
+        : insertLump(context, model, settings, peak.distanceM);
+      if (!explained) {
         refused.push(peak.distanceM);
         continue;
       }
@@ -102,6 +105,15 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
   pruneLumps(context, model, settings);
   refineAll(context, model);
   return { verdicts };
+}
+
+/** What is left over this near to a lump, in 6 dB widths, belongs to it: two may have merged. */
+const MERGING = 0.95;
+
+function hasFreeLumpNear(model: LineModel, distanceM: number, withinM: number): boolean {
+  return model.lumps.some(
+    (lump) => lump.boundary === null && Math.abs(lumpDistanceM(model, lump) - distanceM) < withinM,
+  );
 }
 
 /** Refines everything against the residual as it stands. */
@@ -177,16 +189,7 @@ function insertLump(
 }
 
 function addCandidate(model: LineModel, candidate: Candidate): Lump {
-  return addLump(model, {
-    type: lumpedTypeOf(candidate.type),
-    strength: candidate.strength,
-    strengthSigma: null,
-    section: sectionAt(model, candidate.distanceM),
-    boundary: null,
-    offsetM: candidate.distanceM,
-    offsetSigmaM: null,
-    offsetMeanM: candidate.distanceM,
-  });
+  return addFreeLump(model, { ...candidate, type: lumpedTypeOf(candidate.type) });
 }
 
 /** Candidates of every pure type within a resolution of a distance, best gain first. */

@@ -232,6 +232,23 @@ export function addLump(model: LineModel, lump: Omit<Lump, 'id'>): Lump {
   return added;
 }
 
+/** Adds a lump that stands free in its section and may have any size. */
+export function addFreeLump(
+  model: LineModel,
+  lump: { readonly type: LumpedType; readonly strength: number; readonly distanceM: number },
+): Lump {
+  return addLump(model, {
+    type: lump.type,
+    strength: lump.strength,
+    strengthSigma: null,
+    section: sectionAt(model, lump.distanceM),
+    boundary: null,
+    offsetM: lump.distanceM,
+    offsetSigmaM: null,
+    offsetMeanM: lump.distanceM,
+  });
+}
+
 export function removeLump(model: LineModel, id: number): void {
   const index = model.lumps.findIndex((lump) => lump.id === id);
   if (index >= 0) model.lumps.splice(index, 1);

@@ -84,7 +84,7 @@ export function probeAcross(
 }
 
 /** Adds a lump's own echo to the residual. */
-function putBack(context: FitContext, stage: number): void {
+export function putBack(context: FitContext, stage: number): void {
   const own = context.cascade.reflection(stage);
   const through = context.cascade.sensitivity(stage);
   const { residual, weight } = context;
