@@ -1,6 +1,6 @@
 /** What is known of the chosen one, in the room there is. */
 import { fitRuns } from '../../plot/cells.ts';
-import { lengthWithSigmaText, percentText } from '../../plot/quantity-text.ts';
+import { lengthWithSigmaText } from '../../plot/quantity-text.ts';
 import { type Run, run } from '../../plot/run.ts';
 import { chosenOf } from '../derived.ts';
 import type { Found } from '../found.ts';
@@ -27,7 +27,7 @@ function paragraphsOf(found: Found, { units }: State): readonly Paragraph[] {
   return [
     {
       label: '',
-      text: `${found.what}${where}, ${percentText(found.confidence)} sure`,
+      text: `${found.what}${where}`,
       role: found.severity,
     },
     ...listParagraph('likely', found.causes),

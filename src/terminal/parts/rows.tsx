@@ -14,7 +14,8 @@ export function Rows(props: {
       {props.rows.map((row, index) => (
         // biome-ignore lint/suspicious/noArrayIndexKey: a row is its place on the screen
         <Text key={index} wrap="truncate">
-          {styledText(row, props.theme) || ' '}
+          {/* The library looks at every cell, blank ones too; those at the end it drops in the end. */}
+          {styledText(row, props.theme).trimEnd() || ' '}
         </Text>
       ))}
     </Box>
