@@ -5,7 +5,7 @@
  * The figures are common practice for sound lines; they make simulated sweeps look like the field.
  */
 
-import type { CoaxSection, Line } from '../line/line.ts';
+import type { Line, Section } from '../line/line.ts';
 import { coaxMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { createRandom, type Random } from '../numerics/random.ts';
@@ -34,7 +34,7 @@ export type AsBuilt = {
 };
 
 const SLAB_M = [0.05, 0.25] as const;
-/** Structural return loss of a section, dB, RMS of the band. */
+/** Structural return loss of the whole run, dB, RMS of the band: a short piece of the same cable has less. */
 const STRUCTURAL_DB = [35, 45] as const;
 /** Return loss of a sound connector at the top of the band, dB. */
 const JOINT_DB = [30, 40] as const;
@@ -74,17 +74,26 @@ export function drawAsBuilt(
   seed: number,
 ): AsBuilt {
   const random = createRandom(seed);
-  const sections = line.sections.map((section): SectionAsBuilt => {
-    const lengthM = section.lengthM ?? 0;
-    if (section.type !== 'coax')
-      return { velocity: 1, impedance: 1, loss: 1, slabs: [{ lengthM, ratio: 1 }] };
-    return {
-      velocity: 1 + VELOCITY_SPREAD * random.normal(),
-      impedance: 1 + IMPEDANCE_SPREAD * random.normal(),
-      loss: 1 + LOSS_SPREAD * random.normal(),
-      slabs: drawSlabs(section, lengthM, band, line.temperatureC, random),
-    };
-  });
+  const drawn = line.sections.map((section) => ({
+    section,
+    velocity: 1 + VELOCITY_SPREAD * random.normal(),
+    impedance: 1 + IMPEDANCE_SPREAD * random.normal(),
+    loss: 1 + LOSS_SPREAD * random.normal(),
+    shapes: section.type === 'coax' ? drawShapes(section.lengthM ?? 0, random) : [],
+  }));
+  const returnLossDb = between(STRUCTURAL_DB, random);
+  const scale = rippleScale(drawn, returnLossDb, band, line.temperatureC);
+  const sections = drawn.map(
+    ({ section, velocity, impedance, loss, shapes }): SectionAsBuilt =>
+      section.type === 'coax'
+        ? {
+            velocity,
+            impedance,
+            loss,
+            slabs: shapes.map(({ lengthM, shape }) => ({ lengthM, ratio: Math.exp(scale * shape) })),
+          }
+        : { velocity: 1, impedance: 1, loss: 1, slabs: [{ lengthM: section.lengthM, ratio: 1 }] },
+  );
   const joints = Array.from({ length: sections.length + 1 }, (_, i) => {
     const described = i === 0 ? null : (line.sections[i - 1]?.jointAfter.returnLossDb ?? null);
     return drawJoint(described ?? between(JOINT_DB, random), band.stopHz, random);
@@ -92,42 +101,55 @@ export function drawAsBuilt(
   return { sections, joints, endStrayS: between(END_STRAY_S, random) };
 }
 
+/** A slab before its ripple is scaled. */
+type Shape = { readonly lengthM: number; readonly shape: number };
+
 /**
  * Slabs whose impedance deviates by a heavy-tailed (double exponential) draw, as real cable does: mostly very little,
- * now and then a lot. Scaled so that their reflections, added at random phase through the section's own loss, have
- * the drawn structural return loss.
+ * now and then a lot.
  */
-function drawSlabs(
-  section: CoaxSection,
-  lengthM: number,
-  band: { readonly startHz: number; readonly stopHz: number },
-  temperatureC: number,
-  random: Random,
-): Slab[] {
-  const shapes: { lengthM: number; shape: number }[] = [];
+function drawShapes(lengthM: number, random: Random): Shape[] {
+  const shapes: Shape[] = [];
   for (let left = lengthM; left > 0; ) {
-    const drawn = between(SLAB_M, random);
-    const slabM = left - drawn < SLAB_M[0] ? left : drawn;
+    const wanted = between(SLAB_M, random);
+    const slabM = left - wanted < SLAB_M[0] ? left : wanted;
     shapes.push({ lengthM: slabM, shape: doubleExponential(random) });
     left -= slabM;
   }
-  const target = gammaOfReturnLoss(between(STRUCTURAL_DB, random));
+  return shapes;
+}
+
+/**
+ * The factor on all shapes of a run with which their reflections, added at random phase through the loss before them,
+ * have this return loss.
+ */
+function rippleScale(
+  sections: readonly { readonly section: Section; readonly shapes: readonly Shape[] }[],
+  returnLossDb: number,
+  band: { readonly startHz: number; readonly stopHz: number },
+  temperatureC: number,
+): number {
   const frequencyHz = Float64Array.from(
     { length: RIPPLE_POINTS },
     (_, i) => band.startHz + ((band.stopHz - band.startHz) * (i + 0.5)) / RIPPLE_POINTS,
   );
-  const alpha = coaxMedium(section.cable, frequencyHz, { temperatureC }).gamma.re;
+  const passedNp = new Float64Array(RIPPLE_POINTS);
   let energy = 0;
-  let before = 0;
-  let distanceM = 0;
-  for (const { lengthM: slabM, shape } of shapes) {
-    const step = (shape - before) / 2;
-    for (const a of alpha) energy += (step * step * Math.exp(-4 * a * distanceM)) / RIPPLE_POINTS;
-    before = shape;
-    distanceM += slabM;
+  const addStep = (step: number): void => {
+    for (const np of passedNp) energy += ((step / 2) ** 2 * Math.exp(-4 * np)) / RIPPLE_POINTS;
+  };
+  for (const { section, shapes } of sections) {
+    if (section.type !== 'coax') continue;
+    const alpha = coaxMedium(section.cable, frequencyHz, { temperatureC }).gamma.re;
+    let before = 0;
+    for (const { lengthM, shape } of shapes) {
+      addStep(shape - before);
+      before = shape;
+      for (let k = 0; k < RIPPLE_POINTS; k++) passedNp[k]! += alpha[k]! * lengthM;
+    }
+    addStep(-before);
   }
-  const scale = energy > 0 ? target / Math.sqrt(energy) : 0;
-  return shapes.map(({ lengthM: slabM, shape }) => ({ lengthM: slabM, ratio: Math.exp(scale * shape) }));
+  return energy > 0 ? gammaOfReturnLoss(returnLossDb) / Math.sqrt(energy) : 0;
 }
 
 /** A connector whose inductance and capacitance partly cancel; what is left has the given return loss at the top. */

@@ -62,6 +62,17 @@ describe('drawAsBuilt', () => {
       }
   });
 
+  it('draws ripple of one size along the run: a short jumper is as even as the cable it was cut from', () => {
+    const rmsOf = (section: number): number => {
+      const logs = built.flatMap(({ sections }) =>
+        sections[section]!.slabs.map((slab) => Math.log(slab.ratio)),
+      );
+      return Math.sqrt(logs.reduce((sum, r) => sum + r * r, 0) / logs.length);
+    };
+    expect(rmsOf(0) / rmsOf(1)).toBeGreaterThan(0.8);
+    expect(rmsOf(0) / rmsOf(1)).toBeLessThan(1.25);
+  });
+
   it('draws ripple that is mostly very small and now and then large', () => {
     const ratios = built.flatMap(({ sections }) =>
       sections[1]!.slabs.map((slab) => Math.abs(Math.log(slab.ratio))),
