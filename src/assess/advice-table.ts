@@ -8,8 +8,8 @@ import type { Advice, FindingKind, PlaceKind } from './advice.ts';
 
 type Rows = Readonly<Record<PlaceKind, Advice>>;
 
-/** Opening a connector breaks the line: nothing may feed it, from either end. */
-const OFF_FIRST = 'transmitter locked off and DC feed removed, before anything is opened';
+/** Hands on a connector may open the line: nothing may feed it, from either end. */
+const OFF_FIRST = 'transmitter locked off and DC feed removed before hands are on it';
 
 /** Test voltage destroys radios, amplifiers, arrestors and analyzers, and the cable keeps it as a charge. */
 const INSULATION =
@@ -79,8 +79,8 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
         'coupling nut not at its torque',
       ],
       checks: [
-        TORQUE,
         OFF_FIRST,
+        TORQUE,
         'green or white deposit inside',
         'depth and fit of the centre pin',
         'sweep again after cleaning and re-torquing',
@@ -100,7 +100,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
     },
     end: {
       causes: ['corroded contact at the last connector', 'poor contact inside the antenna or load'],
-      checks: [TORQUE, OFF_FIRST, 'green or white deposit inside', LOAD_FOR_ANTENNA],
+      checks: [OFF_FIRST, TORQUE, 'green or white deposit inside', LOAD_FOR_ANTENNA],
       bring: [...CONNECTOR_KIT, SEALING, KNOWN_LOAD],
     },
   },
@@ -131,8 +131,8 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
         'adaptor or connector of another impedance or series',
       ],
       checks: [
-        TORQUE,
         OFF_FIRST,
+        TORQUE,
         'that both halves are the same series and impedance',
         'pin depth with a gauge',
       ],
@@ -145,7 +145,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
     },
     end: {
       causes: ['last connector not fully mated', 'adaptor before the antenna or load'],
-      checks: [TORQUE, OFF_FIRST, 'that both halves are the same series and impedance', LOAD_FOR_ANTENNA],
+      checks: [OFF_FIRST, TORQUE, 'that both halves are the same series and impedance', LOAD_FOR_ANTENNA],
       bring: [...CONNECTOR_KIT, KNOWN_LOAD],
     },
   },
@@ -201,7 +201,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
     },
     end: {
       causes: ['antenna, load or adaptor of another impedance'],
-      checks: ['what the description says of the end', LOAD_FOR_ANTENNA],
+      checks: ['what the description says of the end', OFF_FIRST, LOAD_FOR_ANTENNA],
       bring: [KNOWN_LOAD],
     },
   },
@@ -298,6 +298,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
       checks: [
         'what the description says of the end',
         'the bands that the antenna is made for',
+        OFF_FIRST,
         LOAD_FOR_ANTENNA,
       ],
       bring: [KNOWN_LOAD],
@@ -311,12 +312,12 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
         'dirt or water inside',
         'worn or poorly assembled connector',
       ],
-      checks: [TORQUE, OFF_FIRST, 'dirt, water or wear inside', 'sweep again after cleaning and re-torquing'],
+      checks: [OFF_FIRST, TORQUE, 'dirt, water or wear inside', 'sweep again after cleaning and re-torquing'],
       bring: [...CONNECTOR_KIT, SEALING],
     },
     cable: {
       causes: ['a connector or splice that the drawing does not show'],
-      checks: ['the run at this distance', TORQUE],
+      checks: ['the run at this distance', OFF_FIRST, TORQUE],
       bring: [...CONNECTOR_KIT, SEALING],
     },
     end: {
@@ -325,7 +326,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
         'dirt or water inside',
         'worn or poorly assembled connector',
       ],
-      checks: [TORQUE, OFF_FIRST, 'dirt, water or wear inside', LOAD_FOR_ANTENNA],
+      checks: [OFF_FIRST, TORQUE, 'dirt, water or wear inside', LOAD_FOR_ANTENNA],
       bring: [...CONNECTOR_KIT, SEALING, KNOWN_LOAD],
     },
   },
@@ -333,7 +334,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
     port: AT_PORT,
     joint: {
       causes: ['bad contact or assembly of the connector', 'water inside the connector'],
-      checks: [TORQUE, OFF_FIRST, 'dirt, water or wear inside', WIDER_SWEEP],
+      checks: [OFF_FIRST, TORQUE, 'dirt, water or wear inside', WIDER_SWEEP],
       bring: [...CONNECTOR_KIT, SEALING],
     },
     cable: {
@@ -343,7 +344,7 @@ export const ADVICE_TABLE: Readonly<Record<FindingKind, Rows>> = {
     },
     end: {
       causes: ['bad contact or water in the last connector', 'antenna or load damaged'],
-      checks: [TORQUE, LOAD_FOR_ANTENNA, WIDER_SWEEP],
+      checks: [OFF_FIRST, TORQUE, LOAD_FOR_ANTENNA, WIDER_SWEEP],
       bring: [...CONNECTOR_KIT, SEALING, KNOWN_LOAD],
     },
   },
