@@ -19,7 +19,7 @@ import {
   restoreModel,
   translate,
 } from './line-model.ts';
-import { placeJoints } from './place-joints.ts';
+import { expectBoundary, placeJoints } from './place-joints.ts';
 import {
   bestOfEach,
   type Candidate,
@@ -30,7 +30,7 @@ import {
 } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
-import { resolvePair } from './resolve-pair.ts';
+import { MOST_UNEQUAL_DB, resolvePair } from './resolve-pair.ts';
 
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
@@ -101,6 +101,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
     trace = traceResidual(context, model, settings);
   }
   if (!calm) refineAll(context, model);
+  mergeIntoJoints(context, model, settings, verdicts);
   retestTypes(context, model, settings);
   pruneLumps(context, model, settings);
   refineAll(context, model);
@@ -134,6 +135,7 @@ function strongestAboveFloor(
   const { resolutionM } = settings;
   const n = model.boundaryM.length;
   const endM = boundaryAt(model, n);
+  const cells = jointCells(model, resolutionM);
   let best: FloorPeak | null = null;
   let bestRatio = 0;
   for (let k = 1; k < trace.level.length - 1; k++) {
@@ -141,7 +143,7 @@ function strongestAboveFloor(
     if (level < trace.level[k - 1]! || level < trace.level[k + 1]!) continue;
     const distanceM = trace.fromM + k * trace.stepM;
     if (refused.some((d) => Math.abs(d - distanceM) < resolutionM)) continue;
-    const boundary = nearestBoundary(model, distanceM, resolutionM);
+    const boundary = nearestBoundary(model, cells, distanceM);
     // What the end leaves over is not an echo before it; the search stops a cell short.
     if (distanceM > endM - resolutionM * JOINT_CELL) continue;
     if (boundary !== null && (judged.has(boundary) || boundary === n)) continue;
@@ -156,18 +158,58 @@ function strongestAboveFloor(
   return best;
 }
 
+/**
+ * Half the width of each boundary's cell, m: what lies within it belongs to the joint. Where a joint itself is not seen,
+ * its cell is as wide as its place is uncertain.
+ */
+export function jointCells(model: LineModel, resolutionM: number): number[] {
+  const n = model.boundaryM.length;
+  const others = new Set(model.boundaryM.keys());
+  return Array.from({ length: n + 1 }, (_, boundary) => {
+    const own = JOINT_CELL * resolutionM + 0.03;
+    if (boundary === 0 || boundary === n) return own;
+    const { sigmaM } = expectBoundary(model, others, boundary - 1);
+    return own + PLACE_SIGMAS * sigmaM;
+  });
+}
+
+/** Standard deviations of a joint's own place that its cell is widened by. */
+const PLACE_SIGMAS = 2;
+
 /** The joint whose cell a distance lies in, or null. */
-export function nearestBoundary(model: LineModel, distanceM: number, resolutionM: number): number | null {
+export function nearestBoundary(
+  model: LineModel,
+  cells: readonly number[],
+  distanceM: number,
+): number | null {
   let best: number | null = null;
-  let nearest = JOINT_CELL * resolutionM + 0.03;
+  let nearest = Number.POSITIVE_INFINITY;
   for (let b = 0; b <= model.boundaryM.length; b++) {
     const off = Math.abs(distanceM - boundaryAt(model, b));
-    if (off < nearest) {
+    if (off < cells[b]! && off < nearest) {
       nearest = off;
       best = b;
     }
   }
   return best;
+}
+
+/** Hands what stands in a joint's cell over to the joint, which is judged anew. */
+function mergeIntoJoints(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  verdicts: Map<number, JointVerdict>,
+): void {
+  const cells = jointCells(model, settings.resolutionM);
+  const merged = new Set<number>();
+  for (const lump of model.lumps.filter((l) => l.boundary === null)) {
+    const boundary = nearestBoundary(model, cells, lumpDistanceM(model, lump));
+    if (boundary === null || boundary === 0 || boundary === model.boundaryM.length) continue;
+    removeLump(model, lump.id);
+    merged.add(boundary);
+  }
+  for (const boundary of merged) verdicts.set(boundary, judgeJoint(context, model, settings, boundary));
 }
 
 /** Inserts the pure type that explains most around a distance; false when none helps. */
@@ -261,6 +303,7 @@ const PRUNE_COST = 30;
 
 /** Drops lumps without which the sweep is explained as well. */
 function pruneLumps(context: FitContext, model: LineModel, settings: SearchSettings): void {
+  dropCompanions(context, model, settings);
   refineAll(context, model);
   const trace = traceResidual(context, model, settings);
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
@@ -273,6 +316,22 @@ function pruneLumps(context: FitContext, model: LineModel, settings: SearchSetti
     refine(context, trial, ALL_FREE, { variance: mean, maxIterations: 5 });
     const gain = (residualEnergy(context) - kept) / variance;
     if (gain < PRUNE_COST) restoreModel(model, trial);
+  }
+}
+
+/** Drops what stands within a cell of something far stronger: that one's own imperfection. */
+function dropCompanions(context: FitContext, model: LineModel, settings: SearchSettings): void {
+  const free = model.lumps
+    .filter((lump) => lump.boundary === null)
+    .map((lump) => ({ lump, levelDb: lumpReturnLossDb(context.frequencyHz, lump) }));
+  for (const { lump, levelDb } of free) {
+    const overshadowed = free.some(
+      (other) =>
+        levelDb - other.levelDb > MOST_UNEQUAL_DB &&
+        Math.abs(lumpDistanceM(model, other.lump) - lumpDistanceM(model, lump)) <
+          MERGING * settings.resolutionM,
+    );
+    if (overshadowed) removeLump(model, lump.id);
   }
 }
 

@@ -142,11 +142,11 @@ export function judgeJoint(
   const variance = localVariance(trace, atM, settings.resolutionM, mean);
   const bare = cloneModel(model);
   dress(bare, boundary, 'bare');
-  const reachM = settings.resolutionM;
-  const mine = model.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id);
-  const probes = boundary === 0 ? [] : probeAcross(context, model, atM - reachM, atM + reachM, mine);
   const others = new Set(model.boundaryM.keys());
   const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
+  const reachM = Math.max(settings.resolutionM, 2.5 * (expected?.sigmaM ?? 0));
+  const mine = model.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id);
+  const probes = boundary === 0 ? [] : probeAcross(context, model, atM - reachM, atM + reachM, mine);
   const tryOut = (state: JointState): Trial => {
     const place =
       expected && bestPlaceOf(probes, state === 'sound' ? PURE_TYPES : [state], expected, variance);

@@ -18,7 +18,15 @@ import {
   removeLump,
   restoreModel,
 } from './line-model.ts';
-import { lumpedTypeOf, type Probe, type PureType, probeStage, pureTypeOf, putBack } from './probe.ts';
+import {
+  lumpedTypeOf,
+  lumpReturnLossDb,
+  type Probe,
+  type PureType,
+  probeStage,
+  pureTypeOf,
+  putBack,
+} from './probe.ts';
 import type { SearchSettings } from './residual-floor.ts';
 
 /** How far apart two that merge may stand, and how near at least, in 6 dB widths of an echo. */
@@ -77,6 +85,7 @@ export function resolvePair(
     for (const { strength, type, distanceM: at } of pair.lumps)
       addFreeLump(trial, { type: lumpedTypeOf(type), strength, distanceM: at });
     const cost = local(trial) + 2 * perLump;
+    if (tooUnequal(context, trial)) continue;
     if (best === null || cost < best.cost) best = { model: trial, cost };
   }
   if (best === null || best.cost > singleCost - MARGIN) {
@@ -86,6 +95,14 @@ export function resolvePair(
   restoreModel(model, best.model);
   evaluateCost(context, model, ALL_FREE, 1);
   return true;
+}
+
+/** A neighbour this much weaker, dB, is what a strong echo's own imperfection looks like. */
+export const MOST_UNEQUAL_DB = 17;
+
+function tooUnequal(context: FitContext, trial: LineModel): boolean {
+  const [a, b] = trial.lumps.slice(-2).map((lump) => lumpReturnLossDb(context.frequencyHz, lump));
+  return Math.abs(a! - b!) > MOST_UNEQUAL_DB;
 }
 
 type Placed = { readonly type: PureType; readonly strength: number; readonly distanceM: number };
