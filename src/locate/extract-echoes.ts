@@ -36,7 +36,7 @@ import { MOST_UNEQUAL_DB, resolvePair } from './resolve-pair.ts';
 export const MOST_FREE_LUMPS = 12;
 
 /** An echo must stand this far above the upper quantile of the trace around it. Chosen on seeded scenes. */
-const THRESHOLD_OVER_FLOOR = 2.2;
+const THRESHOLD_OVER_FLOOR = 3.6;
 const THRESHOLD_AT_JOINT = 1.8;
 
 /**
@@ -148,7 +148,7 @@ function strongestAboveFloor(
     if (distanceM > endM - resolutionM * JOINT_CELL) continue;
     if (boundary !== null && (judged.has(boundary) || boundary === n)) continue;
     if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
-    const ratio = level / floorAt(trace, k, resolutionM);
+    const ratio = level / floorAt(trace, model, k, resolutionM);
     const threshold = boundary === null ? THRESHOLD_OVER_FLOOR : THRESHOLD_AT_JOINT;
     if (ratio / threshold > Math.max(1, bestRatio)) {
       bestRatio = ratio / threshold;

@@ -2,9 +2,9 @@
  * The floor of what the model leaves over, along the line: what an echo must rise above, and what evidence at a place is
  * weighed with. Structural ripple is sparse and heavy-tailed, so a median would flood healthy lines with false echoes.
  */
-import { quantileOfSorted } from '../numerics/statistics.ts';
+import { quantile, quantileOfSorted } from '../numerics/statistics.ts';
 import type { FitContext } from './fit-cascade.ts';
-import { boundaryAt, type LineModel } from './line-model.ts';
+import { boundaryAt, type LineModel, sectionAt } from './line-model.ts';
 import { type ResidualTrace, residualTrace } from './residual-trace.ts';
 
 export type SearchSettings = {
@@ -33,19 +33,33 @@ export function traceResidual(
   return residualTrace(model, context.residual, settings.taper, { fromM: 0, stepM, points });
 }
 
+/** Cells that a section must have to speak for itself. */
+const LEAST_SECTION_CELLS = 8;
+
 /**
- * Level that an echo at index `k` must exceed: an upper quantile of the trace around it, candidates' own cells left out.
+ * Level that an echo at index `k` must exceed: an upper quantile of the trace around it, candidates' own cells left out,
+ * or of its own section where that is higher: a jumper may well be rougher than the run beside it.
  */
-export function floorAt(trace: ResidualTrace, k: number, resolutionM: number): number {
+export function floorAt(trace: ResidualTrace, model: LineModel, k: number, resolutionM: number): number {
   const guard = Math.ceil((1.5 * resolutionM) / trace.stepM);
   const reach = Math.max(Math.ceil((15 * resolutionM) / trace.stepM), Math.ceil(trace.level.length * 0.12));
-  const around: number[] = [];
-  for (let i = Math.max(0, k - reach); i <= Math.min(trace.level.length - 1, k + reach); i++) {
-    if (Math.abs(i - k) > guard) around.push(trace.level[i]!);
-  }
-  if (around.length < 8) for (const level of trace.level) around.push(level);
-  around.sort((a, b) => a - b);
-  return quantileOfSorted(around, FLOOR_QUANTILE);
+  const last = trace.level.length - 1;
+  const window = levelsBetween(trace, k, guard, Math.max(0, k - reach), Math.min(last, k + reach));
+  const around = window.length < 8 ? quantile(trace.level, FLOOR_QUANTILE) : quantile(window, FLOOR_QUANTILE);
+  const section = sectionAt(model, trace.fromM + k * trace.stepM);
+  // Joints stand at both ends of a section, and are no part of its floor.
+  const indexOf = (m: number): number => Math.round((m - trace.fromM) / trace.stepM);
+  const from = Math.max(0, indexOf(boundaryAt(model, section) + resolutionM));
+  const to = Math.min(last, indexOf(boundaryAt(model, section + 1) - resolutionM));
+  const own = levelsBetween(trace, k, guard, from, to);
+  const cells = (own.length * trace.stepM) / resolutionM;
+  return cells < LEAST_SECTION_CELLS ? around : Math.max(around, quantile(own, FLOOR_QUANTILE));
+}
+
+function levelsBetween(trace: ResidualTrace, k: number, guard: number, from: number, to: number): number[] {
+  const levels: number[] = [];
+  for (let i = from; i <= to; i++) if (Math.abs(i - k) > guard) levels.push(trace.level[i]!);
+  return levels;
 }
 
 /** The floor of a place is taken no lower than this share of the whole residual's, whose side lobes reach everywhere. */
