@@ -35,9 +35,18 @@ import { MOST_UNEQUAL_DB, resolvePair } from './resolve-pair.ts';
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
 
-/** An echo must stand this far above the upper quantile of the trace around it. Chosen on seeded scenes. */
-const THRESHOLD_OVER_FLOOR = 3.6;
-const THRESHOLD_AT_JOINT = 1.8;
+/**
+ * A flaw in the cable must stand this far above the upper quantile of the trace around it; a weak one, such as cable as
+ * sold may show by itself, farther. Chosen on seeded scenes with sparse and with dense ripple.
+ */
+const OVER_FLOOR = { strong: 3.6, strongDb: -36, weak: 8, weakDb: -40 };
+const OVER_FLOOR_AT_JOINT = 1.8;
+
+function thresholdOverFloor(level: number): number {
+  const { strong, strongDb, weak, weakDb } = OVER_FLOOR;
+  const share = (strongDb - 20 * Math.log10(level)) / (strongDb - weakDb);
+  return strong * (weak / strong) ** Math.max(0, Math.min(1, share));
+}
 
 /**
  * Flaws inside a cable that return less than this over the band are what cable as sold may show here and there, dB.
@@ -149,7 +158,7 @@ function strongestAboveFloor(
     if (boundary !== null && (judged.has(boundary) || boundary === n)) continue;
     if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
     const ratio = level / floorAt(trace, model, k, resolutionM);
-    const threshold = boundary === null ? THRESHOLD_OVER_FLOOR : THRESHOLD_AT_JOINT;
+    const threshold = boundary === null ? thresholdOverFloor(level) : OVER_FLOOR_AT_JOINT;
     if (ratio / threshold > Math.max(1, bestRatio)) {
       bestRatio = ratio / threshold;
       best = { distanceM, boundary, level };
