@@ -147,12 +147,7 @@ export function judgeJoint(
   const reachM = Math.max(settings.resolutionM, 2.5 * (expected?.sigmaM ?? 0));
   const mine = model.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id);
   const probes = boundary === 0 ? [] : probeAcross(context, model, atM - reachM, atM + reachM, mine);
-  const tryOut = (state: JointState): Trial => {
-    const place =
-      expected && bestPlaceOf(probes, state === 'sound' ? PURE_TYPES : [state], expected, variance);
-    const trial = cloneModel(bare);
-    if (place) trial.boundaryM[boundary - 1] = place.distanceM;
-    dress(trial, boundary, state, place);
+  const settle = (state: JointState, trial: LineModel): Trial => {
     const near = around(trial, atM - reachM, atM + reachM);
     if (state !== 'sound') {
       // The fault first, and what it does to everything behind it: the rest would lean over to fill its place.
@@ -160,14 +155,28 @@ export function judgeJoint(
       const first = { ...near, impedances: new Set<number>(), lumps: new Set(fault.map((lump) => lump.id)) };
       refine(context, trial, first, { variance, maxIterations: 6 });
     }
-    refine(context, trial, near, { variance, maxIterations: 10 });
+    refine(context, trial, near, { variance, maxIterations: 14 });
     return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
   };
-  const sound = tryOut('sound');
+  const tryOut = (state: JointState): Trial => {
+    const place =
+      expected && bestPlaceOf(probes, state === 'sound' ? PURE_TYPES : [state], expected, variance);
+    const trial = cloneModel(bare);
+    if (place) trial.boundaryM[boundary - 1] = place.distanceM;
+    dress(trial, boundary, state, place);
+    return settle(state, trial);
+  };
   const faults = PURE_TYPES.map(tryOut).sort((a, b) => a.cost - b.cost);
+  // A sound joint gets its chance from every place that a fault was tried at, too.
+  const sound = [
+    tryOut('sound'),
+    ...faults.map(({ model: from }) => settle('sound', withoutFault(from, boundary))),
+  ].reduce((a, b) => (b.cost < a.cost ? b : a));
   const bad = faults.filter((trial) => isBeyondSound(trial, boundary));
   const best = bad[0];
-  const odds = best ? (sound.cost - best.cost) / 2 : 0;
+  const advantage = best ? (sound.cost - best.cost) / 2 : 0;
+  // A fit by the name of sound that needs more reactance than a sound joint has is none.
+  const odds = needsTooMuch(sound.model, boundary) ? Math.max(advantage, FAULT_ODDS) : advantage;
   if (!best || odds < (boundary === 0 ? PORT_ODDS : FAULT_ODDS)) {
     restoreModel(model, sound.model);
     return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
@@ -176,6 +185,18 @@ export function judgeJoint(
   const rival = faults.find((trial) => trial.state !== best.state);
   const lead = rival ? Math.abs(rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY;
   return { boundary, state: best.state, clear: lead >= KIND_ODDS, odds, lead };
+}
+
+function needsTooMuch(model: LineModel, boundary: number): boolean {
+  const strength = reactiveStrength(model, boundary);
+  return lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
+}
+
+/** A copy of the model in which a joint is sound, its faces taking over what they may of the fault's reactance. */
+function withoutFault(model: LineModel, boundary: number): LineModel {
+  const copy = cloneModel(model);
+  dress(copy, boundary, 'sound', { resistive: 0, reactive: reactiveStrength(model, boundary) });
+  return copy;
 }
 
 /** Whether a fitted fault is of its own kind and larger than what a sound joint may show. */

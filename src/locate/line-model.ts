@@ -300,7 +300,8 @@ export function around(model: LineModel, fromM: number, toM: number): Freedom {
     loss: true,
     impedances: new Set(near.flatMap((i) => (i + 1 < model.media.length ? [i, i + 1] : [i]))),
     boundaries: null,
-    end: true,
+    // An antenna's many numbers follow slowly, and its band hides what little a fault before it changes.
+    end: model.end.type !== 'antenna',
     residue: fromM <= 0,
     lumps: new Set(lumps.map((lump) => lump.id)),
   };
