@@ -3,12 +3,20 @@ import { DB_PER_NEPER } from '../line/constants.ts';
 import type { Line, Section } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { type MediumRun, runLengthM, runOfMedia } from '../line/medium-run.ts';
-import type { ComplexArray } from '../numerics/complex.ts';
+import { type ComplexArray, complexSubtract } from '../numerics/complex.ts';
 import { type WindowSpec, windowSampler } from '../numerics/window.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { againstMedium, lowPassNodes, planLowPassSpectrum } from './low-pass-spectrum.ts';
 import type { DistanceGrid } from './path-factor.ts';
-import { strongSteps, withoutReReflections } from './re-reflections.ts';
+import {
+  type Discontinuity,
+  nameSteps,
+  reflectionOfSteps,
+  type StrongStep,
+  shareBehind,
+  strongSteps,
+  withoutReReflections,
+} from './re-reflections.ts';
 import { reflectionAlong } from './reflection-along.ts';
 
 /** Ohms against distance, with where it comes from. */
@@ -45,8 +53,12 @@ const MOST_POINTS = 4000;
 const MARGIN_WAVELENGTHS = 2;
 
 /** Rounds of taking re-reflections off, and the change of the reflection at which nothing more is to be had. */
-const MOST_ROUNDS = 6;
+const MOST_ROUNDS = 10;
 const SETTLED = 0.002;
+
+/** Steps are believed when they leave what a sound line leaves (one a number looked at), or so much less than before. */
+const EXPECTED_MISFIT = 40;
+const BELIEVED_SHARE = 0.25;
 
 /**
  * The impedance profile of a line from its own sweep.
@@ -71,17 +83,10 @@ export function measuredProfile(options: MeasuredProfileOptions): ImpedanceProfi
     temperatureC: line.temperatureC,
     z0Ohm: sweep.portOhm,
   });
-  const { measuredRun, grid, pulseM, lengthM, builtFrom } = planBuilt({ ...options, sweep });
+  const plan = planBuilt({ ...options, sweep });
+  const { grid } = plan;
   const seen = againstMedium(sweep.gamma, sweep.portOhm, reference);
-  let built = builtFrom(seen);
-  for (let round = 1; round <= MOST_ROUNDS; round++) {
-    // One more step a round: a bounce is weaker than the step it comes from, and is gone once that step is known.
-    const steps = strongSteps(built, grid, { resolutionM: pulseM, toM: lengthM, most: round });
-    if (steps.length === 0) break;
-    const before = built;
-    built = builtFrom(withoutReReflections(seen, measuredRun, steps, MOST_LOSS_NP));
-    if (steps.length < round && largestChange(before, built, grid, lengthM) < SETTLED) break;
-  }
+  const built = builtWithoutBounces(plan, seen);
   const first = Math.ceil(-grid.fromM / grid.stepM);
   const onLine = built.subarray(Math.min(first, built.length));
   return {
@@ -91,15 +96,41 @@ export function measuredProfile(options: MeasuredProfileOptions): ImpedanceProfi
   };
 }
 
+/**
+ * The reflection built up by each distance, its bounces taken off in rounds: one more step a round, since a bounce is
+ * weaker than the step it comes from, and is gone once that step is known.
+ */
+function builtWithoutBounces(plan: BuiltPlan, seen: ComplexArray): Float64Array {
+  const { grid, pulseM, lengthM } = plan;
+  const plain = plan.built(seen, []);
+  let built = plain;
+  let named: readonly Discontinuity[] = [];
+  for (let round = 1; round <= MOST_ROUNDS; round++) {
+    const steps = strongSteps(built, grid, { resolutionM: pulseM, toM: lengthM, most: round });
+    if (steps.length === 0) break;
+    named = nameSteps(steps, (tried) => plan.misfit(seen, tried));
+    const before = built;
+    built = plan.built(plan.straightened(seen, named), named);
+    if (steps.length < round && largestChange(before, built, grid, lengthM) < SETTLED) break;
+  }
+  if (named.length === 0) return built;
+  // Steps that explain little, as on a line of a few resolutions, are better not believed.
+  const left = plan.misfit(seen, named);
+  return left < EXPECTED_MISFIT || left < BELIEVED_SHARE * plan.misfit(seen, []) ? built : plain;
+}
+
 /** What does not change from round to round. */
 type BuiltPlan = {
-  readonly measuredRun: MediumRun;
   readonly grid: DistanceGrid;
   /** Length over which a step rises, m. */
   readonly pulseM: number;
   readonly lengthM: number;
-  /** From a reflection at the sweep's frequencies to the one built up by each distance. */
-  readonly builtFrom: (gamma: ComplexArray) => Float64Array;
+  /** A reflection at the sweep's frequencies without its bounces. */
+  readonly straightened: (gamma: ComplexArray, known: readonly Discontinuity[]) => ComplexArray;
+  /** From such a reflection, with the steps known in it, to the one built up by each distance. */
+  readonly built: (gamma: ComplexArray, known: readonly StrongStep[]) => Float64Array;
+  /** How badly what these leave of a reflection fits a line, what lies behind them counted at its full size. */
+  readonly misfit: (gamma: ComplexArray, known: readonly Discontinuity[]) => number;
 };
 
 function planBuilt(options: MeasuredProfileOptions): BuiltPlan {
@@ -125,19 +156,25 @@ function planBuilt(options: MeasuredProfileOptions): BuiltPlan {
     runFromZero(options, nodes.toHz),
     nodes.share,
   );
-  const spectrumOf = planLowPassSpectrum(sweep.frequencyHz, measuredRun, nodes, run);
+  const lowPass = planLowPassSpectrum(sweep.frequencyHz, measuredRun, nodes, run);
   const sampler = windowSampler(window);
   const taper = (share: number): number => sampler(0.5 + share / 2);
   const { frequencyHz } = nodes;
+  // What is known need not be guessed where the sweep has no points.
+  const unknown = (gamma: ComplexArray, known: readonly StrongStep[]): ComplexArray =>
+    complexSubtract(gamma, reflectionOfSteps(measuredRun, known));
   return {
-    measuredRun,
     grid,
     pulseM,
     lengthM,
-    builtFrom: (gamma) =>
+    straightened: (gamma, known) => withoutReReflections(gamma, measuredRun, known, MOST_LOSS_NP),
+    misfit: (gamma, known) =>
+      lowPass.misfit(unknown(withoutReReflections(gamma, measuredRun, known, MOST_LOSS_NP), known)) /
+      shareBehind(known, measuredRun) ** 2,
+    built: (gamma, known) =>
       reflectionAlong({
         frequencyHz,
-        gamma: spectrumOf(gamma),
+        gamma: complexAdd(lowPass.spectrum(unknown(gamma, known)), reflectionOfSteps(run, known)),
         run,
         cells,
         grid,
@@ -145,6 +182,10 @@ function planBuilt(options: MeasuredProfileOptions): BuiltPlan {
         mostLossNp: MOST_LOSS_NP,
       }),
   };
+}
+
+function complexAdd(a: ComplexArray, b: ComplexArray): ComplexArray {
+  return { re: a.re.map((v, k) => v + b.re[k]!), im: a.im.map((v, k) => v + b.im[k]!) };
 }
 
 /** By how much γ of each section changes over each cell, times the cell's share. */

@@ -6,7 +6,7 @@ import { type ImpedanceProfile, measuredProfile } from '../../src/locate/impedan
 import { createRandom } from '../../src/numerics/random.ts';
 import type { Sweep } from '../../src/sweep/sweep.ts';
 import { coaxMedium as scenesMedium } from '../scenes/coax-medium.ts';
-import { chainToPort, reflectionAtPort } from '../scenes/ladder.ts';
+import { chainToPort, type Element, reflectionAtPort } from '../scenes/ladder.ts';
 import { type EndModel as ScenesEnd, terminate } from '../scenes/termination.ts';
 import { evenHz, FOAM, lineOf, MATCHED, OPEN, SHORT, SOLID, sweepThrough } from './drawn-line.ts';
 
@@ -145,6 +145,48 @@ describe('measuredProfile', () => {
       const { mean } = ohmsOf(profile, 6 * i + 0.5, 6 * i + 5.5);
       expect(Math.abs(mean - ohm)).toBeLessThan(WITHIN_OHM);
     });
+  });
+
+  it.each([
+    // A resistance in series stays in the reading, one across the line too: R + 50, and 50 beside R.
+    ['9 Ω in series', { type: 'series', resistanceOhm: 9, inductanceH: 0 }, 59],
+    ['30 Ω in series', { type: 'series', resistanceOhm: 30, inductanceH: 0 }, 80],
+    ['200 Ω across the line', { type: 'shunt', conductanceS: 1 / 200, capacitanceF: 0 }, 40],
+    ['0.6 pF across the line', { type: 'shunt', conductanceS: 0, capacitanceF: 0.6e-12 }, 50],
+    ['1.5 nH in series', { type: 'series', resistanceOhm: 0, inductanceH: 1.5e-9 }, 50],
+  ] satisfies [string, Element, number][])(
+    'does not take the bounces of a fault for impedances: %s',
+    (_, fault, wanted) => {
+      for (const end of [
+        { kind: 'open', fringeF: 0 },
+        { kind: 'short', inductanceH: 0 },
+      ] satisfies ScenesEnd[]) {
+        const medium = scenesMedium(FOAM, 20, WIDE);
+        const slab = (lengthM: number): Element => ({ type: 'slab', medium, lengthM, impedanceScale: 1 });
+        const chain = chainToPort([slab(20), fault, slab(25)], terminate(end, WIDE), WIDE);
+        const gamma = reflectionAtPort(chain, 50);
+        const sweep: Sweep = {
+          frequencyHz: WIDE,
+          gamma,
+          portOhm: 50,
+          port: 1,
+          ports: 1,
+          file: '',
+          comments: [],
+        };
+        const profile = measuredProfile({ sweep, line: lineOf([{ cable: FOAM, lengthM: 45 }]), lengthM: 45 });
+        expect(Math.abs(ohmsOf(profile, 1, 19.5).mean - 50)).toBeLessThan(WITHIN_OHM);
+        expect(Math.abs(ohmsOf(profile, 20.5, 44).mean - wanted)).toBeLessThan(WITHIN_OHM);
+      }
+    },
+  );
+
+  it('does not believe steps that explain nothing, on a line of a few resolutions', () => {
+    const { stretches, line } = withSection(FOAM, 2);
+    const sweep = sweepThrough(stretches, OPEN, evenHz(60e6, 1058e6, 500), { noise: 1e-3 });
+    const profile = measuredProfile({ sweep, line, lengthM: 2 });
+    const { least, most } = ohmsOf(profile, 0.1, 1.8);
+    expect([least > 25, most < 100]).toEqual([true, true]);
   });
 
   it('reads the run’s own impedance from a port of another', () => {
