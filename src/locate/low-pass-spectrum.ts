@@ -16,6 +16,12 @@ const SPARE_TURNS = 0.45;
 /** Expected error at 0 Hz, for a line whose end returns 1, up to which it counts as known. Set by the profiles' tests. */
 const LARGEST_ERROR_AT_ZERO = 0.05;
 
+/** So far the end may have turned at the lowest frequency whatever the line, turns. Set by the profiles' tests. */
+const SURE_TURNS = 0.6;
+
+/** Turns of the end over the whole band from which on it may have turned further there: enough places to tell apart. */
+const MANY_TURNS = 50;
+
 /**
  * Whether a sweep starts low enough, and has steps fine enough, to say what lies at 0 Hz: f1 at the first harmonic
  * where the line fills most of the unambiguous distance, at one of the next where it is shorter.
@@ -26,6 +32,9 @@ const LARGEST_ERROR_AT_ZERO = 0.05;
 export function reachesZero(frequencyHz: Float64Array, run: MediumRun): boolean {
   const measured = { frequencyHz, path: roundTrip(run) };
   if (turnsPerHz(measured) * medianStepHz(frequencyHz) > FULLEST_TURNS) return false;
+  const { im } = measured.path;
+  const isSure = im[0]! <= 2 * Math.PI * SURE_TURNS;
+  if (!isSure && im[im.length - 1]! < 2 * Math.PI * MANY_TURNS) return false;
   const zero = { frequencyHz: new Float64Array(1), path: complexZeros(1) };
   return planBandLimited(measured, zero).error[0]! <= LARGEST_ERROR_AT_ZERO;
 }

@@ -130,5 +130,8 @@ describe('reachesZero', () => {
     expect(reaches(6e6, 2e6, 15)).toBe(true);
     expect(reaches(6e6, 2e6, 50)).toBe(false);
     expect(reaches(700e6, 1e6, 5)).toBe(false);
+    // A line of a few resolutions must be seen from still lower.
+    expect(reaches(30e6, 2e6, 2)).toBe(true);
+    expect(reaches(50e6, 2e6, 2)).toBe(false);
   });
 });
