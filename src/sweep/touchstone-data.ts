@@ -2,8 +2,17 @@
 import type { Notice } from '../outcome.ts';
 import { createNumberScanner } from './number-scan.ts';
 import { createParameterConverter, type PortScattering } from './parameter-conversion.ts';
-import type { FileProblem, ProblemList } from './problem-list.ts';
+import type { ProblemList } from './problem-list.ts';
 import type { SweepPointsBuilder } from './sweep-points.ts';
+import {
+  incomplete,
+  keywordInVersion1,
+  matrixProblem,
+  negativeMagnitude,
+  numberProblem,
+  rowProblem,
+  secondOptionLine,
+} from './touchstone-data-problems.ts';
 import type { MatrixFormat, TwoPortOrder } from './touchstone-keywords.ts';
 import type { TouchstoneLines } from './touchstone-lines.ts';
 import type { NetworkParameter, NumberFormat } from './touchstone-option-line.ts';
@@ -260,79 +269,6 @@ const COMPLEX_OF: Record<NumberFormat, (first: number, second: number) => readon
 
 function polar(magnitude: number, degrees: number): readonly [number, number] {
   return [magnitude * Math.cos(degrees * RADIANS), magnitude * Math.sin(degrees * RADIANS)];
-}
-
-function numberProblem(line: number, token: string): FileProblem {
-  return {
-    code: 'touchstone-number',
-    line,
-    what: 'has text where a number belongs',
-    found: token,
-    mend: mendFor(token),
-  };
-}
-
-function mendFor(token: string): string {
-  if (/^[-+]?\d*,\d/.test(token)) return 'write decimal points, not commas, and blanks between numbers';
-  if (/^[-+]?[\d.]+d[-+]?\d+$/i.test(token)) return 'write exponents with E, not D';
-  if (/^[-+]?(nan|inf)/i.test(token))
-    return 'the instrument stored no value here: sweep again, or remove this row';
-  return 'write a plain number here, or put remarks after "!"';
-}
-
-function rowProblem(lines: TouchstoneLines, found: number, wanted: number, kind: string): FileProblem {
-  return {
-    code: 'touchstone-row',
-    line: lines.line,
-    what: `has ${found === 1 ? 'one number' : `${found} numbers`}, a ${kind} has ${wanted}`,
-    found: lines.content(200),
-    mend: 'complete or remove this row; the name must tell the number of ports (.s1p, .s2p, …)',
-  };
-}
-
-function matrixProblem(firstLine: number, line: number, length: number): FileProblem {
-  return {
-    code: 'touchstone-row',
-    line: firstLine,
-    what: `begins a matrix of ${length} numbers that ends in the middle of line ${line}`,
-    mend: 'look for a missing or extra number in these lines; the name must tell the number of ports',
-  };
-}
-
-function incomplete(line: number, what: string): FileProblem {
-  return {
-    code: 'touchstone-incomplete',
-    line,
-    what: `has ${what}`,
-    mend: 'the file was cut short or the number of ports is wrong: copy it again, or mend its name',
-  };
-}
-
-function negativeMagnitude(line: number, magnitude: number): FileProblem {
-  return {
-    code: 'touchstone-magnitude',
-    line,
-    what: 'has a magnitude below zero',
-    found: String(magnitude),
-    mend: 'if the values are in dB, write DB in place of MA in the option line',
-  };
-}
-
-function keywordInVersion1(lines: TouchstoneLines): FileProblem {
-  return {
-    code: 'touchstone-keyword',
-    line: lines.line,
-    what: 'has a keyword, but the file does not begin with [Version]',
-    found: lines.content(200),
-    mend: 'begin the file with [Version] 2.0, or remove the keyword lines',
-  };
-}
-
-function secondOptionLine(lines: TouchstoneLines): Notice {
-  return {
-    code: 'touchstone-second-option-line',
-    what: `line ${lines.line} is a second option line; only the first one counts`,
-  };
 }
 
 const BRACKET = 91;

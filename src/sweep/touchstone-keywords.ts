@@ -1,7 +1,14 @@
 /** The keywords of Touchstone 2.0 and 2.1: the header up to the network data, and what may follow it. */
 import type { Notice } from '../outcome.ts';
 import { readNumber } from './number-scan.ts';
-import type { FileProblem, ProblemList } from './problem-list.ts';
+import type { ProblemList } from './problem-list.ts';
+import {
+  afterEndNotice,
+  badArgument,
+  type Keyword,
+  looseLine,
+  unknownKeyword,
+} from './touchstone-keyword-problems.ts';
 import type { TouchstoneLines } from './touchstone-lines.ts';
 import { readOptionLine, type TouchstoneOptions } from './touchstone-option-line.ts';
 
@@ -34,8 +41,6 @@ type Draft = {
   reference: number[] | null;
   referenceLine: number;
 };
-
-type Keyword = { readonly name: string; readonly argument: string };
 
 /**
  * Reads from the `[Version]` line, on which `lines` stands, through `[Network Data]`. The order between is not
@@ -314,40 +319,6 @@ function skipInformation(lines: TouchstoneLines, problems: ProblemList): void {
     what: 'begins an information block that never ends',
     mend: 'add [End Information]',
   });
-}
-
-function badArgument(lines: TouchstoneLines, keyword: Keyword, wanted: string): FileProblem {
-  return {
-    code: 'touchstone-keyword',
-    line: lines.line,
-    what: `has a value after [${keyword.name}] that should be ${wanted}`,
-    found: lines.content(),
-    mend: `write ${wanted}`,
-  };
-}
-
-function unknownKeyword(lines: TouchstoneLines, keyword: Keyword): FileProblem {
-  return {
-    code: 'touchstone-keyword-unknown',
-    line: lines.line,
-    what: `has a keyword that Touchstone 2.0 and 2.1 do not know${keyword.name === 'end' ? ' here' : ''}`,
-    found: lines.content(),
-    mend: 'remove the line if the data mean the same without it, or save the sweep as Touchstone 1.1',
-  };
-}
-
-function looseLine(lines: TouchstoneLines): FileProblem {
-  return {
-    code: 'touchstone-loose-line',
-    line: lines.line,
-    what: 'has text that belongs to no keyword',
-    found: lines.content(),
-    mend: 'put data after [Network Data], remarks after "!"',
-  };
-}
-
-function afterEndNotice(line: number): Notice {
-  return { code: 'touchstone-after-end', what: `what follows [End], from line ${line} on, was left out` };
 }
 
 const BRACKET = 91;
