@@ -46,5 +46,5 @@ async function writeCables() {
   rmSync(reader);
   if (!table.ok)
     throw new Error(table.problems.map(({ file, line, what }) => `${file}:${line} ${what}`).join('\n'));
-  writeFileSync('dist/built-cables.json', JSON.stringify(table.value.entries));
+  writeFileSync('dist/built-cables.json', JSON.stringify([...table.value.entries, ...table.value.guides]));
 }

@@ -6,7 +6,7 @@
  */
 
 import type { Line, Section } from '../line/line.ts';
-import { coaxMedium } from '../line/medium.ts';
+import { sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { createRandom, type Random } from '../numerics/random.ts';
 
@@ -14,7 +14,7 @@ import { createRandom, type Random } from '../numerics/random.ts';
 export type Slab = { readonly lengthM: number; readonly ratio: number };
 
 export type SectionAsBuilt = {
-  /** Velocity factor, impedance and losses of this sample over those of its type. */
+  /** Velocity factor (of a guide: width), impedance and losses of this sample over those of its type. */
   readonly velocity: number;
   readonly impedance: number;
   readonly loss: number;
@@ -22,7 +22,7 @@ export type SectionAsBuilt = {
   readonly slabs: readonly Slab[];
 };
 
-/** A connector as L/2 – C – L/2, both as times in the line's own impedance (L/z0 and C·z0), s. */
+/** A connector or flange as L/2 – C – L/2, both as times in the line's own impedance (L/z0 and C·z0), s. */
 export type JointAsBuilt = { readonly inductiveS: number; readonly capacitiveS: number };
 
 export type AsBuilt = {
@@ -36,14 +36,21 @@ export type AsBuilt = {
 const SLAB_M = [0.05, 0.25] as const;
 /** Structural return loss of the whole run, dB, RMS of the band: a short piece of the same cable has less. */
 const STRUCTURAL_DB = [35, 45] as const;
+/** The same of the guides of a run: drawn tube is more even than cable. */
+const GUIDE_STRUCTURAL_DB = [45, 55] as const;
 /** Return loss of a sound connector at the top of the band, dB. */
 const JOINT_DB = [30, 40] as const;
+/** The same of two flanges. */
+const FLANGE_DB = [36, 46] as const;
 /** 1σ of a sample against its type. */
 const VELOCITY_SPREAD = 0.002;
+const GUIDE_WIDTH_SPREAD = 0.0005;
 const IMPEDANCE_SPREAD = 0.006;
 const LOSS_SPREAD = 0.02;
 /** Fringe capacitance of a cut 50 Ω line is some 0.05 pF, a soldered short some 0.1 nH: both about 2 ps. */
 const END_STRAY_S = [1e-12, 3e-12] as const;
+/** A plate across a flange is a short to a hundredth of that. */
+const GUIDE_END_STRAY = 0.01;
 /** Frequencies at which loss is looked at when the ripple is scaled. */
 const RIPPLE_POINTS = 16;
 
@@ -76,29 +83,49 @@ export function drawAsBuilt(
   const random = createRandom(seed);
   const drawn = line.sections.map((section) => ({
     section,
-    velocity: 1 + VELOCITY_SPREAD * random.normal(),
+    velocity: 1 + (section.type === 'guide' ? GUIDE_WIDTH_SPREAD : VELOCITY_SPREAD) * random.normal(),
     impedance: 1 + IMPEDANCE_SPREAD * random.normal(),
     loss: 1 + LOSS_SPREAD * random.normal(),
-    shapes: section.type === 'coax' ? drawShapes(section.lengthM ?? 0, random) : [],
+    shapes: section.type === 'device' ? [] : drawShapes(section.lengthM ?? 0, random),
   }));
-  const returnLossDb = between(STRUCTURAL_DB, random);
-  const scale = rippleScale(drawn, returnLossDb, band, line.temperatureC);
+  const rippleOf = (type: Section['type'], returnLossDb: number): number => {
+    const alike = drawn.filter(({ section }) => section.type === type);
+    return rippleScale(alike, returnLossDb, band, line.temperatureC);
+  };
+  const scales = {
+    coax: rippleOf('coax', between(STRUCTURAL_DB, random)),
+    guide: hasGuide(line) ? rippleOf('guide', between(GUIDE_STRUCTURAL_DB, random)) : 0,
+  };
   const sections = drawn.map(
     ({ section, velocity, impedance, loss, shapes }): SectionAsBuilt =>
-      section.type === 'coax'
-        ? {
+      section.type === 'device'
+        ? { velocity: 1, impedance: 1, loss: 1, slabs: [{ lengthM: section.lengthM, ratio: 1 }] }
+        : {
             velocity,
             impedance,
             loss,
-            slabs: shapes.map(({ lengthM, shape }) => ({ lengthM, ratio: Math.exp(scale * shape) })),
-          }
-        : { velocity: 1, impedance: 1, loss: 1, slabs: [{ lengthM: section.lengthM, ratio: 1 }] },
+            slabs: shapes.map(({ lengthM, shape }) => ({
+              lengthM,
+              ratio: Math.exp(scales[section.type] * shape),
+            })),
+          },
   );
   const joints = Array.from({ length: sections.length + 1 }, (_, i) => {
     const described = i === 0 ? null : (line.sections[i - 1]?.jointAfter.returnLossDb ?? null);
-    return drawJoint(described ?? between(JOINT_DB, random), band.stopHz, random);
+    const flanges = isGuided(line, i - 1) && isGuided(line, i);
+    return drawJoint(described ?? between(flanges ? FLANGE_DB : JOINT_DB, random), band.stopHz, random);
   });
-  return { sections, joints, endStrayS: between(END_STRAY_S, random) };
+  const stray = line.sections.at(-1)?.type === 'guide' ? GUIDE_END_STRAY : 1;
+  return { sections, joints, endStrayS: stray * between(END_STRAY_S, random) };
+}
+
+function hasGuide(line: Line): boolean {
+  return line.sections.some((section) => section.type === 'guide');
+}
+
+/** True on a guide, and beyond either end of a line, where what it is joined to has a flange too. */
+function isGuided(line: Line, section: number): boolean {
+  return (line.sections[section]?.type ?? 'guide') === 'guide';
 }
 
 /** A slab before its ripple is scaled. */
@@ -139,8 +166,8 @@ function rippleScale(
     for (const np of passedNp) energy += ((step / 2) ** 2 * Math.exp(-4 * np)) / RIPPLE_POINTS;
   };
   for (const { section, shapes } of sections) {
-    if (section.type !== 'coax') continue;
-    const alpha = coaxMedium(section.cable, frequencyHz, { temperatureC }).gamma.re;
+    // What a guide or device is matched to does not matter here: its impedance is not looked at.
+    const alpha = sectionMedium(section, frequencyHz, { temperatureC, z0Ohm: 50 }).gamma.re;
     let before = 0;
     for (const { lengthM, shape } of shapes) {
       addStep(shape - before);

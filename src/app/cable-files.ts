@@ -1,8 +1,7 @@
 /** The cable table from its files: what ships with the program, and the user's own over it. */
 import { readdir, readFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import type { CableEntry } from '../line/cable.ts';
-import { type CableTable, createCableTable } from '../line/cable-table.ts';
+import { type CableTable, createCableTable, type TableEntry } from '../line/cable-table.ts';
 import { readCables } from '../line/read-cables.ts';
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { bundledPath } from './bundled.ts';
@@ -22,7 +21,7 @@ const MOST_CABLE_BYTES = 4 * 1024 * 1024;
  */
 export async function loadCableTable(folders: readonly string[] = []): Promise<Outcome<CableTable>> {
   const built = await builtEntries();
-  const tables: (readonly CableEntry[])[] = built ? [built] : [];
+  const tables: (readonly TableEntry[])[] = built ? [built] : [];
   const problems: Problem[] = [];
   const sources = [
     // Named without the place where the program happens to be installed.
@@ -41,12 +40,12 @@ export async function loadCableTable(folders: readonly string[] = []): Promise<O
  * The bundled cables as the build left them beside the program: read and checked once for all, since checking them at
  * every start costs more than the start itself. Null where there is no such file (running from source).
  */
-async function builtEntries(): Promise<readonly CableEntry[] | null> {
+async function builtEntries(): Promise<readonly TableEntry[] | null> {
   const text = await readFile(new URL(BUILT_CABLES, import.meta.url), 'utf8').catch(() => null);
-  return text === null ? null : (JSON.parse(text) as CableEntry[]);
+  return text === null ? null : (JSON.parse(text) as TableEntry[]);
 }
 
-async function readFolder(folder: string, shown: string): Promise<Outcome<CableEntry[]>> {
+async function readFolder(folder: string, shown: string): Promise<Outcome<TableEntry[]>> {
   const names = await readdir(folder).catch(() => null);
   if (names === null)
     return fail({
@@ -55,7 +54,7 @@ async function readFolder(folder: string, shown: string): Promise<Outcome<CableE
       what: 'there is no such folder of cable files',
       mend: 'give --cables the folder that holds your *.json cable files',
     });
-  const entries: CableEntry[] = [];
+  const entries: TableEntry[] = [];
   const problems: Problem[] = [];
   for (const name of names.filter((one) => one.endsWith('.json')).sort()) {
     const path = join(folder, name);

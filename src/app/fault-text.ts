@@ -20,9 +20,14 @@ export type LumpedFaultKind =
   | 'series-inductance'
   | 'shunt-capacitance';
 
-export type Fault =
+export type LumpedFault =
   /** `value` in Ω, Ω, H or F by kind. */
   | { readonly kind: LumpedFaultKind; readonly value: number; readonly place: FaultPlace }
+  /** r, g, x or b by kind, relative to the line it sits in; x and b at the middle of the swept band. */
+  | { readonly kind: LumpedFaultKind; readonly normalised: number; readonly place: FaultPlace };
+
+export type Fault =
+  | LumpedFault
   | { readonly kind: 'open' | 'short'; readonly place: FaultPlace }
   /** A stretch of another impedance. */
   | {
@@ -52,6 +57,29 @@ export const FAULT_FORMS: Readonly<Record<Fault['kind'], string>> = {
   wet: 'wet:k2x12,er1.03@20m-28m',
 };
 
+/** The forms without a unit, for a guide above all, which has no ohms of its own. */
+export const NORMALISED_FORMS: Readonly<Record<LumpedFaultKind, string>> = {
+  'series-resistance': 'series-resistance:r0.2@joint3',
+  'shunt-leakage': 'shunt-leakage:g0.2@12.5m',
+  'series-inductance': 'series-inductance:x0.2@joint2',
+  'shunt-capacitance': 'shunt-capacitance:b0.2@31.4m',
+};
+
+/** Letter of a normalised size. */
+const LETTERS: Readonly<Record<LumpedFaultKind, string>> = {
+  'series-resistance': 'r',
+  'shunt-leakage': 'g',
+  'series-inductance': 'x',
+  'shunt-capacitance': 'b',
+};
+/** Largest normalised size: far beyond it a fault is an open or a short. */
+const LARGEST_NORMALISED = 1000;
+
+/** True for a fault at one place that has a size. */
+export function isLump(fault: Fault): fault is LumpedFault {
+  return 'value' in fault || 'normalised' in fault;
+}
+
 /** Largest factor that a wet stretch may ask for: beyond it nothing comes back at all. */
 const LARGEST_WET_FACTOR = 10_000;
 
@@ -73,6 +101,8 @@ export function parseFault(text: string): Outcome<Fault> {
   }
   const size = match[2];
   const place = match[3] ?? '';
+  const bare = /^([a-z])(\d.*)$/iu.exec((size ?? '').trim());
+  if (bare && isLumpedKind(kind)) return normalised(kind, bare[1] ?? '', bare[2] ?? '', place, shown);
   switch (kind) {
     case 'series-resistance':
     case 'shunt-leakage':
@@ -111,6 +141,25 @@ function lumped(
     return fail(wrongFault(shown, 'a leakage of 0 Ω is a short', FAULT_FORMS.short));
   const at = parsePlace(place, shown, kind);
   return at.ok ? succeed({ kind, value: size.value * unit, place: at.value }) : at;
+}
+
+/** A size without a unit: its letter and a number, `x0.2`. */
+function normalised(
+  kind: LumpedFaultKind,
+  letter: string,
+  digits: string,
+  place: string,
+  shown: string,
+): Outcome<Fault> {
+  const wrong = (what: string): Outcome<Fault> =>
+    fail(wrongFault(shown, what, NORMALISED_FORMS[kind], FAULT_FORMS[kind]));
+  if (letter.toLowerCase() !== LETTERS[kind])
+    return wrong(`${kind.replace('-', ' ')} without a unit is "${LETTERS[kind]}" and a number`);
+  const size = /^\d+(?:\.\d+)?$/u.test(digits) ? Number(digits) : Number.NaN;
+  if (!(size > 0 && size <= LARGEST_NORMALISED))
+    return wrong(`"${LETTERS[kind]}" is a number above 0 and at most ${LARGEST_NORMALISED}`);
+  const at = parsePlace(place, shown, kind);
+  return at.ok ? succeed({ kind, normalised: size, place: at.value }) : at;
 }
 
 function wet(size: string, place: string, shown: string): Outcome<Fault> {
@@ -159,6 +208,10 @@ function isFaultKind(word: string): word is Fault['kind'] {
   return Object.hasOwn(FAULT_FORMS, word);
 }
 
-function wrongFault(found: string, what: string, example: string): Problem {
-  return { code: 'fault-text', what, found, mend: `write it like ${example}` };
+function isLumpedKind(kind: Fault['kind']): kind is LumpedFaultKind {
+  return Object.hasOwn(LETTERS, kind);
+}
+
+function wrongFault(found: string, what: string, ...examples: readonly string[]): Problem {
+  return { code: 'fault-text', what, found, mend: `write it like ${examples.join(' or ')}` };
 }

@@ -1,15 +1,19 @@
 /** A described line with its faults as parts in order from the port: what the cascade needs, without a frequency. */
+import type { Guide } from '../line/guide.ts';
 import type { Line, Section } from '../line/line.ts';
 import type { AsBuilt, SectionAsBuilt } from './as-built.ts';
-import type { Fault, FaultPlace, LumpedFaultKind } from './fault-text.ts';
+import { type Fault, type FaultPlace, isLump, type LumpedFault, type LumpedFaultKind } from './fault-text.ts';
 
-/** One sample of cable or device: the parts that share it share its medium. */
+/** One sample of cable, guide or device: the parts that share it share its medium. */
 export type Material = { readonly section: Section };
+
+/** Size of a lumped fault: in Ω, H or F, or normalised to the line it sits in. */
+export type FaultSize = { readonly unit: 'own' | 'normalised'; readonly value: number };
 
 export type Part =
   /** `ratio`: impedance over that of the material. */
   | { readonly type: 'line'; readonly material: Material; readonly lengthM: number; readonly ratio: number }
-  | { readonly type: 'fault'; readonly kind: LumpedFaultKind; readonly value: number }
+  | { readonly type: 'fault'; readonly kind: LumpedFaultKind; readonly size: FaultSize }
   /** A reactance as time in the line's own impedance, s: series above 0, shunt below. */
   | { readonly type: 'reactive'; readonly strengthS: number };
 
@@ -36,7 +40,9 @@ export function linePartsOf(line: Line, faults: readonly Fault[], built: AsBuilt
     .sort((a, b) => placeM(a.place) - placeM(b.place))[0];
   const cutM = cut ? placeM(cut.place) : Number.POSITIVE_INFINITY;
   const lumps = faults
-    .flatMap((fault) => ('value' in fault ? [{ ...fault, atM: placeM(fault.place) }] : []))
+    .flatMap((fault) =>
+      isLump(fault) ? [{ kind: fault.kind, size: sizeOf(fault), atM: placeM(fault.place) }] : [],
+    )
     .filter((lump) => lump.atM <= cutM);
   const stretches = faults.filter((fault) => fault.kind === 'section' || fault.kind === 'wet');
   const edgesM = [...stretches.flatMap((s) => [s.fromM, s.toM]), ...lumps.map((lump) => lump.atM), cutM];
@@ -46,7 +52,7 @@ export function linePartsOf(line: Line, faults: readonly Fault[], built: AsBuilt
   const addLumpsUpTo = (atM: number): void => {
     for (const lump of lumps)
       if (!placed.has(lump) && lump.atM <= atM + 1e-9) {
-        parts.push({ type: 'fault', kind: lump.kind, value: lump.value });
+        parts.push({ type: 'fault', kind: lump.kind, size: lump.size });
         placed.add(lump);
       }
   };
@@ -87,6 +93,12 @@ export function linePartsOf(line: Line, faults: readonly Fault[], built: AsBuilt
   return { parts, cut: cut?.kind ?? null };
 }
 
+function sizeOf(fault: LumpedFault): FaultSize {
+  return 'value' in fault
+    ? { unit: 'own', value: fault.value }
+    : { unit: 'normalised', value: fault.normalised };
+}
+
 /** Samples of cable by section and by what was done to them, each made once. */
 function createMaterials() {
   const known = new Map<string, Material>();
@@ -114,6 +126,7 @@ function alter(
   sample: SectionAsBuilt,
   stretches: readonly Extract<Fault, { kind: 'section' | 'wet' }>[],
 ): Section {
+  if (section.type === 'guide') return { ...section, guide: alterGuide(section.guide, sample) };
   if (section.type !== 'coax') return section;
   let { z0Ohm, velocityFactor, k1, k2 } = section.cable;
   z0Ohm *= sample.impedance;
@@ -131,4 +144,15 @@ function alter(
     }
   }
   return { ...section, cable: { ...section.cable, z0Ohm, velocityFactor, k1, k2 } };
+}
+
+/** Wider or narrower, lossier or better; its impedance is what it is matched to, whatever the sample. */
+function alterGuide(guide: Guide, sample: SectionAsBuilt): Guide {
+  return {
+    ...guide,
+    aMm: guide.aMm * sample.velocity,
+    // Loss goes with the root of the walls' resistivity.
+    conductivitySPerM: guide.conductivitySPerM === null ? null : guide.conductivitySPerM / sample.loss ** 2,
+    lossDbPer100m: guide.lossDbPer100m === null ? null : guide.lossDbPer100m * sample.loss,
+  };
 }

@@ -5,18 +5,19 @@
  * the parts become stages of the cascade, and the instrument adds what it adds: residual directivity and noise.
  */
 import { createCascade, type Stage } from '../line/cascade.ts';
-import { strengthOf } from '../line/discontinuity.ts';
+import { strengthOf, strengthOfNormalised } from '../line/discontinuity.ts';
 import type { EndModel } from '../line/end.ts';
-import { describedLengthM, type EndKind, type Line } from '../line/line.ts';
+import { type EndKind, type Line, referenceOhm } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
 import { createRandom } from '../numerics/random.ts';
-import { assertNever, fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import { assertNever, fail, type Outcome, succeed } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { type AsBuilt, asDrawn, drawAsBuilt } from './as-built.ts';
 import type { Fault } from './fault-text.ts';
 import { linePartsOf, type Material, type Part } from './line-parts.ts';
+import { refuse } from './refuse-simulation.ts';
 
 export type SimulateRequest = {
   /** Every length known, end known. */
@@ -76,68 +77,6 @@ export function simulate(request: SimulateRequest): Outcome<Sweep> {
     file: '',
     comments: [],
   });
-}
-
-/** A sweep that stops below was meant in MHz, Hz. */
-const LOWEST_STOP_HZ = 10e3;
-
-function refuse(request: SimulateRequest): Problem[] {
-  const { line, range, faults } = request;
-  const problems: Problem[] = [];
-  const lengthM = describedLengthM(line);
-  if (lengthM === null)
-    problems.push({
-      code: 'simulate-length',
-      what: 'the length of the last section is not known',
-      mend: 'give its "lengthM" in the line file',
-    });
-  if (line.end === 'unknown')
-    problems.push({
-      code: 'simulate-end',
-      what: 'the end of the line is not known',
-      mend: 'give --end open, short, load or antenna, or "end" in the line file',
-    });
-  if (!(range.startHz > 0))
-    problems.push({
-      code: 'simulate-start',
-      what: 'a sweep of a lossy line cannot be computed at 0 Hz',
-      mend: 'start above 0, for example --sweep 2MHz-2700MHz:1350',
-    });
-  else if (range.stopHz < LOWEST_STOP_HZ)
-    problems.push({
-      code: 'simulate-stop',
-      what: `the sweep stops at ${range.stopHz} Hz, below all that a line is swept at`,
-      mend: 'give the units too, for example --sweep 2MHz-2700MHz:1350',
-    });
-  for (const fault of faults) problems.push(...refuseFault(fault, line, lengthM ?? Number.POSITIVE_INFINITY));
-  return problems;
-}
-
-function refuseFault(fault: Fault, line: Line, lengthM: number): Problem[] {
-  const joints = line.sections.length + 1;
-  const outside = (what: string, place: string): Problem => ({
-    code: 'fault-place',
-    what,
-    found: `${fault.kind} … @${place}`,
-    mend: Number.isFinite(lengthM)
-      ? `the line has ${joints} joints and is ${Number(lengthM.toFixed(2))} m long`
-      : `the line has ${joints} joints`,
-  });
-  if (fault.kind === 'section' || fault.kind === 'wet')
-    return fault.toM <= lengthM
-      ? []
-      : [
-          outside(
-            `the stretch ends at ${fault.toM} m, beyond the end of the line`,
-            `${fault.fromM}m-${fault.toM}m`,
-          ),
-        ];
-  const { place } = fault;
-  if (place.at === 'joint')
-    return place.joint <= joints ? [] : [outside(`there is no joint ${place.joint}`, `joint${place.joint}`)];
-  return place.distanceM <= lengthM
-    ? []
-    : [outside(`${place.distanceM} m is beyond the end of the line`, `${place.distanceM}m`)];
 }
 
 function endOf(request: SimulateRequest, built: AsBuilt): EndModel {
@@ -204,7 +143,7 @@ function stagesOf(parts: readonly Part[], request: SimulateRequest, frequencyHz:
     if (!medium) {
       medium = sectionMedium(material.section, frequencyHz, {
         temperatureC: request.line.temperatureC,
-        z0Ohm: request.portOhm,
+        z0Ohm: referenceOhm(request.line, request.portOhm),
       });
       media.set(material, medium);
     }
@@ -213,19 +152,24 @@ function stagesOf(parts: readonly Part[], request: SimulateRequest, frequencyHz:
   const stages: Stage[] = [];
   let medium = portMedium(request.portOhm, frequencyHz.length);
   let ratio = 1;
+  let inGuide = false;
   for (const part of parts) {
     switch (part.type) {
       case 'line': {
         const next = mediumOf(part.material);
-        if (next !== medium || part.ratio !== ratio)
+        const guided = part.material.section.type === 'guide';
+        // What joins a guide to anything else is built to match, whatever the two impedances are called.
+        const transition = guided !== inGuide;
+        if (!transition && (next !== medium || part.ratio !== ratio))
           stages.push({ type: 'step', before: medium, after: next, ratio: part.ratio / ratio });
         medium = next;
+        inGuide = guided;
         ratio = part.ratio;
         stages.push({ type: 'line', medium, lengthM: part.lengthM, conductor: 0, dielectric: 0 });
         break;
       }
       case 'fault':
-        stages.push({ ...strengthOf(part.kind, part.value, medium.z0Ohm), medium });
+        stages.push({ ...strengthIn(medium, part, request), medium });
         break;
       case 'reactive':
         stages.push({ type: 'reactive', medium, strength: part.strengthS });
@@ -235,6 +179,16 @@ function stagesOf(parts: readonly Part[], request: SimulateRequest, frequencyHz:
     }
   }
   return stages;
+}
+
+function strengthIn(
+  medium: Medium,
+  { kind, size }: Extract<Part, { type: 'fault' }>,
+  { range }: SimulateRequest,
+): ReturnType<typeof strengthOf> {
+  return size.unit === 'own'
+    ? strengthOf(kind, size.value, medium.z0Ohm)
+    : strengthOfNormalised(kind, size.value, (range.startHz + range.stopHz) / 2);
 }
 
 /** Adds residual directivity and noise, in this order of draws. */

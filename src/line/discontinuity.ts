@@ -2,7 +2,7 @@
  * The two-ports that reflect: lumped elements and impedance steps, as S-parameters over the sweep.
  *
  * Strengths are normalised to the line they sit in and signed, so that one number runs smoothly from one type to its
- * dual: a resistive strength r > 0 is a series resistance r·z0, r < 0 a shunt conductance |r|/z0; a reactive strength
+ * dual. In a guide they are normalised to its own wave impedance, whatever that is taken to be. A resistive strength r > 0 is a series resistance r·z0, r < 0 a shunt conductance |r|/z0; a reactive strength
  * τ > 0 (seconds) is a series inductance τ·z0, τ < 0 a shunt capacitance |τ|/z0.
  */
 import type { ComplexArray } from '../numerics/complex.ts';
@@ -129,9 +129,11 @@ export function writeStep(out: TwoPort, before: Medium, after: Medium, ratio: nu
   }
 }
 
+export type LumpedKind = 'series-resistance' | 'shunt-leakage' | 'series-inductance' | 'shunt-capacitance';
+
 /** Strength of a lumped element from its value in Ω, S⁻¹, H or F terms. */
 export function strengthOf(
-  kind: 'series-resistance' | 'shunt-leakage' | 'series-inductance' | 'shunt-capacitance',
+  kind: LumpedKind,
   value: number,
   z0Ohm: number,
 ): { readonly type: LumpedType; readonly strength: number } {
@@ -145,4 +147,36 @@ export function strengthOf(
     case 'shunt-capacitance':
       return { type: 'reactive', strength: -value * z0Ohm };
   }
+}
+
+/**
+ * Strength of a lumped element from its size relative to the line it sits in: r, g, x or b by kind.
+ *
+ * A resistance or conductance is the same over the band. A reactance or susceptance is taken in proportion to
+ * frequency, and `value` is what it has at `frequencyHz`: in a cable that is what an inductance or capacitance does, in a
+ * guide (where its law is that of its shape, and lies between f and β) a first approximation of a gap or a dent.
+ *
+ * @param value Above 0. @param frequencyHz Above 0; without meaning for r and g.
+ */
+export function strengthOfNormalised(
+  kind: LumpedKind,
+  value: number,
+  frequencyHz: number,
+): { readonly type: LumpedType; readonly strength: number } {
+  const sign = kind === 'series-resistance' || kind === 'series-inductance' ? 1 : -1;
+  const reactive = kind === 'series-inductance' || kind === 'shunt-capacitance';
+  return reactive
+    ? { type: 'reactive', strength: (sign * value) / (2 * Math.PI * frequencyHz) }
+    : { type: 'resistive', strength: sign * value };
+}
+
+/**
+ * Size of a lumped element relative to the line it sits in, the inverse of `strengthOfNormalised`: above 0 for r and x,
+ * below 0 for g and b.
+ */
+export function normalisedOf(
+  element: { readonly type: LumpedType; readonly strength: number },
+  frequencyHz: number,
+): number {
+  return element.type === 'reactive' ? element.strength * 2 * Math.PI * frequencyHz : element.strength;
 }

@@ -15,6 +15,7 @@ import {
 } from './checked-json.ts';
 import { cleanName } from './clean-name.ts';
 import { METRES_PER_FOOT } from './constants.ts';
+import { GUIDE_HINTS, inlineGuideFile } from './guide-file.ts';
 import type { EndKind } from './line.ts';
 import { orList } from './nearest-word.ts';
 
@@ -64,18 +65,9 @@ const deviceSection = v.pipe(
   notBoth('lengthM', 'lengthFt'),
 );
 
-const unsupportedGuide = v.custom<never>(
-  () => false,
-  advice(
-    'guide-unsupported',
-    'is a waveguide, which this version of the program does not know yet',
-    'describe coax cables and devices only',
-  ),
-);
-
 const unclearSection = v.custom<never>(
   () => false,
-  advice('unclear-section', 'names a cable and a device at once', 'make two sections of it'),
+  advice('unclear-section', 'is more than one of cable, guide and device', 'make a section of each'),
 );
 
 const band = v.pipe(
@@ -125,10 +117,30 @@ export function lineFile(cables: CableTable) {
     }),
     notBoth('lengthM', 'lengthFt'),
   );
+  const tableGuide = v.pipe(
+    v.string(),
+    v.rawTransform(({ dataset, addIssue, NEVER }) => {
+      const entry = cables.findGuide(dataset.value);
+      if (entry !== undefined) return entry;
+      addIssue({ message: unknownGuide(dataset.value, cables) });
+      return NEVER;
+    }),
+  );
+  const guideSection = v.pipe(
+    closedObject({
+      guide: v.lazy((input) => (isObject(input) ? inlineGuideFile : tableGuide)),
+      lengthM: v.optional(lengthM),
+      lengthFt: v.optional(lengthFt),
+      label: v.optional(name),
+      jointAfter: v.optional(jointAfter),
+    }),
+    notBoth('lengthM', 'lengthFt'),
+  );
   const section = v.lazy((input) => {
-    if (has(input, 'guide')) return unsupportedGuide;
-    if (!has(input, 'device')) return coaxSection;
-    return has(input, 'cable') ? unclearSection : deviceSection;
+    const kinds = ['cable', 'guide', 'device'].filter((key) => has(input, key));
+    if (kinds.length > 1) return unclearSection;
+    if (kinds[0] === 'guide') return guideSection;
+    return kinds[0] === 'device' ? deviceSection : coaxSection;
   });
   return v.pipe(
     closedObject({
@@ -142,7 +154,7 @@ export function lineFile(cables: CableTable) {
           const sections: unknown = dataset.value;
           if (!Array.isArray(sections)) return;
           sections.forEach((one: unknown, index) => {
-            if (!isObject(one) || has(one, 'lengthM') || has(one, 'lengthFt') || has(one, 'guide')) return;
+            if (!isObject(one) || has(one, 'lengthM') || has(one, 'lengthFt')) return;
             const device = has(one, 'device');
             if (!device && index === sections.length - 1) return;
             const mend = device
@@ -178,12 +190,25 @@ export type GivenLine = v.InferOutput<ReturnType<typeof lineFile>>;
 export type GivenSection = GivenLine['sections'][number];
 
 function unknownCable(id: string, cables: CableTable): string {
+  const guide = cables.findGuide(id);
+  if (guide !== undefined)
+    return advice('unknown-cable', 'names a waveguide', `write "guide": "${cleanName(guide.id)}"`);
   const near = cables.nearest(id);
   const meant = near.length === 0 ? '' : `did you mean ${orList(near)}? `;
   return advice(
     'unknown-cable',
     `names a cable that is not in the table: ${cleanName(id)}`,
     `${meant}otherwise give the cable's own figures: { "id", "z0", "velocityFactor", "k1", "k2" }`,
+  );
+}
+
+function unknownGuide(id: string, cables: CableTable): string {
+  const near = cables.nearestGuide(id);
+  const meant = near.length === 0 ? '' : `did you mean ${orList(near)}? `;
+  return advice(
+    'unknown-guide',
+    `names a guide that is not in the table: ${cleanName(id)}`,
+    `${meant}otherwise give the guide's own figures: { "id", "aMm", "lossDbPer100m" }`,
   );
 }
 
@@ -206,6 +231,8 @@ export const LINE_WORDS: FileWords = {
     'bands[]': '{ "name": "main", "fromMHz": 1710, "toMHz": 2170, "returnLossDb": 14 }',
     'passbandMHz[]': 'a frequency in MHz, from 0 to 1000000',
     cable: 'a cable id such as "foam-7-8", or { "id", "z0", "velocityFactor", "k1", "k2" }',
+    guide: 'a guide id such as "WR-137", or { "id", "aMm", "lossDbPer100m" }',
+    ...GUIDE_HINTS,
     device: 'what it is, in quotes, for example "arrestor"',
     lengthM: `a length in metres, above 0 and at most ${LONGEST_SECTION_M}, for example 46`,
     lengthFt: `a length in feet, above 0 and at most ${LENGTH_FT}, for example 150`,

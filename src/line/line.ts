@@ -1,5 +1,7 @@
 /** The described run from the reference plane to the end. Joint 1 sits at the port, joint n+1 closes section n. */
+import { assertNever } from '../outcome.ts';
 import type { Cable } from './cable.ts';
+import type { Guide } from './guide.ts';
 
 /** What the description says of the joint that closes a section. */
 export type JointDescription = {
@@ -18,6 +20,16 @@ export type CoaxSection = {
   readonly jointAfter: JointDescription;
 };
 
+/** A stretch of one rectangular waveguide. */
+export type GuideSection = {
+  readonly type: 'guide';
+  readonly guide: Guide;
+  /** Metres; null only on the last section: length unknown. */
+  readonly lengthM: number | null;
+  readonly label: string;
+  readonly jointAfter: JointDescription;
+};
+
 /** A device in line: arrestor, filter, diplexer, amplifier, bias tee. */
 export type DeviceSection = {
   readonly type: 'device';
@@ -30,8 +42,8 @@ export type DeviceSection = {
   readonly jointAfter: JointDescription;
 };
 
-/** One stretch of the run. A section that is neither coax nor device would join this union. */
-export type Section = CoaxSection | DeviceSection;
+/** One stretch of the run. */
+export type Section = CoaxSection | GuideSection | DeviceSection;
 
 export type EndKind = 'open' | 'short' | 'load' | 'antenna' | 'unknown';
 
@@ -91,4 +103,29 @@ export function jointName(line: Line, index: number): string {
   if (before?.jointAfter.name) return before.jointAfter.name;
   if (!before) return after ? `port / ${after.label}` : 'port';
   return after ? `${before.label} / ${after.label}` : `${before.label} / end`;
+}
+
+/** What a section is made of, in a few words: the cable's or guide's name, or what the device is. */
+export function sectionKind(section: Section): string {
+  switch (section.type) {
+    case 'coax':
+      return section.cable.name;
+    case 'guide':
+      return section.guide.name;
+    case 'device':
+      return section.device;
+    default:
+      return assertNever(section);
+  }
+}
+
+/**
+ * Impedance that devices and guides of a line are matched to, Ω: that of its first cable, else the port's.
+ *
+ * A guide's own wave impedance is a matter of definition; what joins it to a cable, a device or the port is built to
+ * match, and is taken to.
+ */
+export function referenceOhm(line: Line, portOhm: number): number {
+  const first = line.sections.find((section) => section.type === 'coax');
+  return first?.type === 'coax' ? first.cable.z0Ohm : portOhm;
 }

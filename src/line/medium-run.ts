@@ -83,6 +83,23 @@ export function groupDelaySPerM(run: MediumRun, frequencyHz: Float64Array): Floa
 }
 
 /**
+ * Slowest group delay of each section within the sweep's band, one way, s/m: what the distance at which echoes fold
+ * has to be worked out with where delay depends on frequency.
+ *
+ * By differences between neighbouring points; of a guide's steep first step that is the mean of the step.
+ *
+ * @param frequencyHz Frequencies of the run, strictly rising, length n ≥ 2.
+ */
+export function slowestGroupDelaySPerM(run: MediumRun, frequencyHz: Float64Array): Float64Array {
+  return Float64Array.from(run.beta, (beta) => {
+    let slowest = Number.NEGATIVE_INFINITY;
+    for (let k = 1; k < beta.length; k++)
+      slowest = Math.max(slowest, (beta[k]! - beta[k - 1]!) / (frequencyHz[k]! - frequencyHz[k - 1]!));
+    return slowest / (2 * Math.PI);
+  });
+}
+
+/**
  * Distance that a round trip of a given delay reaches, m: delay used up section by section.
  *
  * @param delaysSPerM One-way delay of each section, s/m, as from `groupDelaySPerM`.

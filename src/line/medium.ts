@@ -1,11 +1,12 @@
 /**
  * A medium: what one stretch of line does to a wave at each frequency of a sweep.
  *
- * Coax, device and (later) guide all come down to this: propagation constant and characteristic impedance,
+ * Coax, guide and device all come down to this: propagation constant and characteristic impedance,
  * with the derivatives that the solver needs for the loss scales.
  */
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
+import { assertNever } from '../outcome.ts';
 import type { Cable } from './cable.ts';
 import {
   COPPER_TEMPERATURE_COEFFICIENT,
@@ -13,6 +14,7 @@ import {
   SPEED_OF_LIGHT,
   TABLE_TEMPERATURE_C,
 } from './constants.ts';
+import { type Guide, guideLossDbPer100m, guidePhaseRadPerM } from './guide.ts';
 import type { DeviceSection, Section } from './line.ts';
 
 export type Medium = {
@@ -39,15 +41,26 @@ const PERMITTIVITY_OMEGA = 2 * Math.PI * 1e9;
 /** Velocity factor inside in-line devices, about that of a PTFE-filled body. Common practice. */
 const DEVICE_VELOCITY_FACTOR = 0.7;
 
-/** Medium of any section of a line. */
+/**
+ * Medium of any section of a line.
+ *
+ * @param options.z0Ohm What guides and devices are matched to, as `referenceOhm` gives it.
+ */
 export function sectionMedium(
   section: Section,
   frequencyHz: Float64Array,
   options: { readonly temperatureC: number; readonly loss?: LossScale; readonly z0Ohm: number },
 ): Medium {
-  return section.type === 'coax'
-    ? coaxMedium(section.cable, frequencyHz, options)
-    : deviceMedium(section, frequencyHz, options.z0Ohm);
+  switch (section.type) {
+    case 'coax':
+      return coaxMedium(section.cable, frequencyHz, options);
+    case 'guide':
+      return guideMedium(section.guide, frequencyHz, options);
+    case 'device':
+      return deviceMedium(section, frequencyHz, options.z0Ohm);
+    default:
+      return assertNever(section);
+  }
 }
 
 /**
@@ -122,6 +135,46 @@ export function coaxMedium(
     gammaPerConductorLoss: perConductor,
     gammaPerDielectricLoss: perDielectric,
     z0Ohm: cable.z0Ohm,
+  };
+}
+
+/**
+ * TE10 of a rectangular guide: γ = α + jβ.
+ *
+ * Its impedance is that of what it is joined to, at every frequency: a guide's wave impedance is a matter of definition,
+ * and a transition from coax to guide (or a taper between sizes) is taken as matched, so there is no step. What is put
+ * into the guide is therefore normalised to its own wave impedance: a resistive strength is r or g, the same over the
+ * band, a reactive one is x or b in proportion to frequency. (Gaps and dents follow f or β, the two steps differ by
+ * less than a third over a guide's band.) All of the loss is the walls', so only `gammaPerConductorLoss` is not 0.
+ *
+ * @param frequencyHz Each above the cut-off; `usable-band.ts` says which those are.
+ * @throws RangeError When a frequency is at or below the cut-off.
+ * @source Pozar, Microwave Engineering, 4th ed., section 3.3.
+ */
+export function guideMedium(
+  guide: Guide,
+  frequencyHz: Float64Array,
+  options: { readonly temperatureC: number; readonly loss?: LossScale; readonly z0Ohm: number },
+): Medium {
+  const n = frequencyHz.length;
+  const scale = options.loss ?? DESCRIBED_LOSS;
+  const gamma = complexZeros(n);
+  const impedance = complexZeros(n);
+  impedance.re.fill(options.z0Ohm);
+  const perLoss = complexZeros(n);
+  for (let i = 0; i < n; i++) {
+    const f = frequencyHz[i]!;
+    const alpha = guideLossDbPer100m(guide, f, options.temperatureC) / (100 * DB_PER_NEPER);
+    gamma.re[i] = alpha * scale.conductor;
+    gamma.im[i] = guidePhaseRadPerM(guide, f);
+    perLoss.re[i] = alpha;
+  }
+  return {
+    gamma,
+    impedance,
+    gammaPerConductorLoss: perLoss,
+    gammaPerDielectricLoss: complexZeros(n),
+    z0Ohm: options.z0Ohm,
   };
 }
 

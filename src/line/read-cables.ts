@@ -1,17 +1,15 @@
-/** Cable files: the program's own table in cables/, and a user's datasheets in the same form. */
+/** Table files: the program's own cables and guides in cables/, and a user's datasheets in the same form. */
 import * as v from 'valibot';
 import { fail, type Notice, type Outcome, type Problem, succeed } from '../outcome.ts';
 import {
   type AttenuationPoint,
   CABLE_FIGURES,
   type CableEntry,
-  type CableFigure,
   FIGURE_STATUSES,
-  type FigureSource,
   USUAL_VELOCITY_FACTOR_TOLERANCE,
   USUAL_Z0_TOLERANCE,
 } from './cable.ts';
-import { cableKey } from './cable-table.ts';
+import type { TableEntry } from './cable-table.ts';
 import {
   advice,
   closedObject,
@@ -20,18 +18,17 @@ import {
   isObject,
   numberAbove,
   numberWithin,
-  oneOf,
   readCheckedJson,
   visibleText,
 } from './checked-json.ts';
 import { fitAttenuation, worstResidual } from './fit-attenuation.ts';
+import { GUIDE_TABLE_HINTS, guideEntryOf, guideList } from './guide-file.ts';
+import { distinctNames, namedText, source, sourcesFound, sourcesOfFigures, status } from './table-schema.ts';
 
 /** k1 and k2 that miss the points of their own entry by more than this are doubted aloud. */
 const DOUBTFUL_RESIDUAL = 0.15;
 
 const frequencyMHz = numberWithin(0.001, 1e6);
-const source = visibleText();
-const status = oneOf(FIGURE_STATUSES);
 
 const point = closedObject({
   frequencyMHz,
@@ -46,14 +43,6 @@ const bandMHz = v.pipe(
     ([low, high]) => low <= high,
     advice('band-order', 'ends below its start', 'give the lower frequency first'),
   ),
-);
-
-const figureSource = closedObject({ source, status });
-
-const sources = closedObject(
-  Object.fromEntries(CABLE_FIGURES.map((figure) => [figure, v.optional(figureSource)])) as {
-    [Figure in CableFigure]: v.OptionalSchema<typeof figureSource, undefined>;
-  },
 );
 
 const cable = v.pipe(
@@ -75,7 +64,7 @@ const cable = v.pipe(
     bendRadiusRepeatedMm: v.optional(numberAbove(0, 100_000)),
     highestFrequencyMHz: v.optional(frequencyMHz),
     note: v.optional(visibleText(400)),
-    sources: v.optional(sources),
+    sources: v.optional(sourcesOfFigures(CABLE_FIGURES)),
   }),
   v.rawCheck(({ dataset, addIssue }) => {
     const given: unknown = dataset.value;
@@ -91,40 +80,19 @@ const cable = v.pipe(
   }),
 );
 
-const cableFile = closedObject({
-  family: v.optional(visibleText()),
-  cables: v.pipe(
-    v.array(cable),
-    v.minLength(1),
-    v.rawCheck(({ dataset, addIssue }) => {
-      if (!dataset.typed) return;
-      const owners = new Map<string, number>();
-      dataset.value.forEach((one, index) => {
-        const keys = new Set([one.id, one.name ?? one.id, ...(one.aliases ?? [])].map(cableKey));
-        for (const key of keys) {
-          const owner = owners.get(key);
-          owners.set(key, owner ?? index);
-          if (owner === undefined) continue;
-          addIssue({
-            message: advice(
-              'cable-twice',
-              `answers to a name of cable ${owner + 1} too`,
-              'give each cable its own id',
-            ),
-            path: [{ type: 'array', origin: 'value', input: dataset.value, key: index, value: one }],
-          });
-          return;
-        }
-      });
-    }),
-  ),
-});
-
 type GivenCable = v.InferOutput<typeof cable>;
 
+const familyName = v.optional(visibleText());
+const cableList = v.pipe(v.array(cable), v.minLength(1), distinctNames<GivenCable>('cable'));
+const cableFile = closedObject({ family: familyName, cables: cableList, guides: v.optional(guideList) });
+const guideFile = closedObject({ family: familyName, cables: v.optional(cableList), guides: guideList });
+/** A file holds cables, guides or both; one that names neither is asked for cables. */
+const tableFile = v.lazy((input) => (has(input, 'guides') ? guideFile : cableFile));
+
 const WORDS: FileWords = {
-  items: { cables: 'cable', attenuation: 'attenuation point', aliases: 'alias' },
+  items: { cables: 'cable', guides: 'guide', attenuation: 'attenuation point', aliases: 'alias' },
   hints: {
+    ...GUIDE_TABLE_HINTS,
     family: 'a name for this family of cables, in quotes',
     cables:
       'a list of one cable or more, each { "id": …, "z0Ohm": …, "velocityFactor": …, "attenuation": … }',
@@ -161,22 +129,23 @@ const WORDS: FileWords = {
 };
 
 /**
- * Reads a cable file: `{ "family", "cables": [ … ] }`.
+ * Reads a table file: `{ "family", "cables": [ … ], "guides": [ … ] }`, either list or both.
  *
- * A cable needs `id`, `z0Ohm`, `velocityFactor`, and its loss: either `attenuation` points, which are fitted
- * here, or `k1` and `k2`. What is left out is filled with what is usual, and marked so in `sources`.
+ * A cable needs `id`, `z0Ohm`, `velocityFactor`, and its loss: either `attenuation` points, which are fitted here, or
+ * `k1` and `k2`. A guide needs `id`, `aMm`, and its loss: `bMm` with `conductivitySPerM`, or `lossDbPer100m`. What is left out is filled with what is usual, and marked so in `sources`.
  *
  * @param text Contents of the file, JSON.
  * @param file Name of the file, for problems and as the source of figures that give none.
- * @returns The cables in the order of the file, or every problem found.
+ * @returns The cables in the order of the file, then the guides, or every problem found.
  */
-export function readCables(text: string, file: string): Outcome<CableEntry[]> {
-  const read = readCheckedJson(text, file, cableFile, WORDS);
+export function readCables(text: string, file: string): Outcome<TableEntry[]> {
+  const read = readCheckedJson(text, file, tableFile, WORDS);
   if (!read.ok) return read;
-  const entries: CableEntry[] = [];
+  const entries: TableEntry[] = [];
   const notices: Notice[] = [];
   const problems: Problem[] = [];
-  for (const given of read.value.cables) {
+  const family = read.value.family ?? '';
+  for (const given of read.value.cables ?? []) {
     const points = pointsOf(given, file);
     const fitted = pointsWithin(points, given.fittedBandMHz);
     if (given.k1 === undefined && fitted.length < 2) {
@@ -188,7 +157,7 @@ export function readCables(text: string, file: string): Outcome<CableEntry[]> {
       });
       continue;
     }
-    const entry = entryOf(given, points, fitted, read.value.family ?? '', file);
+    const entry = entryOf(given, points, fitted, family, file);
     entries.push(entry);
     if (Math.abs(entry.worstResidual ?? 0) > DOUBTFUL_RESIDUAL) {
       notices.push({
@@ -199,6 +168,7 @@ export function readCables(text: string, file: string): Outcome<CableEntry[]> {
       });
     }
   }
+  for (const given of read.value.guides ?? []) entries.push(guideEntryOf(given, family, file));
   return problems.length > 0 ? fail(...problems) : succeed(entries, notices);
 }
 
@@ -255,33 +225,12 @@ function entryOf(
     note: given.note ?? null,
     ...figures,
   };
-  return { ...entry, sources: sourcesOf(given, figures, file) };
-}
-
-function sourcesOf(
-  given: GivenCable,
-  figures: { readonly [Figure in CableFigure]: CableEntry[Figure] },
-  file: string,
-): CableEntry['sources'] {
-  const found: Partial<Record<CableFigure, FigureSource>> = {};
-  for (const figure of CABLE_FIGURES) {
-    if (figures[figure] === null) continue;
-    const usual = figure === 'z0ToleranceOhm' || figure === 'velocityFactorTolerance';
-    if (given.sources?.[figure] !== undefined) found[figure] = given.sources[figure];
-    else if (given[figure] !== undefined) found[figure] = { source: file, status: 'as given' };
-    else if (usual) found[figure] = { source: 'usual for described cables', status: 'common practice' };
-    else found[figure] = { source: 'fit to the points', status: 'computed' };
-  }
-  return found;
-}
-
-/** A name by which a cable is looked up: it needs a letter or digit to be compared by. */
-function namedText() {
-  return v.pipe(
-    visibleText(),
-    v.check(
-      (name) => cableKey(name) !== '',
-      advice('empty-text', 'has no letter or digit', 'write a short name'),
+  return {
+    ...entry,
+    sources: sourcesFound(CABLE_FIGURES, given, figures, file, (figure) =>
+      figure === 'z0ToleranceOhm' || figure === 'velocityFactorTolerance'
+        ? { source: 'usual for described cables', status: 'common practice' }
+        : { source: 'fit to the points', status: 'computed' },
     ),
-  );
+  };
 }

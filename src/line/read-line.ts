@@ -1,9 +1,11 @@
 /** Line files: the described run from the reference plane to the end. */
 import { type Outcome, succeed } from '../outcome.ts';
 import { type Cable, USUAL_VELOCITY_FACTOR_TOLERANCE, USUAL_Z0_TOLERANCE } from './cable.ts';
-import { type CableTable, cableOf } from './cable-table.ts';
+import { type CableTable, cableOf, guideOf } from './cable-table.ts';
 import { readCheckedJson } from './checked-json.ts';
 import { METRES_PER_FOOT, TABLE_TEMPERATURE_C } from './constants.ts';
+import type { GuideEntry } from './guide.ts';
+import { type InlineGuide, inlineGuide } from './guide-file.ts';
 import {
   type BandLimit,
   type JointDescription,
@@ -85,8 +87,16 @@ function sectionOf(given: GivenSection): Section {
       jointAfter,
     };
   }
+  if ('guide' in given) {
+    const guide = isGuideEntry(given.guide) ? guideOf(given.guide) : inlineGuide(given.guide);
+    return { type: 'guide', guide, lengthM: lengthM ?? null, label: given.label ?? guide.name, jointAfter };
+  }
   const cable = 'z0' in given.cable ? inlineCable(given.cable) : cableOf(given.cable);
   return { type: 'coax', cable, lengthM: lengthM ?? null, label: given.label ?? cable.name, jointAfter };
+}
+
+function isGuideEntry(given: GuideEntry | InlineGuide): given is GuideEntry {
+  return 'sources' in given;
 }
 
 function jointOf(given: GivenSection['jointAfter']): JointDescription {

@@ -1,6 +1,9 @@
 /** The inverse of reading a line file. */
+import { assertNever } from '../outcome.ts';
 import type { Cable } from './cable.ts';
-import { type CableTable, cableOf } from './cable-table.ts';
+import { type CableTable, cableOf, guideOf } from './cable-table.ts';
+import { TABLE_TEMPERATURE_C } from './constants.ts';
+import { type Guide, guideCutoffHz, guideLossDbPer100m } from './guide.ts';
 import type { Line, Section } from './line.ts';
 
 /**
@@ -8,7 +11,8 @@ import type { Line, Section } from './line.ts';
  *
  * A cable is named by its id where the table has it with the same figures; otherwise (given inline, or one of
  * its figures changed since) its own figures are written. Tolerances, which a line file cannot hold, then
- * become the usual ones.
+ * become the usual ones. A guide likewise; where its loss follows from its walls, that in the middle of its band is
+ * written.
  *
  * @param cables Table that the file will be read with.
  */
@@ -39,18 +43,28 @@ export function writeLine(line: Line, cables: CableTable): string {
 }
 
 function writtenSection(section: Section, cables: CableTable): Record<string, unknown> {
-  const what =
-    section.type === 'coax'
-      ? { cable: writtenCable(section.cable, cables), ...known({ lengthM: section.lengthM }) }
-      : {
-          device: section.device,
-          lengthM: section.lengthM,
-          lossDb: section.lossDb,
-          returnLossDb: section.returnLossDb,
-          passbandMHz: section.passbandHz.map(mega),
-        };
+  const what = writtenKind(section, cables);
   const joint = known(section.jointAfter);
   return { ...what, label: section.label, ...(Object.keys(joint).length === 0 ? {} : { jointAfter: joint }) };
+}
+
+function writtenKind(section: Section, cables: CableTable): Record<string, unknown> {
+  switch (section.type) {
+    case 'coax':
+      return { cable: writtenCable(section.cable, cables), ...known({ lengthM: section.lengthM }) };
+    case 'guide':
+      return { guide: writtenGuide(section.guide, cables), ...known({ lengthM: section.lengthM }) };
+    case 'device':
+      return {
+        device: section.device,
+        lengthM: section.lengthM,
+        lossDb: section.lossDb,
+        returnLossDb: section.returnLossDb,
+        passbandMHz: section.passbandHz.map(mega),
+      };
+    default:
+      return assertNever(section);
+  }
 }
 
 function writtenCable(cable: Cable, cables: CableTable): unknown {
@@ -58,6 +72,24 @@ function writtenCable(cable: Cable, cables: CableTable): unknown {
   if (entry !== undefined && JSON.stringify(cableOf(entry)) === JSON.stringify(cable)) return cable.id;
   const { id, z0Ohm, velocityFactor, k1, k2 } = cable;
   return { id, z0: z0Ohm, velocityFactor, k1, k2 };
+}
+
+function writtenGuide(guide: Guide, cables: CableTable): unknown {
+  const entry = cables.findGuide(guide.id);
+  if (entry !== undefined && JSON.stringify(guideOf(entry)) === JSON.stringify(guide)) return guide.id;
+  const { id, aMm } = guide;
+  return { id, aMm, lossDbPer100m: guide.lossDbPer100m ?? lossInMidBand(guide) };
+}
+
+/** Middle of the recommended band, relative to the cut-off, of a guide that names none. Common practice: 1.25 to 1.9. */
+const MID_BAND = 1.5;
+
+function lossInMidBand(guide: Guide): number {
+  const middleHz =
+    guide.bandMHz === null
+      ? MID_BAND * guideCutoffHz(guide)
+      : ((guide.bandMHz[0] + guide.bandMHz[1]) / 2) * 1e6;
+  return guideLossDbPer100m(guide, middleHz, TABLE_TEMPERATURE_C);
 }
 
 /** What is left without the figures that are null. */

@@ -1,14 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import type { CableEntry } from '../../src/line/cable.ts';
-import { cableKey, cableOf, createCableTable } from '../../src/line/cable-table.ts';
+import { cableKey, cableOf, createCableTable, isCable } from '../../src/line/cable-table.ts';
 import { readCables } from '../../src/line/read-cables.ts';
 import { shippedTable } from './shipped-cables.ts';
 
 function entry(id: string, name: string, aliases: readonly string[], velocityFactor: number): CableEntry {
   const cable = { id, name, aliases, z0Ohm: 50, velocityFactor, k1: 0.5, k2: 0.001 };
   const read = readCables(JSON.stringify({ cables: [cable] }), 'own.json');
-  if (!read.ok || !read.value[0]) throw new Error(JSON.stringify(read));
-  return read.value[0];
+  const only = read.ok ? read.value.find(isCable) : undefined;
+  if (only === undefined) throw new Error(JSON.stringify(read));
+  return only;
 }
 
 describe('createCableTable', () => {

@@ -165,8 +165,8 @@ describe('the cable table', () => {
 
   it('the cable table stores the residual that k1 and k2 leave', () => {
     for (const { text } of shippedFiles()) {
-      const stored: { cables: { id: string; worstResidual: number }[] } = JSON.parse(text);
-      for (const { id, worstResidual: residual } of stored.cables) {
+      const stored: { cables?: { id: string; worstResidual: number }[] } = JSON.parse(text);
+      for (const { id, worstResidual: residual } of stored.cables ?? []) {
         const { attenuation, fittedBandMHz, k1, k2 } = found(id);
         const [low, high] = fittedBandMHz ?? [0, 0];
         const points = attenuation.filter((one) => one.frequencyMHz >= low && one.frequencyMHz <= high);

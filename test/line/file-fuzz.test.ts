@@ -1,6 +1,7 @@
 /** Random damage to cable and line files: a value within its bounds or problems with a mend, never a crash. */
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { isCable } from '../../src/line/cable-table.ts';
 import { readCables } from '../../src/line/read-cables.ts';
 import { readLine } from '../../src/line/read-line.ts';
 import type { Outcome } from '../../src/outcome.ts';
@@ -13,12 +14,16 @@ const CABLE_FILE = `{ "family": "own", "cables": [
     "attenuation": [{ "frequencyMHz": 100, "dbPer100m": 4.1, "source": "sheet", "status": "confirmed" },
                     { "frequencyMHz": 900, "dbPer100m": 12.9 }], "fittedBandMHz": [100, 900],
     "sources": { "z0Ohm": { "source": "sheet", "status": "from memory" } } },
-  { "id": "b", "z0Ohm": 75, "velocityFactor": 0.66, "k1": 1.2, "k2": 0.01, "highestFrequencyMHz": 1000 } ] }`;
+  { "id": "b", "z0Ohm": 75, "velocityFactor": 0.66, "k1": 1.2, "k2": 0.01, "highestFrequencyMHz": 1000 } ],
+  "guides": [
+  { "id": "g", "aMm": 30, "bMm": 15, "conductivitySPerM": 5.8e7, "bandMHz": [6000, 9000], "aliases": ["G 1"] },
+  { "id": "h", "aMm": 20, "lossDbPer100m": 9 } ] }`;
 
 const LINE_FILE = `{ "name": "n", "site": "s", "end": "antenna", "temperatureC": 12, "sections": [
   { "cable": "foam-half", "lengthM": 2, "label": "l", "jointAfter": { "name": "N", "returnLossDb": 30 } },
   { "device": "filter", "lengthFt": 1, "lossDb": 0.4, "returnLossDb": 20, "passbandMHz": [1710, 2170] },
   { "cable": { "id": "own", "z0": 60, "velocityFactor": 0.8, "k1": 0.4, "k2": 0.001 }, "lengthM": 3 },
+  { "guide": "WR-137", "lengthM": 4 }, { "guide": { "id": "own", "aMm": 30, "lossDbPer100m": 7 }, "lengthFt": 9 },
   { "cable": "rg-213" }],
   "limits": { "bands": [{ "name": "b", "fromMHz": 144, "toMHz": 146, "vswr": 1.5 }], "jointReturnLossDb": 28 } }`;
 
@@ -123,6 +128,13 @@ describe('readCables and readLine on damaged files', () => {
         for (const cable of outcome.value) {
           expect(numbersOf(cable).every(Number.isFinite)).toBe(true);
           expect(cable.id).not.toBe('');
+          if (!isCable(cable)) {
+            expect(cable.aMm >= 0.1 && cable.aMm <= 1000 && cable.aMm >= (cable.bMm ?? 0)).toBe(true);
+            expect(
+              cable.lossDbPer100m !== null || (cable.bMm ?? 0) * (cable.conductivitySPerM ?? 0) > 0,
+            ).toBe(true);
+            continue;
+          }
           expect(cable.z0Ohm >= 1 && cable.z0Ohm <= 1000).toBe(true);
           expect(cable.velocityFactor >= 0.1 && cable.velocityFactor <= 1).toBe(true);
           expect(cable.k1 >= 0 && cable.k2 >= 0).toBe(true);

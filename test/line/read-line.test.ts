@@ -151,7 +151,7 @@ describe('readLine', () => {
     { "cable": "rg-213", "lengthM": 2, "lengthFt": 6 },
     { "device": "arrestor", "lossDb": 0.1, "passbandMHz": [2700, 690] },
     { "lengthM": "46m" },
-    { "guide": "WR-137", "lengthM": 3 },
+    { "guide": "WR-173", "lengthM": 3 },
     { "cable": { "id": "own", "z0": 0, "vf": 0.8, "k1": 0.4, "k2": 0.001 }, "lengthM": 100001 }
   ],
   "end": "opne",
@@ -181,7 +181,7 @@ describe('readLine', () => {
         /^9: section 6, cable is missing \| write "cable": a cable id such as "foam-7-8"/,
       ),
       `9: section 6, lengthM is of the wrong kind | ${length}`,
-      '10: section 7 is a waveguide, which this version of the program does not know yet | describe coax cables and devices only',
+      '10: section 7, guide names a guide that is not in the table: WR-173 | did you mean "WR-137"? otherwise give the guide\'s own figures: { "id", "aMm", "lossDbPer100m" }',
       '11: section 8, cable, z0 is out of range | write an impedance in ohms from 1 to 1000, for example 50',
       '11: section 8, cable, velocityFactor is missing | write "velocityFactor": a velocity factor from 0.1 to 1, for example 0.88',
       '11: section 8, cable, vf is not a key that is known here | remove it; the keys here are id, z0, velocityFactor, k1, k2',

@@ -1,7 +1,6 @@
 /** The program's own cable table, read from cables/ as the program reads it. */
 import { readdirSync, readFileSync } from 'node:fs';
-import type { CableEntry } from '../../src/line/cable.ts';
-import { type CableTable, createCableTable } from '../../src/line/cable-table.ts';
+import { type CableTable, createCableTable, type TableEntry } from '../../src/line/cable-table.ts';
 import { readCables } from '../../src/line/read-cables.ts';
 import type { Notice } from '../../src/outcome.ts';
 
@@ -16,10 +15,10 @@ export function shippedFiles(): readonly { readonly file: string; readonly text:
 
 /** Every entry of the table, and what its readers doubted. */
 export function shippedEntries(): {
-  readonly entries: readonly CableEntry[];
+  readonly entries: readonly TableEntry[];
   readonly notices: readonly Notice[];
 } {
-  const entries: CableEntry[] = [];
+  const entries: TableEntry[] = [];
   const notices: Notice[] = [];
   for (const { file, text } of shippedFiles()) {
     const read = readCables(text, file);
