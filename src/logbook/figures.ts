@@ -1,0 +1,96 @@
+/** The form of what is stored as JSON: written by us, but read from files that anyone may have touched. */
+import * as v from 'valibot';
+import type { EntryFigures, Setup } from './entry.ts';
+
+const finite = v.pipe(v.number(), v.finite());
+const known = v.nullable(finite);
+const severity = v.picklist(['fault', 'watch', 'sound']);
+const echoKind = v.picklist([
+  'open',
+  'short',
+  'termination',
+  'series-resistance',
+  'shunt-leakage',
+  'series-inductance',
+  'shunt-capacitance',
+  'impedance-step',
+  'joint',
+  'unresolved',
+]);
+const hash = v.pipe(v.string(), v.regex(/^[0-9a-f]{64}$/u));
+
+/** Figures of one entry. Keys that a later program adds are let be. */
+export const figuresForm = v.object({
+  startHz: finite,
+  stopHz: finite,
+  points: finite,
+  resolutionM: finite,
+  temperatureC: known,
+  lengthM: finite,
+  lengthSigmaM: known,
+  end: v.string(),
+  residualDb: known,
+  lossDb: known,
+  lossAtHz: known,
+  lossSigmaDb: known,
+  lossMarginDb: known,
+  lossPass: v.nullable(v.boolean()),
+  bands: v.array(
+    v.object({
+      name: v.string(),
+      fromHz: finite,
+      toHz: finite,
+      worstReturnLossDb: finite,
+      worstAtHz: finite,
+      limitDb: known,
+    }),
+  ),
+  echoes: v.array(
+    v.object({
+      distanceM: finite,
+      distanceSigmaM: finite,
+      returnLossDb: finite,
+      correctedReturnLossDb: finite,
+      kind: echoKind,
+      value: v.nullable(
+        v.object({
+          quantity: v.picklist(['resistance', 'inductance', 'capacitance', 'impedance', 'return loss']),
+          value: finite,
+          sigma: known,
+          unit: v.picklist(['ohm', 'nH', 'pF', 'dB']),
+        }),
+      ),
+      joint: known,
+      place: v.string(),
+      severity,
+    }),
+  ),
+}) satisfies v.GenericSchema<unknown, EntryFigures>;
+
+/** How a sweep was analysed. */
+export const setupForm = v.object({
+  port: known,
+  offsetM: finite,
+  windowSpec: v.string(),
+  lineDescribed: v.boolean(),
+  standards: v.nullable(v.object({ open: hash, short: hash, load: hash })),
+}) satisfies v.GenericSchema<unknown, Setup>;
+
+/**
+ * Reads stored JSON.
+ *
+ * @returns The value, or null when the text is no JSON of that form.
+ */
+export function readStored<Form extends v.GenericSchema>(
+  text: string,
+  form: Form,
+): v.InferOutput<Form> | null {
+  let value: unknown;
+  try {
+    value = JSON.parse(text);
+  } catch {
+    return null;
+  }
+  const checked = v.safeParse(form, value);
+  return checked.success ? checked.output : null;
+}

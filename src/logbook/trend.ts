@@ -1,0 +1,199 @@
+/** One line over the years: which echo of one sweep is which of the next, and how each changes. */
+import type { EchoFigures, EntryFigures, EntryKey } from './entry.ts';
+
+/** One sweep of the line. */
+export type Moment = {
+  readonly key: EntryKey;
+  /** Wall time on site, `2026-05-03` or `2026-05-03T14:30`. */
+  readonly takenAt: string;
+  readonly figures: EntryFigures;
+};
+
+/** A figure of one sweep; `at` is the place of the sweep in the history, from 0. */
+export type TrendPoint = { readonly at: number; readonly value: number };
+
+export type Course = {
+  /** In order of time; sweeps that do not have the figure are left out. */
+  readonly points: readonly TrendPoint[];
+  /** Last less first; null for a single point. */
+  readonly change: number | null;
+  /** Slope of the straight line of least squares; null when the points span less than 90 days. */
+  readonly perYear: number | null;
+};
+
+export type EchoTrend = {
+  /** Where it was last seen, in words. */
+  readonly place: string;
+  readonly joint: number | null;
+  /** What it was when last seen. */
+  readonly kind: EchoFigures['kind'];
+  /** Last sweep that has it, from 0. */
+  readonly lastAt: number;
+  readonly echoes: readonly { readonly at: number; readonly echo: EchoFigures }[];
+  /** Level with line loss and upstream mismatch removed, dB, negative: it rises as the echo grows. */
+  readonly levelDb: Course;
+};
+
+export type LineTrend = {
+  readonly moments: readonly Moment[];
+  /** In order of distance. */
+  readonly echoes: readonly EchoTrend[];
+  readonly lossDb: Course;
+  readonly lengthM: Course;
+  /** Worst return loss over each named band, dB, positive. */
+  readonly match: readonly { readonly band: string; readonly returnLossDb: Course }[];
+};
+
+/** Shortest span of which a change per year is told, days. */
+const SHORTEST_SLOPE_DAYS = 90;
+const DAYS_PER_YEAR = 365.25;
+const MS_PER_DAY = 86_400_000;
+
+/** How far a joint may seem to move before it is taken for another one of that number: m, and share of distance. */
+const JOINT_MOVES_M = 1;
+const JOINT_MOVES_SHARE = 0.05;
+/** Least distance within which two echoes inside a section are the same one, m. */
+const SAME_PLACE_M = 0.2;
+
+/**
+ * Follows a line through its sweeps.
+ *
+ * An echo at a joint is the same as that at the same joint before, as long as the joint has not moved by more than a
+ * metre or 5 %; one inside a section is the same as the nearest before it within 3σ of both, or one resolution.
+ *
+ * @param moments In order of time.
+ */
+export function followLine(moments: readonly Moment[]): LineTrend {
+  const days = moments.map(({ takenAt }) => dayOf(takenAt));
+  const bands = [...new Set(moments.flatMap(({ figures }) => figures.bands.map((band) => band.name)))];
+  const course = (figureOf: (figures: EntryFigures) => number | null | undefined): Course =>
+    courseOf(
+      moments.flatMap(({ figures }, at) => {
+        const value = figureOf(figures);
+        return value === null || value === undefined ? [] : [{ at, value }];
+      }),
+      days,
+    );
+  return {
+    moments,
+    echoes: trackEchoes(moments).map((seen) => {
+      const last = seen.at(-1)!;
+      return {
+        place: last.echo.place,
+        joint: last.echo.joint,
+        kind: last.echo.kind,
+        lastAt: last.at,
+        echoes: seen,
+        levelDb: courseOf(
+          seen.map(({ at, echo }) => ({ at, value: -echo.correctedReturnLossDb })),
+          days,
+        ),
+      };
+    }),
+    lossDb: course((figures) => figures.lossDb),
+    lengthM: course((figures) => figures.lengthM),
+    match: bands.map((band) => ({
+      band,
+      returnLossDb: course((figures) => figures.bands.find(({ name }) => name === band)?.worstReturnLossDb),
+    })),
+  };
+}
+
+/** Days since 1970 of a wall time. */
+export function dayOf(takenAt: string): number {
+  return Date.parse(takenAt.length > 10 ? `${takenAt}Z` : `${takenAt}T00:00Z`) / MS_PER_DAY;
+}
+
+type Track = { readonly at: number; readonly echo: EchoFigures }[];
+
+function trackEchoes(moments: readonly Moment[]): readonly Track[] {
+  const all: Track[] = [];
+  const atJoint = new Map<number, Track>();
+  /** Those inside sections, in order of the distance at which they were last seen. */
+  const between: Track[] = [];
+  for (const [at, { figures }] of moments.entries())
+    for (const echo of [...figures.echoes].sort((a, b) => a.distanceM - b.distanceM)) {
+      const known =
+        echo.joint === null
+          ? takeNearest(between, echo, at, figures.resolutionM)
+          : sameJoint(atJoint.get(echo.joint), echo);
+      const track = known ?? [];
+      if (!known) all.push(track);
+      track.push({ at, echo });
+      if (echo.joint === null) between.splice(placeOf(between, echo.distanceM), 0, track);
+      else atJoint.set(echo.joint, track);
+    }
+  return all.sort((a, b) => lastOf(a).distanceM - lastOf(b).distanceM);
+}
+
+function sameJoint(track: Track | undefined, echo: EchoFigures): Track | null {
+  if (!track) return null;
+  const moved = Math.abs(lastOf(track).distanceM - echo.distanceM);
+  return moved <= Math.max(JOINT_MOVES_M, JOINT_MOVES_SHARE * echo.distanceM) ? track : null;
+}
+
+/** Takes the track out of the list whose echo is nearest, near enough, and not of this very sweep. */
+function takeNearest(between: Track[], echo: EchoFigures, at: number, resolutionM: number): Track | null {
+  const middle = placeOf(between, echo.distanceM);
+  let nearest = -1;
+  let nearestM = Number.POSITIVE_INFINITY;
+  for (const step of [-1, 1] as const)
+    for (let i = step < 0 ? middle - 1 : middle; i >= 0 && i < between.length; i += step) {
+      const other = lastOf(between[i]!);
+      const apartM = Math.abs(other.distanceM - echo.distanceM);
+      const reachM = Math.max(
+        SAME_PLACE_M,
+        resolutionM,
+        3 * Math.hypot(echo.distanceSigmaM, other.distanceSigmaM),
+      );
+      if (apartM > reachM) break;
+      if (between[i]!.at(-1)!.at === at) continue;
+      if (apartM < nearestM) {
+        nearest = i;
+        nearestM = apartM;
+      }
+      break;
+    }
+  return nearest < 0 ? null : (between.splice(nearest, 1)[0] ?? null);
+}
+
+/** First index whose track was last seen beyond this distance. */
+function placeOf(between: readonly Track[], distanceM: number): number {
+  let low = 0;
+  let high = between.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (lastOf(between[middle]!).distanceM > distanceM) high = middle;
+    else low = middle + 1;
+  }
+  return low;
+}
+
+function lastOf(track: Track): EchoFigures {
+  return track.at(-1)!.echo;
+}
+
+function courseOf(points: readonly TrendPoint[], days: readonly number[]): Course {
+  const first = points[0];
+  const last = points.at(-1);
+  const change = first && last && points.length > 1 ? last.value - first.value : null;
+  return { points, change, perYear: slopePerYear(points, days) };
+}
+
+function slopePerYear(points: readonly TrendPoint[], days: readonly number[]): number | null {
+  const n = points.length;
+  if (n < 2 || days[points[n - 1]!.at]! - days[points[0]!.at]! < SHORTEST_SLOPE_DAYS) return null;
+  let meanDay = 0;
+  let meanValue = 0;
+  for (const { at, value } of points) {
+    meanDay += days[at]! / n;
+    meanValue += value / n;
+  }
+  let top = 0;
+  let bottom = 0;
+  for (const { at, value } of points) {
+    top += (days[at]! - meanDay) * (value - meanValue);
+    bottom += (days[at]! - meanDay) ** 2;
+  }
+  return (top / bottom) * DAYS_PER_YEAR;
+}
