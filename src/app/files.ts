@@ -59,16 +59,25 @@ export async function readText(path: string, mostBytes = MOST_FILE_BYTES): Promi
  *
  * @param options.overwrite Without it a file that is already there is left alone and a problem comes back.
  */
-export async function writeText(
+export function writeText(
   path: string,
   text: string,
+  options: { readonly overwrite: boolean },
+): Promise<Outcome<null>> {
+  return writeBytes(path, new TextEncoder().encode(text), options);
+}
+
+/** Writes bytes as they are, whole or not at all; otherwise like `writeText`. */
+export async function writeBytes(
+  path: string,
+  bytes: Uint8Array,
   options: { readonly overwrite: boolean },
 ): Promise<Outcome<null>> {
   const file = shownName(path);
   const refused = await refuseTarget(path, options);
   if (refused) return fail(refused);
   try {
-    await writeFileAtomic(path, text, { encoding: 'utf8' });
+    await writeFileAtomic(path, Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength));
     return succeed(null);
   } catch (error) {
     return fail(diskProblem(error, file, 'write'));
@@ -153,7 +162,7 @@ function tooLarge(file: string, mostBytes: number): Problem {
 }
 
 /** What the system said, in words said on site. Anything that the system did not say is a bug, and goes on. */
-function diskProblem(error: unknown, file: string, act: 'read' | 'write'): Problem {
+export function diskProblem(error: unknown, file: string, act: 'read' | 'write'): Problem {
   if (!(error instanceof Error && 'code' in error)) throw error;
   const code = String(error.code);
   const known: Record<string, readonly [problem: string, what: string, mend: string]> = {

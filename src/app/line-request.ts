@@ -1,8 +1,14 @@
 /** From what was asked for on the command line to the line that is analysed. */
-import type { CableEntry } from '../line/cable.ts';
-import { type CableTable, cableOf } from '../line/cable-table.ts';
+import { type CableTable, cableOf, guideOf, isGuide, type TableEntry } from '../line/cable-table.ts';
 import { TABLE_TEMPERATURE_C } from '../line/constants.ts';
-import { type CoaxSection, type EndKind, type Line, NO_LIMITS, PLAIN_JOINT } from '../line/line.ts';
+import {
+  type CoaxSection,
+  type EndKind,
+  type Line,
+  NO_LIMITS,
+  PLAIN_JOINT,
+  type Section,
+} from '../line/line.ts';
 import { nearestWords, orList } from '../line/nearest-word.ts';
 import { readLine } from '../line/read-line.ts';
 import { fail, type Notice, type Outcome, type Problem, succeed } from '../outcome.ts';
@@ -12,7 +18,10 @@ import { fileExists, readText, STANDARD_INPUT, shownName } from './files.ts';
 
 /** Flags that describe or change the line, as typed; null where not given. */
 export type LineFlags = {
+  /** A line file, or the name of a line in the logbook. */
   readonly line: string | null;
+  /** The logbook that names are looked up in; the one in the platform's data folder when not given. */
+  readonly logbook?: string | null;
   readonly cable: string | null;
   readonly length: string | null;
   readonly end: string | null;
@@ -100,6 +109,7 @@ async function describedLine(
   if (flags.cable !== null) return lineOfCable(flags.cable, flags.length, cables);
   const beside = lineFileOf(sweepFile);
   const path = flags.line ?? (sweepFile !== STANDARD_INPUT && (await fileExists(beside)) ? beside : null);
+  if (flags.line !== null && (await isLineName(flags.line))) return lineOfLogbook(flags.line, flags, cables);
   if (path === null)
     return fail({
       code: 'line-missing',
@@ -122,9 +132,37 @@ async function describedLine(
   return succeed({ line: line.value, lineDescribed: true }, [...found, ...line.notices]);
 }
 
-/** A line of one section: a cable by name, its length perhaps unknown. */
+/** A name is what is no file, and does not look like one. */
+async function isLineName(text: string): Promise<boolean> {
+  return !/[/\\]|\.json$/iu.test(text) && !(await fileExists(text));
+}
+
+async function lineOfLogbook(
+  name: string,
+  flags: LineFlags,
+  cables: CableTable,
+): Promise<Outcome<RequestedLine>> {
+  // Loaded here: most runs need no logbook.
+  const { findLine } = await import('./log-lines.ts');
+  const line = await findLine(name, flags.logbook ?? null, cables);
+  if (line.ok) return succeed({ line: line.value, lineDescribed: true }, line.notices);
+  return fail(
+    ...line.problems.map((problem) =>
+      problem.code === 'logbook-missing'
+        ? {
+            code: 'line-missing',
+            what: 'this is no file, and there is no logbook that could know a line of this name',
+            found: cleanForDisplay(name, 80),
+            mend: 'check the name of the line file; "feedsonde log add SWEEP" starts a logbook',
+          }
+        : problem,
+    ),
+  );
+}
+
+/** A line of one section: a cable or guide by name, its length perhaps unknown. */
 function lineOfCable(name: string, lengthText: string | null, cables: CableTable): Outcome<RequestedLine> {
-  const entry = cables.find(name);
+  const entry = cables.find(name) ?? cables.findGuide(name);
   const lengthM = lengthText === null ? null : parseLengthM(lengthText);
   const problems: Problem[] = [];
   if (entry === undefined) problems.push(unknownCable(name, cables));
@@ -132,13 +170,14 @@ function lineOfCable(name: string, lengthText: string | null, cables: CableTable
   else if (lengthM?.value === 0)
     problems.push(wrongFlag('--length 0', 'a line has a length', '--length 46m'));
   if (entry === undefined || problems.length > 0) return fail(...problems);
-  const section: CoaxSection = {
-    type: 'coax',
-    cable: cableOf(entry),
+  const run = {
     lengthM: lengthM?.ok ? lengthM.value : null,
     label: entry.name,
     jointAfter: PLAIN_JOINT,
   };
+  const section: Section = isGuide(entry)
+    ? { type: 'guide', guide: guideOf(entry), ...run }
+    : { type: 'coax', cable: cableOf(entry), ...run };
   const line: Line = {
     name: '',
     site: '',
@@ -151,14 +190,14 @@ function lineOfCable(name: string, lengthText: string | null, cables: CableTable
   return succeed({ line, lineDescribed: section.lengthM !== null });
 }
 
-/** Finds a cable by id, alias or name. */
-export function findCable(name: string, cables: CableTable): Outcome<CableEntry> {
-  const entry = cables.find(name);
+/** Finds a cable or guide by id, alias or name. */
+export function findCable(name: string, cables: CableTable): Outcome<TableEntry> {
+  const entry = cables.find(name) ?? cables.findGuide(name);
   return entry === undefined ? fail(unknownCable(name, cables)) : succeed(entry);
 }
 
 function unknownCable(name: string, cables: CableTable): Problem {
-  const near = cables.nearest(name);
+  const near = [...cables.nearest(name), ...cables.nearestGuide(name)].slice(0, 3);
   return {
     code: 'cable-unknown',
     what: 'this cable is not in the table',
@@ -191,6 +230,12 @@ function changeLine(line: Line, flags: LineFlags): Outcome<Line> {
           '--velocity-factor 0.88',
         ),
       );
+    else if (!line.sections.some((section) => section.type === 'coax'))
+      problems.push({
+        code: 'flag-clash',
+        what: '--velocity-factor belongs to a cable, and this line has none',
+        mend: 'leave it out: the delay of a guide follows from its width',
+      });
     else changed = withVelocityFactor(changed, factor);
   }
   return problems.length > 0 ? fail(...problems) : succeed(changed);

@@ -55,6 +55,11 @@ export function configFolder(): string {
   return envPaths('feedsonde', { suffix: '' }).config;
 }
 
+/** The platform's folder for what this program keeps: the logbook. */
+export function dataFolder(): string {
+  return envPaths('feedsonde', { suffix: '' }).data;
+}
+
 /**
  * Puts the settings together.
  *

@@ -1,5 +1,5 @@
 /** What a logbook holds: lines, and of each the sweeps with what was concluded of them. */
-import type { Echo, EchoValue, Severity } from '../locate/echo.ts';
+import type { Severity } from '../locate/echo.ts';
 
 /** One sweep's place in a logbook: SHA-256 of its bytes, and `-p2` behind it where it is another port of that file. */
 export type EntryKey = string;
@@ -16,12 +16,23 @@ export type Setup = {
   readonly standards: { readonly open: string; readonly short: string; readonly load: string } | null;
 };
 
-/** An echo as it is followed over the years. */
-export type EchoFigures = Pick<
-  Echo,
-  'distanceM' | 'distanceSigmaM' | 'returnLossDb' | 'correctedReturnLossDb' | 'kind'
-> & {
-  readonly value: EchoValue | null;
+/** An echo as it is followed over the years. Kinds and units are words: a later program may know more of them. */
+export type EchoFigures = {
+  readonly distanceM: number;
+  readonly distanceSigmaM: number;
+  /** As seen at the reference plane, RMS over the band, dB, positive. */
+  readonly returnLossDb: number;
+  /** With line loss and upstream mismatch removed, dB. */
+  readonly correctedReturnLossDb: number;
+  readonly kind: string;
+  /** Kind and size in words: "series resistance 9.1 Ω". */
+  readonly words: string;
+  readonly value: {
+    readonly quantity: string;
+    readonly value: number;
+    readonly sigma: number | null;
+    readonly unit: string;
+  } | null;
   /** Joint that it sits at, counted from 1; null inside a section. */
   readonly joint: number | null;
   readonly place: string;

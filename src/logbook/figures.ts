@@ -5,18 +5,6 @@ import type { EntryFigures, Setup } from './entry.ts';
 const finite = v.pipe(v.number(), v.finite());
 const known = v.nullable(finite);
 const severity = v.picklist(['fault', 'watch', 'sound']);
-const echoKind = v.picklist([
-  'open',
-  'short',
-  'termination',
-  'series-resistance',
-  'shunt-leakage',
-  'series-inductance',
-  'shunt-capacitance',
-  'impedance-step',
-  'joint',
-  'unresolved',
-]);
 const hash = v.pipe(v.string(), v.regex(/^[0-9a-f]{64}$/u));
 
 /** Figures of one entry. Keys that a later program adds are let be. */
@@ -51,13 +39,14 @@ export const figuresForm = v.object({
       distanceSigmaM: finite,
       returnLossDb: finite,
       correctedReturnLossDb: finite,
-      kind: echoKind,
+      kind: v.string(),
+      words: v.string(),
       value: v.nullable(
         v.object({
-          quantity: v.picklist(['resistance', 'inductance', 'capacitance', 'impedance', 'return loss']),
+          quantity: v.string(),
           value: finite,
           sigma: known,
-          unit: v.picklist(['ohm', 'nH', 'pF', 'dB']),
+          unit: v.string(),
         }),
       ),
       joint: known,

@@ -26,7 +26,8 @@ export type EchoTrend = {
   readonly place: string;
   readonly joint: number | null;
   /** What it was when last seen. */
-  readonly kind: EchoFigures['kind'];
+  readonly kind: string;
+  readonly words: string;
   /** Last sweep that has it, from 0. */
   readonly lastAt: number;
   readonly echoes: readonly { readonly at: number; readonly echo: EchoFigures }[];
@@ -82,6 +83,7 @@ export function followLine(moments: readonly Moment[]): LineTrend {
         place: last.echo.place,
         joint: last.echo.joint,
         kind: last.echo.kind,
+        words: last.echo.words,
         lastAt: last.at,
         echoes: seen,
         levelDb: courseOf(
