@@ -22,6 +22,13 @@ const samples = [
   { name: 'south-1', built: 13, seed: 104, faults: [] },
   { name: 'south-2', built: 14, seed: 105, faults: ['wet:k2x20,er1.06@41m-44m'] },
   { name: 'south-3', built: 15, seed: 106, faults: ['open@17.4m'] },
+  {
+    name: 'link-1',
+    built: 16,
+    seed: 107,
+    faults: ['series-inductance:x0.15@joint4'],
+    sweep: '5900MHz-7900MHz:801',
+  },
 ];
 
 for (const { name, built, seed, faults, sweep } of samples) {

@@ -1,51 +1,21 @@
-/** `cables`: the table, one cable, or the loss and delay of a run. */
+/** `cables`: the table of cables and guides, one of them, or the loss and delay of a run. */
 import { findCable } from '../app/line-request.ts';
 import type { CableEntry } from '../line/cable.ts';
+import { type CableTable, isGuide, type TableEntry } from '../line/cable-table.ts';
 import { TABLE_TEMPERATURE_C } from '../line/constants.ts';
-import { aboveHighestFrequency, attenuationDbPer100m, outsideFittedBand } from '../line/loss.ts';
-import { coaxMedium } from '../line/medium.ts';
-import { fail, type Notice, type Outcome, type Problem, succeed } from '../outcome.ts';
-import { cellWidth, fitText, wrapText } from '../plot/cells.ts';
-import {
-  decibelText,
-  digitsText,
-  fixedText,
-  frequencyText,
-  lengthPerMetre,
-  lengthText,
-  temperatureText,
-  type Units,
-} from '../plot/quantity-text.ts';
+import { aboveHighestFrequency, attenuationDbPer100m } from '../line/loss.ts';
+import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import { digitsText, fixedText, frequencyText, lengthPerMetre, type Units } from '../plot/quantity-text.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
 import { parseFrequencyHz, parseLengthM, parseTemperatureC } from '../sweep/number-text.ts';
+import { belowCutoff, guideTableLines, jsonGuide, oneGuideText } from './guide-text.ts';
 import { type ExitStatus, type Io, textColumns, write } from './io.ts';
+import { labelledRows } from './labelled-rows.ts';
 import type { Invocation } from './parse-arguments.ts';
 import { printProblems } from './print-problems.ts';
 import { prepareTables } from './request.ts';
-
-/** What is asked of a run of one cable; null where not given. */
-type Question = {
-  readonly frequencyHz: number | null;
-  readonly lengthM: number | null;
-  readonly temperatureC: number;
-};
-
-/** What a run of cable does at one frequency. */
-type RunFigures = {
-  readonly frequencyHz: number;
-  readonly lengthM: number | null;
-  readonly temperatureC: number;
-  readonly lossDbPer100m: number;
-  /** One way. */
-  readonly lossDb: number | null;
-  readonly delayNs: number | null;
-  readonly notices: readonly Notice[];
-};
-
-/** Length of line over which delay per metre is shown. */
-const PER_100_M = 100;
-/** Step of the central difference that gives the group delay, relative to the frequency. */
-const DELAY_STEP = 1e-4;
+import { PER_100_M, type Question, runFigures, runLines } from './run-figures.ts';
+import { tableLines } from './table-lines.ts';
 
 /** Below it no feedline is swept, and a bare number was meant in MHz, Hz. */
 const LOWEST_HZ = 10e3;
@@ -59,27 +29,42 @@ export async function runCables(invocation: Invocation, io: Io): Promise<ExitSta
   const tables = await prepareTables(invocation, io);
   const name = invocation.inputs[0];
   const chosen =
-    tables.ok && name !== undefined ? findCable(name, tables.value.cables) : succeed<CableEntry | null>(null);
-  if (!tables.ok || !question.ok || !chosen.ok) {
-    const outcomes: readonly Outcome<unknown>[] = [tables, question, chosen];
+    tables.ok && name !== undefined ? findCable(name, tables.value.cables) : succeed<TableEntry | null>(null);
+  const travels = question.ok && chosen.ok ? travelsIn(chosen.value, question.value) : succeed(null);
+  if (!tables.ok || !question.ok || !chosen.ok || !travels.ok) {
+    const outcomes: readonly Outcome<unknown>[] = [tables, question, chosen, travels];
     return printProblems(
       io,
       outcomes.flatMap((outcome) => (outcome.ok ? [] : outcome.problems)),
     );
   }
   const { cables, settings } = tables.value;
-  const entries = chosen.value ? [chosen.value] : cables.entries;
   const text = invocation.has('json')
-    ? `${JSON.stringify(
-        entries.map((entry) => jsonEntry(entry, question.value)),
-        null,
-        2,
-      )}\n`
+    ? jsonText(chosen.value ? [chosen.value] : [...cables.entries, ...cables.guides], question.value)
     : chosen.value
-      ? oneText(chosen.value, question.value, settings.units, textColumns(io))
-      : tableText(entries, settings.units);
+      ? pageText(chosen.value, question.value, settings.units, textColumns(io))
+      : tableText(cables, settings.units);
   await write(io.stdout, text);
   return 0;
+}
+
+/** A problem where the frequency asked about does not travel in the guide asked about. */
+function travelsIn(entry: TableEntry | null, question: Question): Outcome<null> {
+  const problem = entry !== null && isGuide(entry) ? belowCutoff(entry, question.frequencyHz) : null;
+  return problem === null ? succeed(null) : fail(problem);
+}
+
+function jsonText(entries: readonly TableEntry[], question: Question): string {
+  const written = entries.map((entry) =>
+    isGuide(entry) ? jsonGuide(entry, question) : jsonCable(entry, question),
+  );
+  return `${JSON.stringify(written, null, 2)}\n`;
+}
+
+function pageText(entry: TableEntry, question: Question, units: Units, columns: number): string {
+  return isGuide(entry)
+    ? oneGuideText(entry, question, units, columns)
+    : oneCableText(entry, question, units, columns);
 }
 
 function readQuestion(invocation: Invocation): Outcome<Question> {
@@ -119,41 +104,15 @@ function readQuestion(invocation: Invocation): Outcome<Question> {
   });
 }
 
-/** Loss by the table's law, delay by the causal model; null when no frequency was asked for. */
-function runFigures(entry: CableEntry, question: Question): RunFigures | null {
-  const { frequencyHz, lengthM, temperatureC } = question;
-  if (frequencyHz === null) return null;
-  const lossDbPer100m = attenuationDbPer100m(entry, frequencyHz, temperatureC);
-  return {
-    frequencyHz,
-    lengthM,
-    temperatureC,
-    lossDbPer100m,
-    lossDb: lengthM === null ? null : (lossDbPer100m * lengthM) / PER_100_M,
-    delayNs: lengthM === null ? null : groupDelaySPerM(entry, frequencyHz, temperatureC) * lengthM * 1e9,
-    notices: [
-      outsideFittedBand(entry, frequencyHz, frequencyHz),
-      aboveHighestFrequency(entry, frequencyHz),
-    ].filter((notice) => notice !== null),
-  };
-}
-
-function groupDelaySPerM(entry: CableEntry, frequencyHz: number, temperatureC: number): number {
-  const step = frequencyHz * DELAY_STEP;
-  const { gamma } = coaxMedium(entry, Float64Array.of(frequencyHz - step, frequencyHz + step), {
-    temperatureC,
-  });
-  return (gamma.im[1]! - gamma.im[0]!) / (2 * Math.PI * 2 * step);
-}
-
-/** An entry as the JSON array has it: `z0` in Ω and the rest under the names of the cable files. */
-function jsonEntry(entry: CableEntry, question: Question): Record<string, unknown> {
+/** A cable as the JSON array has it: `z0` in Ω and the rest under the names of the cable files. */
+function jsonCable(entry: CableEntry, question: Question): Record<string, unknown> {
   const { z0Ohm, z0ToleranceOhm, ...rest } = entry;
   const run = runFigures(entry, question);
   const { id, name, ...others } = rest;
   return {
     id,
     name,
+    type: 'coax',
     z0: z0Ohm,
     z0Tolerance: z0ToleranceOhm,
     ...others,
@@ -161,31 +120,26 @@ function jsonEntry(entry: CableEntry, question: Question): Record<string, unknow
   };
 }
 
-function tableText(entries: readonly CableEntry[], units: Units): string {
+function tableText(cables: CableTable, units: Units): string {
   const head = ['id', 'Ω', 'vf', ...TABLE_FREQUENCIES_HZ.map(frequencyText), 'name'];
-  const rows = entries.map((entry) => [
-    entry.id,
-    digitsText(entry.z0Ohm, 3),
-    digitsText(entry.velocityFactor, 3),
-    ...TABLE_FREQUENCIES_HZ.map((f) => lossCell(entry, f, units)),
-    entry.name,
-  ]);
-  const widths = head.map((title, i) =>
-    Math.max(cellWidth(title), ...rows.map((row) => cellWidth(row[i] ?? ''))),
+  const lines = tableLines(
+    head,
+    cables.entries.map((entry) => [
+      entry.id,
+      digitsText(entry.z0Ohm, 3),
+      digitsText(entry.velocityFactor, 3),
+      ...TABLE_FREQUENCIES_HZ.map((f) => lossCell(entry, f, units)),
+      entry.name,
+    ]),
   );
-  const line = (row: readonly string[]): string =>
-    row
-      .map((text, i) =>
-        i === row.length - 1 ? text : fitText(text, widths[i] ?? 0, i === 0 ? 'left' : 'right'),
-      )
-      .join('  ');
   const per = units === 'ft' ? '100 ft' : '100 m';
   const foot = [
     '',
-    `Loss in dB per ${per} at 20 °C; blank above the highest frequency of use.`,
+    `Loss in dB per ${per} at 20 °C; of a cable blank above its highest frequency of use, of a guide at the`,
+    'lower and upper end of its band.',
     '"feedsonde cables ID" shows one with its sources.',
   ];
-  return `${[line(head), ...rows.map(line), ...foot].join('\n')}\n`;
+  return `${[...lines, '', ...guideTableLines(cables.guides, units), ...foot].join('\n')}\n`;
 }
 
 /** Blank above the highest frequency that the cable is meant for. */
@@ -195,15 +149,9 @@ function lossCell(entry: CableEntry, frequencyHz: number, units: Units): string 
   return fixedText((perMetre * PER_100_M) / lengthPerMetre(units), 2);
 }
 
-function oneText(entry: CableEntry, question: Question, units: Units, columns: number): string {
-  const row = (label: string, text: string, source?: string): string[] =>
-    wrapText(source === undefined ? text : `${text}  (${source})`, columns - 20).map(
-      (line, i) => `${fitText(i === 0 ? label : '', 20)}${line}`,
-    );
-  const sourceOf = (figure: keyof CableEntry['sources']): string | undefined => {
-    const found = entry.sources[figure];
-    return found && `${found.source}; ${found.status}`;
-  };
+function oneCableText(entry: CableEntry, question: Question, units: Units, columns: number): string {
+  const row = labelledRows(columns);
+  const { sources } = entry;
   const run = runFigures(entry, question);
   const lines = [
     `${entry.id}: ${entry.name}`,
@@ -211,58 +159,34 @@ function oneText(entry: CableEntry, question: Question, units: Units, columns: n
     ...(run === null ? [] : [...runLines(run, units, row), '']),
     ...(entry.aliases.length > 0 ? row('also', entry.aliases.join(', ')) : []),
     ...row('family', entry.family),
-    ...row('impedance', `${entry.z0Ohm} ±${digitsText(entry.z0ToleranceOhm, 1)} Ω`, sourceOf('z0Ohm')),
+    ...row('impedance', `${entry.z0Ohm} ±${digitsText(entry.z0ToleranceOhm, 1)} Ω`, sources.z0Ohm),
     ...row(
       'velocity factor',
       `${entry.velocityFactor} ±${digitsText(entry.velocityFactorTolerance, 1)}`,
-      sourceOf('velocityFactor'),
+      sources.velocityFactor,
     ),
-    ...row('k1, k2', `${entry.k1} dB/100 m/√MHz, ${entry.k2} dB/100 m/MHz`, sourceOf('k1')),
+    ...row('k1, k2', `${entry.k1} dB/100 m/√MHz, ${entry.k2} dB/100 m/MHz`, sources.k1),
     ...(entry.fittedBandMHz ? row('fitted over', `${entry.fittedBandMHz.join('–')} MHz`) : []),
     ...(entry.worstResidual === null
       ? []
       : row('worst residual', `${fixedText(entry.worstResidual * 100, 1)} %`)),
     ...(entry.highestFrequencyMHz === null
       ? []
-      : row('up to', frequencyText(entry.highestFrequencyMHz * 1e6), sourceOf('highestFrequencyMHz'))),
+      : row('up to', frequencyText(entry.highestFrequencyMHz * 1e6), sources.highestFrequencyMHz)),
     ...(entry.outerDiameterMm === null
       ? []
-      : row('outer diameter', `${entry.outerDiameterMm} mm`, sourceOf('outerDiameterMm'))),
+      : row('outer diameter', `${entry.outerDiameterMm} mm`, sources.outerDiameterMm)),
     ...(entry.bendRadiusOnceMm === null
       ? []
-      : row('bend once', `${entry.bendRadiusOnceMm} mm radius`, sourceOf('bendRadiusOnceMm'))),
+      : row('bend once', `${entry.bendRadiusOnceMm} mm radius`, sources.bendRadiusOnceMm)),
     ...(entry.bendRadiusRepeatedMm === null
       ? []
-      : row('bend repeatedly', `${entry.bendRadiusRepeatedMm} mm radius`, sourceOf('bendRadiusRepeatedMm'))),
+      : row('bend repeatedly', `${entry.bendRadiusRepeatedMm} mm radius`, sources.bendRadiusRepeatedMm)),
     ...(entry.note === null ? [] : row('note', entry.note)),
     ...(entry.attenuation.length > 0 ? ['', 'Published attenuation at 20 °C:'] : []),
     ...entry.attenuation.flatMap((point) =>
-      row(
-        `  ${frequencyText(point.frequencyMHz * 1e6)}`,
-        `${point.dbPer100m} dB/100 m`,
-        `${point.source}; ${point.status}`,
-      ),
+      row(`  ${frequencyText(point.frequencyMHz * 1e6)}`, `${point.dbPer100m} dB/100 m`, point),
     ),
   ];
   return `${lines.join('\n')}\n\nThe letters are explained in cables/SOURCES.md.\n`;
-}
-
-function runLines(run: RunFigures, units: Units, row: (label: string, text: string) => string[]): string[] {
-  const at = `at ${frequencyText(run.frequencyHz)}, ${temperatureText(run.temperatureC, units)}`;
-  const per = units === 'ft' ? '100 ft' : '100 m';
-  const notes = run.notices.flatMap((notice) => row('note', notice.what));
-  if (run.lossDb === null || run.lengthM === null)
-    return [
-      ...row('loss', `${fixedText(run.lossDbPer100m / lengthPerMetre(units), 2)} dB/${per} ${at}`),
-      ...notes,
-    ];
-  return [
-    ...row('loss one way', `${fixedText(run.lossDb, 2)} dB for ${lengthText(run.lengthM, units)} ${at}`),
-    ...row('return loss', `${decibelText(2 * run.lossDb)} with the far end open or shorted`),
-    ...row(
-      'delay',
-      `${fixedText(run.delayNs ?? Number.NaN, 2)} ns one way, ${fixedText(2 * (run.delayNs ?? Number.NaN), 2)} ns there and back`,
-    ),
-    ...notes,
-  ];
 }

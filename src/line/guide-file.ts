@@ -9,7 +9,7 @@ import {
   numberWithin,
   visibleText,
 } from './checked-json.ts';
-import { GUIDE_FIGURES, type Guide, type GuideEntry, USUAL_WIDTH_TOLERANCE } from './guide.ts';
+import { GUIDE_FIGURES, type Guide, type GuideEntry, guideCutoffHz, USUAL_WIDTH_TOLERANCE } from './guide.ts';
 import { distinctNames, namedText, sourcesFound, sourcesOfFigures } from './table-schema.ts';
 
 /** Widths of guides, mm: from above 1 THz down to below 200 MHz. */
@@ -50,6 +50,15 @@ const guide = v.pipe(
     const { aMm, bMm } = given;
     if (typeof aMm === 'number' && typeof bMm === 'number' && bMm > aMm)
       addIssue({ message: advice('guide-size', 'is higher than wide', 'make aMm the larger side') });
+    const low: unknown = Array.isArray(given['bandMHz']) ? given['bandMHz'][0] : null;
+    if (typeof aMm === 'number' && typeof low === 'number' && low * 1e6 <= guideCutoffHz({ aMm }))
+      addIssue({
+        message: advice(
+          'guide-band',
+          'has a band that starts at or below its cut-off',
+          'raise the start of bandMHz',
+        ),
+      });
     if (has(given, 'lossDbPer100m') || (has(given, 'bMm') && has(given, 'conductivitySPerM'))) return;
     const mend = 'give "bMm" and "conductivitySPerM", or "lossDbPer100m"';
     addIssue({ message: advice('no-loss', 'says nothing of its loss', mend) });
