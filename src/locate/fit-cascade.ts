@@ -255,7 +255,7 @@ function productsOf(columns: readonly ComplexArray[], factor: number): Float64Ar
 }
 
 /** Share of the fourth power in a stiff prior: as much as the square at four standard deviations. */
-const STIFFNESS = 1 / 16;
+export const STIFFNESS = 1 / 16;
 
 /** Adds the priors to gradient and curvature (when given) and returns their share of the cost. */
 function addPriors(

@@ -6,19 +6,18 @@
  * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
  */
 
-import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
 import {
-  ALL_FREE,
-  addLump,
-  around,
-  boundaryAt,
-  cloneModel,
-  type LineModel,
-  removeLump,
-  restoreModel,
-} from './line-model.ts';
-import { bestPlaceOf, expectBoundary } from './place-joints.ts';
-import { lumpedTypeOf, lumpReturnLossDb, PURE_TYPES, probeAcross, pureTypeOf } from './probe.ts';
+  evaluateCost,
+  type FitContext,
+  refine,
+  residualEnergy,
+  residualVariance,
+  STIFFNESS,
+} from './fit-cascade.ts';
+import { ALL_FREE, addLump, around, boundaryAt, type LineModel, removeLump } from './line-model.ts';
+import { fitLocal, type LocalEcho, type LocalPart, localEcho, matchLocal } from './local-echo.ts';
+import { expectBoundary } from './place-joints.ts';
+import { lumpedTypeOf, lumpReturnLossDb, PURE_TYPES, pureTypeOf } from './probe.ts';
 import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 
 export type JointState =
@@ -49,8 +48,9 @@ const PORT_ODDS = 1000;
 const KIND_ODDS = 2;
 
 /** Half the distance between the two faces of a connector, and its spread, m. From memory: a few centimetres. */
-const HALF_GAP_M = 0.018;
+const HALF_GAP_M = 0.02;
 const HALF_GAP_SIGMA_M = 0.01;
+const GAP_SPREAD_M = 0.007;
 
 /** Return loss of a sound joint at the top of the band, one standard deviation, dB. Common practice: 28 to 45 dB. */
 const SOUND_RETURN_LOSS_DB = 32;
@@ -122,12 +122,6 @@ function ownReturnLossDb(model: LineModel, boundary: number): number {
   return -20 * Math.log10(10 ** (-reactiveDb / 20) + step + 1e-12);
 }
 
-type Trial = {
-  readonly state: JointState;
-  readonly model: LineModel;
-  readonly cost: number;
-};
-
 /** Judges one joint, leaving the best fit in the model. */
 export function judgeJoint(
   context: FitContext,
@@ -136,115 +130,258 @@ export function judgeJoint(
   boundary: number,
 ): JointVerdict {
   evaluateCost(context, model, ALL_FREE, 1);
-  const mean = residualVariance(context);
-  const trace = traceResidual(context, model, settings);
   const atM = boundaryAt(model, boundary);
-  const variance = localVariance(trace, atM, settings.resolutionM, mean);
-  const bare = cloneModel(model);
-  dress(bare, boundary, 'bare');
-  const others = new Set(model.boundaryM.keys());
-  const expected = boundary === 0 ? null : expectBoundary(model, others, boundary - 1);
-  const reachM = Math.max(settings.resolutionM, 2.5 * (expected?.sigmaM ?? 0));
-  const mine = model.lumps.filter((lump) => lump.boundary === boundary).map((lump) => lump.id);
-  const probes = boundary === 0 ? [] : probeAcross(context, model, atM - reachM, atM + reachM, mine);
-  const settle = (state: JointState, trial: LineModel): Trial => {
-    const near = around(trial, atM - reachM, atM + reachM);
-    if (state !== 'sound') {
-      // The fault first, and what it does to everything behind it: the rest would lean over to fill its place.
-      const fault = trial.lumps.filter((lump) => lump.boundary === boundary && lump.strengthSigma === null);
-      const first = { ...near, impedances: new Set<number>(), lumps: new Set(fault.map((lump) => lump.id)) };
-      refine(context, trial, first, { variance, maxIterations: 6 });
-    }
-    refine(context, trial, near, { variance, maxIterations: 14 });
-    return { state, model: trial, cost: evaluateCost(context, trial, ALL_FREE, variance) };
-  };
-  const tryOut = (state: JointState): Trial => {
-    const place =
-      expected && bestPlaceOf(probes, state === 'sound' ? PURE_TYPES : [state], expected, variance);
-    const trial = cloneModel(bare);
-    if (place) trial.boundaryM[boundary - 1] = place.distanceM;
-    dress(trial, boundary, state, place);
-    return settle(state, trial);
-  };
-  const faults = PURE_TYPES.map(tryOut).sort((a, b) => a.cost - b.cost);
-  // A sound joint gets its chance from every place that a fault was tried at, too.
-  const sound = [
-    tryOut('sound'),
-    ...faults.map(({ model: from }) => settle('sound', withoutFault(from, boundary))),
-  ].reduce((a, b) => (b.cost < a.cost ? b : a));
-  const bad = faults.filter((trial) => isBeyondSound(trial, boundary));
-  const best = bad[0];
+  const mean = residualVariance(context);
+  const variance = localVariance(traceResidual(context, model, settings), atM, settings.resolutionM, mean);
+  const place = placeOf(context, model, settings, boundary);
+  const faults = PURE_TYPES.map((state) => bestTrial(place, state, variance))
+    .filter(keepsItsKind)
+    .sort((a, b) => a.cost - b.cost);
+  const sound = bestTrial(place, 'sound', variance, faults.map(soundStart));
+  const best = faults.filter((trial) => isBeyondSound(model, trial))[0];
   const advantage = best ? (sound.cost - best.cost) / 2 : 0;
   // A fit by the name of sound that needs more reactance than a sound joint has is none.
-  const odds = needsTooMuch(sound.model, boundary) ? Math.max(advantage, FAULT_ODDS) : advantage;
+  const odds = needsTooMuch(model, sound) ? Math.max(advantage, FAULT_ODDS) : advantage;
   if (!best || odds < (boundary === 0 ? PORT_ODDS : FAULT_ODDS)) {
-    restoreModel(model, sound.model);
-    return { boundary, state: 'sound', clear: true, odds: 0, lead: Number.POSITIVE_INFINITY };
+    dress(model, boundary, place, sound);
+    settle(context, model, settings, atM);
+    return quietJoint(boundary);
   }
-  restoreModel(model, best.model);
+  dress(model, boundary, place, best);
+  settle(context, model, settings, atM);
   const rival = faults.find((trial) => trial.state !== best.state);
   const lead = rival ? Math.abs(rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY;
   return { boundary, state: best.state, clear: lead >= KIND_ODDS, odds, lead };
 }
 
-function needsTooMuch(model: LineModel, boundary: number): boolean {
-  const strength = reactiveStrength(model, boundary);
+/** Lets the line behind a joint follow what was decided about it. */
+function settle(context: FitContext, model: LineModel, settings: SearchSettings, atM: number): void {
+  evaluateCost(context, model, ALL_FREE, 1);
+  const freedom = around(model, atM - settings.resolutionM, atM + settings.resolutionM);
+  refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 5 });
+}
+
+/** A joint by itself, and what is expected of it. */
+type JointPlace = {
+  readonly echo: LocalEcho;
+  /** Where the joint is expected on the echo's scale, m from its plane, and how sure that is. */
+  readonly expectedM: number;
+  readonly sigmaM: number;
+  readonly reachM: number;
+  /** Offsets of the two faces from the joint, m. */
+  readonly facesM: readonly [number, number];
+  readonly faceSigma: number;
+  /** Step of impedance by the description, ln, and the spread of what samples add to it. */
+  readonly step: number;
+  readonly stepSigma: number;
+};
+
+function placeOf(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  boundary: number,
+): JointPlace {
+  const atM = boundaryAt(model, boundary);
+  const others = new Set(model.boundaryM.keys());
+  const expected =
+    boundary === 0 ? { meanM: 0, sigmaM: PORT_SIGMA_M } : expectBoundary(model, others, boundary - 1);
+  const mine = model.lumps.filter((lump) => lump.boundary === boundary);
+  const echo = localEcho(context, model, atM, { lumps: mine.map((lump) => lump.id), boundary });
+  const faces = mine.filter((lump) => lump.strengthSigma !== null).map((lump) => lump.offsetMeanM);
+  const before = boundary === 0 ? model.port : model.media[boundary - 1]!;
+  const after = model.media[boundary]!;
+  const sigmas = [boundary - 1, boundary].map((section) => model.priors.impedanceSigma[section] ?? 0);
+  return {
+    echo,
+    expectedM: expected.meanM - atM,
+    sigmaM: expected.sigmaM,
+    reachM: boundary === 0 ? 0 : Math.max(settings.resolutionM, 2.5 * expected.sigmaM),
+    facesM: [faces[0] ?? -HALF_GAP_M, faces[1] ?? HALF_GAP_M],
+    faceSigma: soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!),
+    step: Math.log(after.z0Ohm / before.z0Ohm),
+    stepSigma: Math.hypot(...sigmas),
+  };
+}
+
+/** The port's own joint does not move. */
+const PORT_SIGMA_M = 1e-3;
+
+/** One hypothesis about a joint, fitted. */
+type Trial = {
+  readonly state: JointState;
+  readonly cost: number;
+  /** Offset of the joint from the plane, m. */
+  readonly offsetM: number;
+  readonly faces: readonly [number, number];
+  /** Where the faces stand, m from the joint. */
+  readonly facesM: readonly [number, number];
+  readonly fault: { readonly strength: number; readonly offsetM: number } | null;
+};
+
+/** Places tried per hypothesis. */
+const MOST_STARTS = 3;
+
+function bestTrial(
+  place: JointPlace,
+  state: JointState,
+  variance: number,
+  more: readonly Start[] = [],
+): Trial {
+  const starts = [...startsFor(place, state, variance), ...more];
+  const trials = starts.map((start) => fitState(place, state, start, variance));
+  return trials.reduce((a, b) => (b.cost < a.cost ? b : a));
+}
+
+/** A sound joint gets its chance from every place that a fault was tried at, too. */
+function soundStart({ state, offsetM, faces, fault }: Trial): Start {
+  const own = fault !== null && state !== 'sound' && lumpedTypeOf(state) === 'reactive' ? fault.strength : 0;
+  return { offsetM, resistive: 0, reactive: faces[0] + faces[1] + own };
+}
+
+type Start = { readonly offsetM: number; readonly resistive: number; readonly reactive: number };
+
+/** The likeliest offsets of a joint under one hypothesis, by what a part of its kind would explain there. */
+function startsFor(place: JointPlace, state: JointState, variance: number): Start[] {
+  const { echo, expectedM, sigmaM, reachM } = place;
+  const top = echo.beta[echo.beta.length - 1]!;
+  const stepM = Math.PI / top / 16;
+  const count = Math.ceil(reachM / stepM);
+  const scored: (Start & { readonly score: number })[] = [];
+  for (let k = -count; k <= count; k++) {
+    const offsetM = k * stepM;
+    const match = matchLocal(echo, offsetM);
+    const resistive = wantsResistive(state, match.resistive) ? match.resistiveGain : 0;
+    const reactive = wantsReactive(state, match.reactive) ? match.reactiveGain : 0;
+    const off = (offsetM - expectedM) / sigmaM;
+    scored.push({
+      offsetM,
+      resistive: match.resistive,
+      reactive: match.reactive,
+      score: (resistive + reactive) / variance - off * off,
+    });
+  }
+  const peaks = scored.filter(
+    ({ score }, i) => score >= (scored[i - 1]?.score ?? score) && score >= (scored[i + 1]?.score ?? score),
+  );
+  return peaks.sort((a, b) => b.score - a.score).slice(0, MOST_STARTS);
+}
+
+function wantsResistive(state: JointState, strength: number): boolean {
+  return (
+    state === 'sound' ||
+    (state === 'series-resistance' && strength > 0) ||
+    (state === 'shunt-leakage' && strength < 0)
+  );
+}
+
+function wantsReactive(state: JointState, strength: number): boolean {
+  return (
+    state === 'sound' ||
+    (state === 'series-inductance' && strength > 0) ||
+    (state === 'shunt-capacitance' && strength < 0)
+  );
+}
+
+/** Fits one hypothesis: the joint's place, two faces, a step, and for a fault its strength and place in the joint. */
+function fitState(place: JointPlace, state: JointState, start: Start, variance: number): Trial {
+  const { echo, expectedM, sigmaM, facesM, faceSigma, step, stepSigma } = place;
+  const faulty = state === 'sound' ? null : lumpedTypeOf(state);
+  const share = faulty === null ? Math.max(-faceSigma, Math.min(faceSigma, start.reactive / 2)) : 0;
+  const size = faulty === 'resistive' ? start.resistive : start.reactive;
+  const strengthStep = faulty === 'resistive' ? 1e-5 : 1e-5 / echo.omega[echo.omega.length - 1]!;
+  const fit = fitLocal(
+    echo,
+    {
+      start: [start.offsetM, share, share, 0, 0, ...(faulty ? [size, 0] : [])],
+      steps: [1e-6, faceSigma * 1e-4, faceSigma * 1e-4, 1e-6, 1e-6, ...(faulty ? [strengthStep, 1e-6] : [])],
+      parts: (p) => {
+        const parts: LocalPart[] = [
+          { type: 'reactive', strength: p[1]!, offsetM: p[0]! + facesM[0] - p[4]! },
+          { type: 'step', strength: step + p[3]!, offsetM: p[0]! },
+          { type: 'reactive', strength: p[2]!, offsetM: p[0]! + facesM[1] + p[4]! },
+        ];
+        if (faulty) parts.push({ type: faulty, strength: p[5]!, offsetM: p[0]! + p[6]! });
+        return parts.sort((a, b) => a.offsetM - b.offsetM);
+      },
+      priors: (p) => [
+        (p[0]! - expectedM) / sigmaM,
+        stiff(p[1]! / faceSigma),
+        stiff(p[2]! / faceSigma),
+        stiff(p[3]! / stepSigma),
+        stiff(p[4]! / GAP_SPREAD_M),
+        ...(faulty ? [p[6]! / HALF_GAP_SIGMA_M] : []),
+      ],
+    },
+    variance,
+  );
+  const [offsetM = 0, first = 0, second = 0, , widerM = 0, strength = 0, faultOffsetM = 0] = fit.parameters;
+  return {
+    state,
+    cost: fit.cost,
+    offsetM,
+    faces: [first, second],
+    facesM: [facesM[0] - widerM, facesM[1] + widerM],
+    fault: faulty ? { strength, offsetM: faultOffsetM } : null,
+  };
+}
+
+/** Row of a prior that stiffens beyond two standard deviations, as the cascade's own. */
+function stiff(u: number): number {
+  return u * Math.sqrt(1 + STIFFNESS * u * u);
+}
+
+/** Whether a fitted fault is still of the kind it began as; the fit may have turned it into its dual. */
+function keepsItsKind({ state, fault }: Trial): boolean {
+  return state !== 'sound' && fault !== null && pureTypeOf(lumpedTypeOf(state), fault.strength) === state;
+}
+
+/** Whether a fitted fault is larger than what a sound joint may show. */
+function isBeyondSound(model: LineModel, { state, fault, faces }: Trial): boolean {
+  if (state === 'sound' || fault === null) return false;
+  const type = lumpedTypeOf(state);
+  if (type === 'resistive') return Math.abs(fault.strength) >= MIMIC_STRENGTH;
+  const strength = fault.strength + faces[0] + faces[1];
+  if (pureTypeOf(type, strength) !== state) return false;
+  return lumpReturnLossDb(model.frequencyHz, { type, strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
+}
+
+function needsTooMuch(model: LineModel, { faces }: Trial): boolean {
+  const strength = faces[0] + faces[1];
   return lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
 }
 
-/** A copy of the model in which a joint is sound, its faces taking over what they may of the fault's reactance. */
-function withoutFault(model: LineModel, boundary: number): LineModel {
-  const copy = cloneModel(model);
-  dress(copy, boundary, 'sound', { resistive: 0, reactive: reactiveStrength(model, boundary) });
-  return copy;
-}
-
-/** Whether a fitted fault is of its own kind and larger than what a sound joint may show. */
-function isBeyondSound({ model, state }: Trial, boundary: number): boolean {
-  if (state === 'sound') return false;
-  const type = lumpedTypeOf(state);
-  const strength = (type === 'resistive' ? resistiveStrength : reactiveStrength)(model, boundary);
-  if (strength === 0 || pureTypeOf(type, strength) !== state) return false;
-  return type === 'resistive'
-    ? Math.abs(strength) >= MIMIC_STRENGTH
-    : lumpReturnLossDb(model.frequencyHz, { type, strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
-}
-
-/**
- * Gives a joint the lumps of one hypothesis: faces that lie within what is sound, and the fault itself.
- *
- * @param start Strengths that the sweep suggests; a fault takes them, for a fit would hand it only what the faces leave.
- */
-function dress(
-  model: LineModel,
-  boundary: number,
-  state: JointState | 'bare',
-  start: { readonly resistive: number; readonly reactive: number } | null = null,
-): void {
+/** Puts a fitted hypothesis into the model. */
+function dress(model: LineModel, boundary: number, place: JointPlace, trial: Trial): void {
   const mine = model.lumps.filter((lump) => lump.boundary === boundary);
-  const sigma = soundStrength(model.frequencyHz[model.frequencyHz.length - 1]!);
-  const share = state === 'sound' ? (start?.reactive ?? 0) / 2 : 0;
-  for (const lump of mine) {
-    if (lump.strengthSigma === null) removeLump(model, lump.id);
-    else {
-      lump.strengthSigma = sigma;
-      lump.strength = Math.max(-sigma, Math.min(sigma, share));
-    }
+  for (const lump of mine) if (lump.strengthSigma === null) removeLump(model, lump.id);
+  const faces = mine.filter((lump) => lump.strengthSigma !== null);
+  faces.forEach((face, i) => {
+    face.strengthSigma = place.faceSigma;
+    face.strength = trial.faces[i as 0 | 1];
+    face.offsetM = trial.facesM[i as 0 | 1];
+  });
+  if (boundary > 0) {
+    const low = boundaryAt(model, boundary - 1) + LEAST_SECTION_M;
+    const high =
+      (boundary < model.boundaryM.length ? boundaryAt(model, boundary + 1) : Infinity) - LEAST_SECTION_M;
+    model.boundaryM[boundary - 1] = Math.max(low, Math.min(high, place.echo.planeM + trial.offsetM));
   }
-  if (state === 'bare' || state === 'sound') return;
-  const type = lumpedTypeOf(state);
-  const sign = state === 'shunt-leakage' || state === 'shunt-capacitance' ? -1 : 1;
+  if (trial.state === 'sound' || trial.fault === null) return;
   addLump(model, {
-    type,
-    strength: start?.[type] || sign * (type === 'resistive' ? 0.01 : 0.1 * sigma),
+    type: lumpedTypeOf(trial.state),
+    strength: trial.fault.strength,
     strengthSigma: null,
     section: boundary === 0 ? 0 : boundary - 1,
     boundary,
-    offsetM: 0,
+    offsetM: trial.fault.offsetM,
     offsetSigmaM: HALF_GAP_SIGMA_M,
     offsetMeanM: 0,
   });
 }
+
+/** A joint stays this far from its neighbours, m. */
+const LEAST_SECTION_M = 0.1;
 
 /** Net resistive strength of a joint. */
 export function resistiveStrength(model: LineModel, boundary: number): number {

@@ -1,0 +1,273 @@
+/**
+ * One place of the line by itself: what comes back from around it, with everything else explained and the way there and
+ * back undone.
+ *
+ * The sweep is carried to the place, where an echo turns slowly with frequency, and gathered into blocks; some hundred
+ * numbers then say all that the sweep knows of the place, and hypotheses about it can be fitted in no time. What a
+ * discontinuity does to echoes behind it is left out: the line behind is free to follow, so it tells nothing more.
+ */
+import { complexZeros } from '../numerics/complex.ts';
+import { fitLeastSquares, type LeastSquaresFit } from '../numerics/least-squares.ts';
+import { type FitContext, linearise } from './fit-cascade.ts';
+import { type LineModel, NOTHING_FREE } from './line-model.ts';
+import { putBack } from './probe.ts';
+
+/** What the sweep shows at a place. */
+export type LocalEcho = {
+  /** Model distance of the plane that phases refer to, m. */
+  readonly planeM: number;
+  readonly omega: Float64Array;
+  /** Phase constant of the line there, rad/m. */
+  readonly beta: Float64Array;
+  /** Reflection of the place, by block. */
+  readonly re: Float64Array;
+  readonly im: Float64Array;
+  /** Σ|S|² of each block: what an error of the reflection there costs in energy of the sweep. */
+  readonly weight: Float64Array;
+};
+
+/** Blocks that the sweep is gathered into: an echo two resolutions off the plane still turns little in one. */
+const BLOCKS = 96;
+
+/**
+ * Gathers what comes back from around a place.
+ *
+ * @param atM Plane that phases refer to.
+ * @param own Stages whose echoes belong to the place, in order from the port; empty when nothing stands there yet.
+ */
+export function localEcho(
+  context: FitContext,
+  model: LineModel,
+  atM: number,
+  own: { readonly lumps: readonly number[]; readonly boundary: number | null },
+): LocalEcho {
+  const { stages, stageOfLump, stageOfBoundary } = linearise(context, model, NOTHING_FREE, 1).translation;
+  const mine = own.lumps.map((id) => stageOfLump.get(id)!);
+  if (own.boundary !== null && stageOfBoundary[own.boundary] !== undefined)
+    mine.push(stageOfBoundary[own.boundary]!);
+  for (const stage of mine) putBack(context, stage);
+  // The stretch before the first of them (or the one that holds the plane) leads there.
+  let leadM = 0;
+  let lead = -1;
+  let startM = 0;
+  const firstOwn = mine.length > 0 ? Math.min(...mine) : Number.POSITIVE_INFINITY;
+  let passedM = 0;
+  for (let k = 0; k < stages.length && k < firstOwn; k++) {
+    const stage = stages[k]!;
+    if (stage.type !== 'line') continue;
+    if (lead >= 0 && passedM >= atM && firstOwn === Number.POSITIVE_INFINITY) break;
+    lead = k;
+    leadM = passedM;
+    passedM += stage.lengthM;
+  }
+  startM = leadM;
+  const stage = stages[Math.max(lead, 0)]!;
+  const medium = stage.type === 'line' ? stage.medium : model.media[0]!;
+  const through = context.cascade.sensitivity(Math.max(lead, 0));
+  return gather(context, medium, through, atM - startM, atM, model);
+}
+
+function gather(
+  context: FitContext,
+  medium: LineModel['media'][number],
+  through: { readonly re: Float64Array; readonly im: Float64Array },
+  offsetM: number,
+  planeM: number,
+  model: LineModel,
+): LocalEcho {
+  const { residual, weight, frequencyHz } = context;
+  const n = frequencyHz.length;
+  const blocks = Math.min(BLOCKS, n);
+  const out = {
+    planeM,
+    omega: new Float64Array(blocks),
+    beta: new Float64Array(blocks),
+    re: new Float64Array(blocks),
+    im: new Float64Array(blocks),
+    weight: new Float64Array(blocks),
+  };
+  const { gamma, gammaPerConductorLoss: c, gammaPerDielectricLoss: d } = medium;
+  for (let i = 0; i < n; i++) {
+    if (weight[i] === 0) continue;
+    const alpha = gamma.re[i]! + model.conductor * c.re[i]! + model.dielectric * d.re[i]!;
+    const beta = gamma.im[i]! + model.conductor * c.im[i]! + model.dielectric * d.im[i]!;
+    const shrink = Math.exp(-2 * alpha * offsetM);
+    const turnRe = shrink * Math.cos(2 * beta * offsetM);
+    const turnIm = -shrink * Math.sin(2 * beta * offsetM);
+    const sRe = through.re[i]! * turnRe - through.im[i]! * turnIm;
+    const sIm = through.re[i]! * turnIm + through.im[i]! * turnRe;
+    const power = sRe * sRe + sIm * sIm;
+    const b = Math.floor((i * blocks) / n);
+    out.re[b] = out.re[b]! + sRe * residual.re[i]! + sIm * residual.im[i]!;
+    out.im[b] = out.im[b]! + sRe * residual.im[i]! - sIm * residual.re[i]!;
+    out.weight[b] = out.weight[b]! + power;
+    out.omega[b] = out.omega[b]! + power * 2 * Math.PI * frequencyHz[i]!;
+    out.beta[b] = out.beta[b]! + power * beta;
+  }
+  for (let b = 0; b < blocks; b++) {
+    const w = out.weight[b]!;
+    if (w === 0) continue;
+    out.re[b] = out.re[b]! / w;
+    out.im[b] = out.im[b]! / w;
+    out.omega[b] = out.omega[b]! / w;
+    out.beta[b] = out.beta[b]! / w;
+  }
+  return out;
+}
+
+/** One part of a hypothesis about a place. */
+export type LocalPart =
+  /** Strength as the lumps of the cascade take it. @see writeLumped */
+  | { readonly type: 'resistive' | 'reactive'; readonly strength: number; readonly offsetM: number }
+  /** Step of impedance, ln(Z behind / Z before). */
+  | { readonly type: 'step'; readonly strength: number; readonly offsetM: number };
+
+/**
+ * Reflection of parts that stand close together, seen from the plane, with all bounces between them.
+ *
+ * @param parts In order of offset. @param out Overwritten, one value per block.
+ */
+export function writeLocalReflection(
+  echo: Pick<LocalEcho, 'omega' | 'beta'>,
+  parts: readonly LocalPart[],
+  out: { readonly re: Float64Array; readonly im: Float64Array },
+): void {
+  const { omega, beta } = echo;
+  for (let b = 0; b < omega.length; b++) {
+    let re = 0;
+    let im = 0;
+    let atM = parts.length > 0 ? parts[parts.length - 1]!.offsetM : 0;
+    for (let k = parts.length - 1; k >= 0; k--) {
+      const part = parts[k]!;
+      if (part.offsetM !== atM) {
+        const angle = -2 * beta[b]! * (atM - part.offsetM);
+        const turnRe = Math.cos(angle);
+        const turnIm = Math.sin(angle);
+        const next = re * turnRe - im * turnIm;
+        im = re * turnIm + im * turnRe;
+        re = next;
+        atM = part.offsetM;
+      }
+      // S11 of the part, its S21·S12, and S22 = mirror·S11.
+      const size = Math.abs(part.strength);
+      let sRe: number;
+      let sIm: number;
+      let tRe: number;
+      let tIm: number;
+      let mirror = 1;
+      if (part.type === 'step') {
+        sRe = Math.tanh(part.strength / 2);
+        sIm = 0;
+        tRe = 1 - sRe * sRe;
+        tIm = 0;
+        mirror = -1;
+      } else {
+        const sign = part.strength >= 0 ? 1 : -1;
+        if (part.type === 'resistive') {
+          const w = size / (2 + size);
+          sRe = sign * w;
+          sIm = 0;
+          tRe = (1 - w) * (1 - w);
+          tIm = 0;
+        } else {
+          const x = omega[b]! * size;
+          const inverse = 1 / (4 + x * x);
+          const wRe = x * x * inverse;
+          const wIm = 2 * x * inverse;
+          sRe = sign * wRe;
+          sIm = sign * wIm;
+          tRe = (1 - wRe) * (1 - wRe) - wIm * wIm;
+          tIm = -2 * (1 - wRe) * wIm;
+        }
+      }
+      if (re === 0 && im === 0) {
+        re = sRe;
+        im = sIm;
+        continue;
+      }
+      const dRe = 1 - mirror * (sRe * re - sIm * im);
+      const dIm = -mirror * (sRe * im + sIm * re);
+      const inverse = 1 / (dRe * dRe + dIm * dIm);
+      const qRe = (re * dRe + im * dIm) * inverse;
+      const qIm = (im * dRe - re * dIm) * inverse;
+      re = sRe + tRe * qRe - tIm * qIm;
+      im = sIm + tRe * qIm + tIm * qRe;
+    }
+    const angle = -2 * beta[b]! * atM;
+    const turnRe = Math.cos(angle);
+    const turnIm = Math.sin(angle);
+    out.re[b] = re * turnRe - im * turnIm;
+    out.im[b] = re * turnIm + im * turnRe;
+  }
+}
+
+/** Matched sums of a resistive and a reactive part at one offset. */
+export type LocalMatch = {
+  readonly resistive: number;
+  readonly reactive: number;
+  /** Fall of the energy of the sweep's residual by each. */
+  readonly resistiveGain: number;
+  readonly reactiveGain: number;
+};
+
+/** What a small resistive and a small reactive part at an offset would explain. */
+export function matchLocal(echo: LocalEcho, offsetM: number): LocalMatch {
+  let a = 0;
+  let aa = 0;
+  let x = 0;
+  let xx = 0;
+  for (let b = 0; b < echo.omega.length; b++) {
+    const angle = 2 * echo.beta[b]! * offsetM;
+    const cos = Math.cos(angle);
+    const sin = Math.sin(angle);
+    const w = echo.weight[b]!;
+    const re = echo.re[b]! * cos - echo.im[b]! * sin;
+    const im = echo.re[b]! * sin + echo.im[b]! * cos;
+    const half = echo.omega[b]! / 2;
+    a += (w * re) / 2;
+    aa += w / 4;
+    x += w * half * im;
+    xx += w * half * half;
+  }
+  const resistive = aa > 0 ? a / aa : 0;
+  const reactive = xx > 0 ? x / xx : 0;
+  return {
+    resistive,
+    reactive,
+    resistiveGain: resistive * resistive * aa,
+    reactiveGain: reactive * reactive * xx,
+  };
+}
+
+/** A hypothesis about a place: parts as a function of a few parameters, and what is expected of these. */
+export type LocalHypothesis = {
+  readonly start: readonly number[];
+  /** Differences for the derivatives, in each parameter's own unit. */
+  readonly steps: readonly number[];
+  /** Parts in order of offset. */
+  readonly parts: (parameters: Float64Array) => LocalPart[];
+  /** Rows whose squares are the prior's share of −2 ln likelihood. */
+  readonly priors: (parameters: Float64Array) => number[];
+};
+
+/**
+ * Fits a hypothesis to what the sweep shows at a place.
+ *
+ * @param variance Of the sweep's residual per real component.
+ * @returns Cost in −2 ln(likelihood × prior), up to a constant that all hypotheses about the same echo share.
+ */
+export function fitLocal(echo: LocalEcho, hypothesis: LocalHypothesis, variance: number): LeastSquaresFit {
+  const blocks = echo.omega.length;
+  const scale = echo.weight.map((w) => Math.sqrt(w / variance));
+  const modelled = complexZeros(blocks);
+  const priorCount = hypothesis.priors(Float64Array.from(hypothesis.start)).length;
+  const write = (parameters: Float64Array, out: Float64Array): void => {
+    writeLocalReflection(echo, hypothesis.parts(parameters), modelled);
+    for (let b = 0; b < blocks; b++) {
+      out[2 * b] = scale[b]! * (echo.re[b]! - modelled.re[b]!);
+      out[2 * b + 1] = scale[b]! * (echo.im[b]! - modelled.im[b]!);
+    }
+    out.set(hypothesis.priors(parameters), 2 * blocks);
+  };
+  return fitLeastSquares(write, 2 * blocks + priorCount, hypothesis.start, { steps: hypothesis.steps });
+}
