@@ -15,7 +15,15 @@ import {
   STIFFNESS,
 } from './fit-cascade.ts';
 import { ALL_FREE, addLump, around, boundaryAt, type LineModel, removeLump } from './line-model.ts';
-import { fitLocal, type LocalEcho, type LocalPart, localEcho, matchLocal } from './local-echo.ts';
+import {
+  fitLocal,
+  fitTables,
+  type LocalEcho,
+  type LocalPart,
+  localEcho,
+  matchTables,
+  type TableColumn,
+} from './local-echo.ts';
 import { expectBoundary } from './place-joints.ts';
 import { lumpedTypeOf, lumpReturnLossDb, PURE_TYPES, pureTypeOf } from './probe.ts';
 import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
@@ -49,7 +57,8 @@ const KIND_ODDS = 2;
 
 /** Half the distance between the two faces of a connector, and its spread, m. From memory: a few centimetres. */
 const HALF_GAP_M = 0.02;
-const HALF_GAP_SIGMA_M = 0.01;
+/** Where in a joint its fault sits, about the middle: either half. */
+const FAULT_SPREAD_M = 0.02;
 const GAP_SPREAD_M = 0.007;
 
 /** Return loss of a sound joint at the top of the band, one standard deviation, dB. Common practice: 28 to 45 dB. */
@@ -134,10 +143,10 @@ export function judgeJoint(
   const mean = residualVariance(context);
   const variance = localVariance(traceResidual(context, model, settings), atM, settings.resolutionM, mean);
   const place = placeOf(context, model, settings, boundary);
-  const faults = PURE_TYPES.map((state) => bestTrial(place, state, variance))
+  const faults = PURE_TYPES.flatMap((state) => bestTrial(place, state, variance) ?? [])
     .filter(keepsItsKind)
     .sort((a, b) => a.cost - b.cost);
-  const sound = bestTrial(place, 'sound', variance, faults.map(soundStart));
+  const sound = bestTrial(place, 'sound', variance, [BARE, ...faults.map(soundStart)])!;
   const best = faults.filter((trial) => isBeyondSound(model, trial))[0];
   const advantage = best ? (sound.cost - best.cost) / 2 : 0;
   // A fit by the name of sound that needs more reactance than a sound joint has is none.
@@ -216,6 +225,8 @@ type Trial = {
   readonly faces: readonly [number, number];
   /** Where the faces stand, m from the joint. */
   readonly facesM: readonly [number, number];
+  /** What samples add to the described step, ln. */
+  readonly step: number;
   readonly fault: { readonly strength: number; readonly offsetM: number } | null;
 };
 
@@ -227,74 +238,100 @@ function bestTrial(
   state: JointState,
   variance: number,
   more: readonly Start[] = [],
-): Trial {
+): Trial | null {
   const starts = [...startsFor(place, state, variance), ...more];
   const trials = starts.map((start) => fitState(place, state, start, variance));
-  return trials.reduce((a, b) => (b.cost < a.cost ? b : a));
+  return trials.reduce<Trial | null>((a, b) => (a === null || b.cost < a.cost ? b : a), null);
 }
 
 /** A sound joint gets its chance from every place that a fault was tried at, too. */
-function soundStart({ state, offsetM, faces, fault }: Trial): Start {
+function soundStart({ state, offsetM, faces, step, fault }: Trial): Start {
   const own = fault !== null && state !== 'sound' && lumpedTypeOf(state) === 'reactive' ? fault.strength : 0;
-  return { offsetM, resistive: 0, reactive: faces[0] + faces[1] + own };
+  const share = Math.max(-Math.abs(own), Math.min(Math.abs(own), own / 2));
+  return { offsetM, faces: [faces[0] + share, faces[1] + share], step, strength: 0, faultOffsetM: 0 };
 }
 
-type Start = { readonly offsetM: number; readonly resistive: number; readonly reactive: number };
+/** Where a fit begins: everything but the spread of the faces. */
+type Start = {
+  readonly offsetM: number;
+  readonly faces: readonly [number, number];
+  readonly step: number;
+  readonly strength: number;
+  readonly faultOffsetM: number;
+};
 
-/** The likeliest offsets of a joint under one hypothesis, by what a part of its kind would explain there. */
+/** A joint that shows nothing. */
+const BARE: Start = { offsetM: 0, faces: [0, 0], step: 0, strength: 0, faultOffsetM: 0 };
+
+/** Grid of the first look, as a share of half a wavelength at the top of the band. */
+const GRID_SHARE = 1 / 16;
+
+/**
+ * The likeliest starts under one hypothesis: at every place of a grid the faces, the step and the fault are fitted
+ * together by linear least squares, which is exact for small reflections; the best few places are the starts.
+ */
 function startsFor(place: JointPlace, state: JointState, variance: number): Start[] {
-  const { echo, expectedM, sigmaM, reachM } = place;
-  const top = echo.beta[echo.beta.length - 1]!;
-  const stepM = Math.PI / top / 16;
-  const count = Math.ceil(reachM / stepM);
-  const scored: (Start & { readonly score: number })[] = [];
+  const { echo, expectedM, sigmaM, reachM, facesM, faceSigma, step, stepSigma } = place;
+  const gridM = (Math.PI / echo.beta[echo.beta.length - 1]!) * GRID_SHARE;
+  const count = Math.ceil(reachM / gridM);
+  const toGrid = (m: number): number => Math.round(m / gridM);
+  const faces = [toGrid(facesM[0]), toGrid(facesM[1])] as const;
+  const margin = Math.max(Math.abs(faces[0]), Math.abs(faces[1]), toGrid(HALF_GAP_M)) + 1;
+  const tables = matchTables(echo, step, gridM, count + margin, 2 * margin);
+  const faulty = state === 'sound' ? null : lumpedTypeOf(state);
+  const faultOffsets = faulty ? [...new Set([faces[0], 0, faces[1]])] : [0];
+  const wanted = state === 'shunt-leakage' || state === 'shunt-capacitance' ? -1 : 1;
+  const found: (Start & { readonly score: number })[] = [];
   for (let k = -count; k <= count; k++) {
-    const offsetM = k * stepM;
-    const match = matchLocal(echo, offsetM);
-    const resistive = wantsResistive(state, match.resistive) ? match.resistiveGain : 0;
-    const reactive = wantsReactive(state, match.reactive) ? match.reactiveGain : 0;
-    const off = (offsetM - expectedM) / sigmaM;
-    scored.push({
-      offsetM,
-      resistive: match.resistive,
-      reactive: match.reactive,
-      score: (resistive + reactive) / variance - off * off,
-    });
+    const off = (k * gridM - expectedM) / sigmaM;
+    let best: (Start & { readonly score: number }) | null = null;
+    for (const faultOffset of faultOffsets) {
+      const columns: TableColumn[] = [
+        { reactive: true, at: k + faces[0], sigma: faceSigma },
+        { reactive: true, at: k + faces[1], sigma: faceSigma },
+        { reactive: false, at: k, sigma: stepSigma },
+      ];
+      if (faulty)
+        columns.push({
+          reactive: faulty === 'reactive',
+          at: k + faultOffset,
+          sigma: Number.POSITIVE_INFINITY,
+        });
+      const fit = fitTables(tables, columns, variance);
+      if (fit === null) continue;
+      const [first = 0, second = 0, samples = 0, strength = 0] = fit.strengths;
+      if (faulty && strength * wanted <= 0) continue;
+      const score = fit.gain - off * off;
+      if (best !== null && best.score >= score) continue;
+      best = {
+        offsetM: k * gridM,
+        faces: [first, second],
+        step: samples,
+        strength,
+        faultOffsetM: faultOffset * gridM,
+        score,
+      };
+    }
+    if (best !== null) found.push(best);
   }
-  const peaks = scored.filter(
-    ({ score }, i) => score >= (scored[i - 1]?.score ?? score) && score >= (scored[i + 1]?.score ?? score),
+  const peaks = found.filter(
+    ({ score }, i) => score >= (found[i - 1]?.score ?? score) && score >= (found[i + 1]?.score ?? score),
   );
   return peaks.sort((a, b) => b.score - a.score).slice(0, MOST_STARTS);
-}
-
-function wantsResistive(state: JointState, strength: number): boolean {
-  return (
-    state === 'sound' ||
-    (state === 'series-resistance' && strength > 0) ||
-    (state === 'shunt-leakage' && strength < 0)
-  );
-}
-
-function wantsReactive(state: JointState, strength: number): boolean {
-  return (
-    state === 'sound' ||
-    (state === 'series-inductance' && strength > 0) ||
-    (state === 'shunt-capacitance' && strength < 0)
-  );
 }
 
 /** Fits one hypothesis: the joint's place, two faces, a step, and for a fault its strength and place in the joint. */
 function fitState(place: JointPlace, state: JointState, start: Start, variance: number): Trial {
   const { echo, expectedM, sigmaM, facesM, faceSigma, step, stepSigma } = place;
   const faulty = state === 'sound' ? null : lumpedTypeOf(state);
-  const share = faulty === null ? Math.max(-faceSigma, Math.min(faceSigma, start.reactive / 2)) : 0;
-  const size = faulty === 'resistive' ? start.resistive : start.reactive;
   const strengthStep = faulty === 'resistive' ? 1e-5 : 1e-5 / echo.omega[echo.omega.length - 1]!;
+  const begin = [start.offsetM, start.faces[0], start.faces[1], start.step, 0];
+  const steps = [1e-6, faceSigma * 1e-4, faceSigma * 1e-4, 1e-6, 1e-6];
   const fit = fitLocal(
     echo,
     {
-      start: [start.offsetM, share, share, 0, 0, ...(faulty ? [size, 0] : [])],
-      steps: [1e-6, faceSigma * 1e-4, faceSigma * 1e-4, 1e-6, 1e-6, ...(faulty ? [strengthStep, 1e-6] : [])],
+      start: faulty ? [...begin, start.strength, start.faultOffsetM] : begin,
+      steps: faulty ? [...steps, strengthStep, 1e-6] : steps,
       parts: (p) => {
         const parts: LocalPart[] = [
           { type: 'reactive', strength: p[1]!, offsetM: p[0]! + facesM[0] - p[4]! },
@@ -310,18 +347,20 @@ function fitState(place: JointPlace, state: JointState, start: Start, variance: 
         stiff(p[2]! / faceSigma),
         stiff(p[3]! / stepSigma),
         stiff(p[4]! / GAP_SPREAD_M),
-        ...(faulty ? [p[6]! / HALF_GAP_SIGMA_M] : []),
+        ...(faulty ? [p[6]! / FAULT_SPREAD_M] : []),
       ],
     },
     variance,
   );
-  const [offsetM = 0, first = 0, second = 0, , widerM = 0, strength = 0, faultOffsetM = 0] = fit.parameters;
+  const [offsetM = 0, first = 0, second = 0, samples = 0, widerM = 0, strength = 0, faultOffsetM = 0] =
+    fit.parameters;
   return {
     state,
     cost: fit.cost,
     offsetM,
     faces: [first, second],
     facesM: [facesM[0] - widerM, facesM[1] + widerM],
+    step: samples,
     fault: faulty ? { strength, offsetM: faultOffsetM } : null,
   };
 }
@@ -375,7 +414,7 @@ function dress(model: LineModel, boundary: number, place: JointPlace, trial: Tri
     section: boundary === 0 ? 0 : boundary - 1,
     boundary,
     offsetM: trial.fault.offsetM,
-    offsetSigmaM: HALF_GAP_SIGMA_M,
+    offsetSigmaM: FAULT_SPREAD_M,
     offsetMeanM: 0,
   });
 }

@@ -8,6 +8,7 @@
  */
 import { complexZeros } from '../numerics/complex.ts';
 import { fitLeastSquares, type LeastSquaresFit } from '../numerics/least-squares.ts';
+import { solveSymmetric } from '../numerics/linear-solve.ts';
 import { type FitContext, linearise } from './fit-cascade.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
 import { putBack } from './probe.ts';
@@ -201,42 +202,119 @@ export function writeLocalReflection(
   }
 }
 
-/** Matched sums of a resistive and a reactive part at one offset. */
-export type LocalMatch = {
-  readonly resistive: number;
-  readonly reactive: number;
-  /** Fall of the energy of the sweep's residual by each. */
-  readonly resistiveGain: number;
-  readonly reactiveGain: number;
+/**
+ * Everything that linear fits of small parts on a grid of offsets need: matches of the echo with a resistive and a
+ * reactive part at each offset, and the products of two such parts by how far apart they stand.
+ */
+export type MatchTables = {
+  readonly resistive: Float64Array;
+  readonly reactive: Float64Array;
+  /** Index of offset 0 in the matches. */
+  readonly centre: number;
+  readonly resistiveResistive: Float64Array;
+  readonly reactiveReactive: Float64Array;
+  /** Resistive part, and a reactive one behind it. */
+  readonly resistiveReactive: Float64Array;
 };
 
-/** What a small resistive and a small reactive part at an offset would explain. */
-export function matchLocal(echo: LocalEcho, offsetM: number): LocalMatch {
-  let a = 0;
-  let aa = 0;
-  let x = 0;
-  let xx = 0;
-  for (let b = 0; b < echo.omega.length; b++) {
-    const angle = 2 * echo.beta[b]! * offsetM;
-    const cos = Math.cos(angle);
-    const sin = Math.sin(angle);
-    const w = echo.weight[b]!;
-    const re = echo.re[b]! * cos - echo.im[b]! * sin;
-    const im = echo.re[b]! * sin + echo.im[b]! * cos;
-    const half = echo.omega[b]! / 2;
-    a += (w * re) / 2;
-    aa += w / 4;
-    x += w * half * im;
-    xx += w * half * half;
-  }
-  const resistive = aa > 0 ? a / aa : 0;
-  const reactive = xx > 0 ? x / xx : 0;
-  return {
-    resistive,
-    reactive,
-    resistiveGain: resistive * resistive * aa,
-    reactiveGain: reactive * reactive * xx,
+/**
+ * @param step Described step at the plane, ln; taken off the echo first.
+ * @param gridM Distance of neighbouring offsets. @param reach Offsets on each side. @param apart Farthest two parts.
+ */
+export function matchTables(
+  echo: LocalEcho,
+  step: number,
+  gridM: number,
+  reach: number,
+  apart: number,
+): MatchTables {
+  const size = 2 * reach + 1;
+  const tables = {
+    resistive: new Float64Array(size),
+    reactive: new Float64Array(size),
+    centre: reach,
+    resistiveResistive: new Float64Array(apart + 1),
+    reactiveReactive: new Float64Array(apart + 1),
+    resistiveReactive: new Float64Array(apart + 1),
   };
+  const known = Math.tanh(step / 2);
+  for (let b = 0; b < echo.omega.length; b++) {
+    const w = echo.weight[b]!;
+    const omega = echo.omega[b]!;
+    const angle = 2 * echo.beta[b]! * gridM;
+    const turnRe = Math.cos(angle);
+    const turnIm = Math.sin(angle);
+    const startRe = Math.cos(-reach * angle);
+    const startIm = Math.sin(-reach * angle);
+    // (q − known)·e^{2jβo}: the known step stands at the plane.
+    const qRe = echo.re[b]! - known;
+    const qIm = echo.im[b]!;
+    let re = qRe * startRe - qIm * startIm;
+    let im = qRe * startIm + qIm * startRe;
+    for (let k = 0; k < size; k++) {
+      tables.resistive[k] = tables.resistive[k]! + 0.5 * w * re;
+      tables.reactive[k] = tables.reactive[k]! + 0.5 * w * omega * im;
+      const next = re * turnRe - im * turnIm;
+      im = re * turnIm + im * turnRe;
+      re = next;
+    }
+    let cos = 1;
+    let sin = 0;
+    for (let d = 0; d <= apart; d++) {
+      tables.resistiveResistive[d] = tables.resistiveResistive[d]! + 0.25 * w * cos;
+      tables.reactiveReactive[d] = tables.reactiveReactive[d]! + 0.25 * w * omega * omega * cos;
+      tables.resistiveReactive[d] = tables.resistiveReactive[d]! + 0.25 * w * omega * sin;
+      const next = cos * turnRe - sin * turnIm;
+      sin = cos * turnIm + sin * turnRe;
+      cos = next;
+    }
+  }
+  return tables;
+}
+
+/** One small part of a linear fit: what it is, where on the grid, and the spread of its prior. */
+export type TableColumn = { readonly reactive: boolean; readonly at: number; readonly sigma: number };
+
+/** Strengths of several small parts fitted together, and what they explain in −2 ln likelihood, priors counted. */
+export function fitTables(
+  tables: MatchTables,
+  columns: readonly TableColumn[],
+  variance: number,
+): { readonly strengths: Float64Array; readonly gain: number } | null {
+  const p = columns.length;
+  const normal = new Float64Array(p * p);
+  const right = new Float64Array(p);
+  // Scaled to like sizes: reactive strengths are some 1e-12 s, resistive ones 0.01.
+  const scale = columns.map((column) =>
+    Math.sqrt((column.reactive ? tables.reactiveReactive : tables.resistiveResistive)[0]!),
+  );
+  for (let a = 0; a < p; a++) {
+    const one = columns[a]!;
+    const match = one.reactive ? tables.reactive : tables.resistive;
+    right[a] = match[tables.centre + one.at]! / (scale[a]! * variance);
+    for (let b = 0; b <= a; b++) {
+      const value = productOf(tables, one, columns[b]!) / (scale[a]! * scale[b]! * variance);
+      normal[a * p + b] = value;
+      normal[b * p + a] = value;
+    }
+    normal[a * p + a] = normal[a * p + a]! * (1 + 1e-9) + 1 / (one.sigma * scale[a]!) ** 2;
+  }
+  const solved = solveSymmetric(normal, right.slice());
+  if (solved === null) return null;
+  let gain = 0;
+  for (let a = 0; a < p; a++) {
+    gain += solved[a]! * right[a]!;
+    solved[a] = solved[a]! / scale[a]!;
+  }
+  return { strengths: solved, gain };
+}
+
+function productOf(tables: MatchTables, a: TableColumn, b: TableColumn): number {
+  const apart = Math.abs(a.at - b.at);
+  if (a.reactive === b.reactive)
+    return (a.reactive ? tables.reactiveReactive : tables.resistiveResistive)[apart]!;
+  const [resistive, reactive] = a.reactive ? [b, a] : [a, b];
+  return (reactive.at >= resistive.at ? 1 : -1) * tables.resistiveReactive[apart]!;
 }
 
 /** A hypothesis about a place: parts as a function of a few parameters, and what is expected of these. */
