@@ -22,6 +22,7 @@ import {
   type LocalPart,
   localEcho,
   matchTables,
+  reflectionDb,
   type TableColumn,
 } from './local-echo.ts';
 import { expectBoundary } from './place-joints.ts';
@@ -147,10 +148,10 @@ export function judgeJoint(
     .filter(keepsItsKind)
     .sort((a, b) => a.cost - b.cost);
   const sound = bestTrial(place, 'sound', variance, [BARE, ...faults.map(soundStart)])!;
-  const best = faults.filter((trial) => isBeyondSound(model, trial))[0];
+  const best = faults.find(isBeyondSound);
   const advantage = best ? (sound.cost - best.cost) / 2 : 0;
   // A fit by the name of sound that needs more reactance than a sound joint has is none.
-  const odds = needsTooMuch(model, sound) ? Math.max(advantage, FAULT_ODDS) : advantage;
+  const odds = sound.ownDb < REACTIVE_FAULT_RETURN_LOSS_DB ? Math.max(advantage, FAULT_ODDS) : advantage;
   if (!best || odds < (boundary === 0 ? PORT_ODDS : FAULT_ODDS)) {
     dress(model, boundary, place, sound);
     settle(context, model, settings, atM);
@@ -228,6 +229,8 @@ type Trial = {
   /** What samples add to the described step, ln. */
   readonly step: number;
   readonly fault: { readonly strength: number; readonly offsetM: number } | null;
+  /** Return loss over the band of everything at the joint, dB. */
+  readonly ownDb: number;
 };
 
 /** Places tried per hypothesis. */
@@ -327,20 +330,21 @@ function fitState(place: JointPlace, state: JointState, start: Start, variance: 
   const strengthStep = faulty === 'resistive' ? 1e-5 : 1e-5 / echo.omega[echo.omega.length - 1]!;
   const begin = [start.offsetM, start.faces[0], start.faces[1], start.step, 0];
   const steps = [1e-6, faceSigma * 1e-4, faceSigma * 1e-4, 1e-6, 1e-6];
+  const partsOf = (p: Float64Array): LocalPart[] => {
+    const parts: LocalPart[] = [
+      { type: 'reactive', strength: p[1]!, offsetM: p[0]! + facesM[0] - p[4]! },
+      { type: 'step', strength: step + p[3]!, offsetM: p[0]! },
+      { type: 'reactive', strength: p[2]!, offsetM: p[0]! + facesM[1] + p[4]! },
+    ];
+    if (faulty) parts.push({ type: faulty, strength: p[5]!, offsetM: p[0]! + p[6]! });
+    return parts.sort((a, b) => a.offsetM - b.offsetM);
+  };
   const fit = fitLocal(
     echo,
     {
       start: faulty ? [...begin, start.strength, start.faultOffsetM] : begin,
       steps: faulty ? [...steps, strengthStep, 1e-6] : steps,
-      parts: (p) => {
-        const parts: LocalPart[] = [
-          { type: 'reactive', strength: p[1]!, offsetM: p[0]! + facesM[0] - p[4]! },
-          { type: 'step', strength: step + p[3]!, offsetM: p[0]! },
-          { type: 'reactive', strength: p[2]!, offsetM: p[0]! + facesM[1] + p[4]! },
-        ];
-        if (faulty) parts.push({ type: faulty, strength: p[5]!, offsetM: p[0]! + p[6]! });
-        return parts.sort((a, b) => a.offsetM - b.offsetM);
-      },
+      parts: partsOf,
       priors: (p) => [
         (p[0]! - expectedM) / sigmaM,
         stiff(p[1]! / faceSigma),
@@ -362,6 +366,7 @@ function fitState(place: JointPlace, state: JointState, start: Start, variance: 
     facesM: [facesM[0] - widerM, facesM[1] + widerM],
     step: samples,
     fault: faulty ? { strength, offsetM: faultOffsetM } : null,
+    ownDb: reflectionDb(echo, partsOf(fit.parameters)),
   };
 }
 
@@ -376,18 +381,10 @@ function keepsItsKind({ state, fault }: Trial): boolean {
 }
 
 /** Whether a fitted fault is larger than what a sound joint may show. */
-function isBeyondSound(model: LineModel, { state, fault, faces }: Trial): boolean {
+function isBeyondSound({ state, fault, ownDb }: Trial): boolean {
   if (state === 'sound' || fault === null) return false;
-  const type = lumpedTypeOf(state);
-  if (type === 'resistive') return Math.abs(fault.strength) >= MIMIC_STRENGTH;
-  const strength = fault.strength + faces[0] + faces[1];
-  if (pureTypeOf(type, strength) !== state) return false;
-  return lumpReturnLossDb(model.frequencyHz, { type, strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
-}
-
-function needsTooMuch(model: LineModel, { faces }: Trial): boolean {
-  const strength = faces[0] + faces[1];
-  return lumpReturnLossDb(model.frequencyHz, { type: 'reactive', strength }) < REACTIVE_FAULT_RETURN_LOSS_DB;
+  if (lumpedTypeOf(state) === 'resistive') return Math.abs(fault.strength) >= MIMIC_STRENGTH;
+  return ownDb < REACTIVE_FAULT_RETURN_LOSS_DB;
 }
 
 /** Puts a fitted hypothesis into the model. */

@@ -6,7 +6,7 @@
  * numbers then say all that the sweep knows of the place, and hypotheses about it can be fitted in no time. What a
  * discontinuity does to echoes behind it is left out: the line behind is free to follow, so it tells nothing more.
  */
-import { complexZeros } from '../numerics/complex.ts';
+import { complexRms, complexZeros } from '../numerics/complex.ts';
 import { fitLeastSquares, type LeastSquaresFit } from '../numerics/least-squares.ts';
 import { solveSymmetric } from '../numerics/linear-solve.ts';
 import { type FitContext, linearise } from './fit-cascade.ts';
@@ -200,6 +200,13 @@ export function writeLocalReflection(
     out.re[b] = re * turnRe - im * turnIm;
     out.im[b] = re * turnIm + im * turnRe;
   }
+}
+
+/** RMS return loss over the band of some parts together, dB. */
+export function reflectionDb(echo: LocalEcho, parts: readonly LocalPart[]): number {
+  const own = complexZeros(echo.omega.length);
+  writeLocalReflection(echo, parts, own);
+  return -20 * Math.log10(complexRms(own) + 1e-12);
 }
 
 /**
