@@ -5,6 +5,7 @@
  */
 
 import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
+import { fitOneLump, type LumpFit } from './fit-lumps.ts';
 import { type JointVerdict, judgeJoint } from './judge-joints.ts';
 import {
   ALL_FREE,
@@ -19,15 +20,9 @@ import {
   restoreModel,
   translate,
 } from './line-model.ts';
+import { localEcho } from './local-echo.ts';
 import { expectBoundary, placeJoints } from './place-joints.ts';
-import {
-  bestOfEach,
-  type Candidate,
-  lumpedTypeOf,
-  lumpReturnLossDb,
-  PURE_TYPES,
-  probeAcross,
-} from './probe.ts';
+import { lumpedTypeOf, lumpReturnLossDb, pureTypeOf } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 import { MOST_UNEQUAL_DB, resolvePair } from './resolve-pair.ts';
@@ -221,7 +216,7 @@ function mergeIntoJoints(
   for (const boundary of merged) verdicts.set(boundary, judgeJoint(context, model, settings, boundary));
 }
 
-/** Inserts the pure type that explains most around a distance; false when none helps. */
+/** Inserts the pure kind that explains most around a distance; false when none helps. */
 function insertLump(
   context: FitContext,
   model: LineModel,
@@ -229,82 +224,51 @@ function insertLump(
   distanceM: number,
 ): boolean {
   const variance = residualVariance(context);
-  const found = probeAround(context, model, settings, distanceM).filter(
-    (candidate) =>
-      candidate.gain > 12 * variance && lumpReturnLossDb(context.frequencyHz, candidate) < WEAKEST_FLAW_DB,
-  );
-  if (found.length === 0) return false;
-  const [best] = fitTypes(context, model, settings, found);
-  if (best) restoreModel(model, best.model);
-  return best !== undefined;
-}
-
-function addCandidate(model: LineModel, candidate: Candidate): Lump {
-  return addFreeLump(model, { ...candidate, type: lumpedTypeOf(candidate.type) });
-}
-
-/** Candidates of every pure type within a resolution of a distance, best gain first. */
-export function probeAround(
-  context: FitContext,
-  model: LineModel,
-  settings: SearchSettings,
-  distanceM: number,
-  without: readonly number[] = [],
-): Candidate[] {
-  const reachM = settings.resolutionM * 0.8;
-  const all = probeAcross(context, model, distanceM - reachM, distanceM + reachM, without)
-    .flatMap((probe) => bestOfEach(probe))
-    .sort((a, b) => b.gain - a.gain);
-  return PURE_TYPES.flatMap((type) => all.find((candidate) => candidate.type === type) ?? []);
-}
-
-/** Tries every other pure type in the place of each free lump, with its distance refitted. */
-function retestTypes(context: FitContext, model: LineModel, settings: SearchSettings): void {
-  for (const { id } of model.lumps.filter((lump) => lump.boundary === null)) {
-    const alternatives = rankTypes(context, model, settings, id);
-    const best = alternatives[0];
-    if (best) restoreModel(model, best.model);
+  const echo = localEcho(context, model, distanceM, { lumps: [], boundary: null });
+  const [best] = fitOneLump(echo, LUMP_REACH * settings.resolutionM, variance);
+  const lump = best?.lumps[0];
+  if (!lump || lumpReturnLossDb(context.frequencyHz, lump) > WEAKEST_FLAW_DB) {
+    evaluateCost(context, model, ALL_FREE, 1);
+    return false;
   }
+  addFreeLump(model, { ...lump, type: lumpedTypeOf(lump.type) });
+  settle(context, model, settings, lump.distanceM);
+  return true;
 }
 
-export type TypeTrial = { readonly model: LineModel; readonly candidate: Candidate; readonly cost: number };
+/** How far around a peak of the trace its cause is looked for, in 6 dB widths of an echo. */
+const LUMP_REACH = 0.8;
 
-/** Every pure type in the place of one lump, fitted locally; best first, cost in −2 ln likelihood. */
+/** Lets the line around a place and behind it follow what was put there. */
+function settle(context: FitContext, model: LineModel, settings: SearchSettings, atM: number): void {
+  evaluateCost(context, model, ALL_FREE, 1);
+  const freedom = around(model, atM - settings.resolutionM, atM + settings.resolutionM);
+  refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 6 });
+}
+
+/** Every pure kind in the place of one lump, best first. */
 export function rankTypes(
   context: FitContext,
   model: LineModel,
   settings: SearchSettings,
-  id: number,
-): TypeTrial[] {
-  const lump = model.lumps.find((l) => l.id === id)!;
-  const without = cloneModel(model);
-  removeLump(without, id);
-  return fitTypes(
-    context,
-    without,
-    settings,
-    probeAround(context, without, settings, lumpDistanceM(model, lump)),
-  );
+  lump: Lump,
+  variance: number,
+): LumpFit[] {
+  const echo = localEcho(context, model, lumpDistanceM(model, lump), { lumps: [lump.id], boundary: null });
+  return fitOneLump(echo, LUMP_REACH * settings.resolutionM, variance);
 }
 
-/** Each candidate added to a copy of the model and fitted with what stands around it; best first. */
-function fitTypes(
-  context: FitContext,
-  model: LineModel,
-  settings: SearchSettings,
-  candidates: readonly Candidate[],
-): TypeTrial[] {
-  evaluateCost(context, model, ALL_FREE, 1);
-  const variance = residualVariance(context);
-  const trials = candidates.map((candidate): TypeTrial => {
-    const trial = cloneModel(model);
-    addCandidate(trial, candidate);
-    const { distanceM } = candidate;
-    const freedom = around(trial, distanceM - settings.resolutionM, distanceM + settings.resolutionM);
-    refine(context, trial, freedom, { variance, maxIterations: 8 });
-    return { model: trial, candidate, cost: evaluateCost(context, trial, ALL_FREE, variance) };
-  });
-  return trials.sort((a, b) => a.cost - b.cost);
+/** Puts every other pure kind in the place of each free lump where it explains more. */
+function retestTypes(context: FitContext, model: LineModel, settings: SearchSettings): void {
+  for (const lump of model.lumps.filter((l) => l.boundary === null)) {
+    evaluateCost(context, model, ALL_FREE, 1);
+    const [best] = rankTypes(context, model, settings, lump, residualVariance(context));
+    const other = best?.lumps[0];
+    if (!other || other.type === pureTypeOf(lump.type, lump.strength)) continue;
+    removeLump(model, lump.id);
+    addFreeLump(model, { ...other, type: lumpedTypeOf(other.type) });
+    settle(context, model, settings, other.distanceM);
+  }
 }
 
 /** Evidence below which a free lump is dropped, in −2 ln likelihood against the local floor. */

@@ -15,9 +15,10 @@ import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
-import { ALL_FREE, boundaryAt, type LineModel } from './line-model.ts';
+import { ALL_FREE, boundaryAt, type LineModel, lumpDistanceM } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
 import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
+import type { ResidualTrace } from './residual-trace.ts';
 import type { Solution } from './solution.ts';
 
 export type SolveRequest = {
@@ -86,11 +87,11 @@ export function solveLine(
   const joints = judgeJoints(context, model, settings, verdicts);
   evaluateCost(context, model, ALL_FREE, 1);
   refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
-  const lumps = nameLumps(context, model, settings);
   onProgress('weighing what is known', 0.95);
+  const floor = traceResidual(context, model, settings);
+  const lumps = nameLumps(context, model, settings, floor);
   evaluateCost(context, model, ALL_FREE, 1);
   const variance = residualVariance(context);
-  const floor = traceResidual(context, model, settings);
   const scale = createDistanceScale(line, model, end.cut);
   const echoes = buildEchoes(context, model, {
     line: end.line,
@@ -141,11 +142,19 @@ function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]):
 }
 
 /** Confidence of each free lump's type from the competition of types. */
-function nameLumps(context: FitContext, model: LineModel, settings: SearchSettings): LumpVerdict[] {
+function nameLumps(
+  context: FitContext,
+  model: LineModel,
+  settings: SearchSettings,
+  floor: ResidualTrace,
+): LumpVerdict[] {
   return model.lumps
     .filter((lump) => lump.boundary === null)
     .map((lump) => {
-      const ranked = rankTypes(context, model, settings, lump.id);
+      evaluateCost(context, model, ALL_FREE, 1);
+      const distanceM = lumpDistanceM(model, lump);
+      const variance = localVariance(floor, distanceM, settings.resolutionM, residualVariance(context));
+      const ranked = rankTypes(context, model, settings, lump, variance);
       const costs = ranked.map((trial) => trial.cost);
       const best = costs[0] ?? 0;
       const total = costs.reduce((sum, cost) => sum + Math.exp(-Math.min(700, (cost - best) / 2)), 0);
