@@ -5,16 +5,20 @@
  */
 import { findingsOf, placesOf } from '../assess/find-findings.ts';
 import { severitiesOf } from '../assess/severity.ts';
+import { sweepNotices } from '../assess/sweep-notices.ts';
 import { SPEED_OF_LIGHT } from '../line/constants.ts';
 import type { Line } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { type MediumRun, runLengthM, runOfMedia } from '../line/medium-run.ts';
 import { planCorrectedTrace } from '../locate/distance-trace.ts';
-import { foldingNotice, reachOf } from '../locate/reach.ts';
+import { type ImpedanceProfile, measuredProfile } from '../locate/impedance-profile.ts';
+import { modelledProfile } from '../locate/modelled-profile.ts';
+import { type Reach, reachOf } from '../locate/reach.ts';
+import type { Solution } from '../locate/solution.ts';
 import { solveLine } from '../locate/solve-line.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { parseWindow } from '../numerics/window.ts';
-import { fail, type Notice, type Outcome, succeed } from '../outcome.ts';
+import { assertNever, fail, type Notice, type Outcome, succeed } from '../outcome.ts';
 import { correctSweep } from '../sweep/error-correction.ts';
 import { sweepQuality } from '../sweep/quality.ts';
 import { readSweep } from '../sweep/read-sweep.ts';
@@ -54,10 +58,11 @@ export function analyse(
   );
 
   onProgress({ stage: 'putting it into words', fraction: 0.95 });
-  const run = runOf(request.line, sweep, solution.lengthM / solution.distanceScale);
+  const scale = solution.distanceScale;
+  const run = runOf(request.line, sweep, solution.lengthM / scale, scale);
   const reach = reachOf({ sweep, run, window: window.value });
   const traceToM = runLengthM(run) + 4 * reach.resolutionM;
-  const trace = planCorrectedTrace({
+  const modelTrace = planCorrectedTrace({
     frequencyHz: sweep.frequencyHz,
     run,
     window: window.value,
@@ -65,16 +70,16 @@ export function analyse(
     toM: traceToM,
     points: TRACE_POINTS,
   }).trace(sweep.gamma);
+  const trace = { ...modelTrace, distanceM: modelTrace.distanceM.map((m) => m * scale) };
   const severities = severitiesOf(request.line, solution);
   const places = placesOf(request.line, solution);
-  const folding = foldingNotice(reach.unambiguousM, runLengthM(run));
   return succeed({
     sweep,
     line: request.line,
     lineDescribed: request.lineDescribed,
     reach,
     trace,
-    impedance: null,
+    impedance: impedanceOf(request.line, sweep, reach.impedanceProfile, solution),
     solution,
     severities,
     places,
@@ -84,7 +89,7 @@ export function analyse(
       ...corrected.notices,
       ...usable.notices,
       ...quality.notices,
-      ...(folding ? [folding] : []),
+      ...sweepNotices({ frequencyHz: sweep.frequencyHz, reach, lengthM: solution.lengthM }),
       ...solution.notices,
     ],
   });
@@ -151,8 +156,32 @@ function withoutZeroFrequency(sweep: Sweep): Outcome<Sweep> {
   );
 }
 
-/** The described line at the sweep's frequencies; an unknown last length takes what is left of `toM`. */
-function runOf(line: Line, sweep: Sweep, toM: number): MediumRun {
+/** Ohms along the line, from the sweep itself where it reaches down to 0 Hz, else from the solved line. */
+function impedanceOf(
+  line: Line,
+  sweep: Sweep,
+  origin: Reach['impedanceProfile'],
+  solution: Solution,
+): ImpedanceProfile | null {
+  const { lengthM, distanceScale } = solution;
+  switch (origin) {
+    case 'measured':
+      return measuredProfile({ sweep, line, lengthM, distanceScale });
+    case 'modelled':
+      return modelledProfile({ line, solution, portOhm: sweep.portOhm });
+    case 'no':
+      return null;
+    default:
+      return assertNever(origin);
+  }
+}
+
+/**
+ * The described line at the sweep's frequencies; an unknown last length takes what is left of `toM`.
+ *
+ * @param scale Physical over model distance: described lengths are physical, the run is the model's.
+ */
+function runOf(line: Line, sweep: Sweep, toM: number, scale = 1): MediumRun {
   const reference = line.sections.find((section) => section.type === 'coax');
   const z0Ohm = reference?.type === 'coax' ? reference.cable.z0Ohm : sweep.portOhm;
   const media = line.sections.map((section) =>
@@ -160,7 +189,7 @@ function runOf(line: Line, sweep: Sweep, toM: number): MediumRun {
   );
   let startM = 0;
   const lengths = line.sections.map(({ lengthM }) => {
-    const own = lengthM ?? Math.max(SHORTEST_UNKNOWN_M, toM - startM);
+    const own = lengthM === null ? Math.max(SHORTEST_UNKNOWN_M, toM - startM) : lengthM / scale;
     startM += own;
     return own;
   });

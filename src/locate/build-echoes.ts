@@ -19,6 +19,8 @@ export type EchoParts = {
   readonly lumps: readonly LumpVerdict[];
   readonly endKind: 'open' | 'short' | 'load' | 'antenna';
   readonly endConfidence: number;
+  /** True when the line stops before its description does: its end is no joint then. */
+  readonly endsEarly: boolean;
   readonly scale: DistanceScale;
   /** Noise variance per real component, local floor included, at a model distance. */
   readonly varianceAt: (distanceM: number) => number;
@@ -147,7 +149,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
       kind,
       confidence: parts.endConfidence,
       value: full ? null : returnLossValue(corrected),
-      joint: { index: n + 1, name: jointName(parts.line, n + 1) },
+      joint: parts.endsEarly ? null : { index: n + 1, name: jointName(parts.line, n + 1) },
       section: n - 1,
     };
   }

@@ -9,13 +9,13 @@ import type { FitContext } from './fit-cascade.ts';
 const NEIGHBOURS = 16;
 
 /**
- * Power over the median of the neighbours from which a point counts as hit. Noise alone goes beyond 30 times its median
- * once in 2^30 points.
+ * Power over the median of the neighbours from which a point counts as hit. Noise alone goes beyond 45 times its median
+ * once in 2^45 points, but where the residual passes through a null the median is small.
  */
-const OVER_MEDIAN = 30;
+const OVER_MEDIAN = 45;
 
-/** A hit must also stand this far over the median power of the whole residual. */
-const OVER_ALL = 12;
+/** So a hit must also stand this far over the median power of the whole residual. */
+const OVER_ALL = 20;
 
 /** More hits than this share are no carriers but a model that does not fit. */
 const MOST_HIT = 0.04;

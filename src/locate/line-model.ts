@@ -8,6 +8,7 @@ import type { EndModel } from '../line/end.ts';
 import type { Line } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { invertSymmetric } from '../numerics/linear-solve.ts';
+import { assertNever } from '../outcome.ts';
 import { RESIDUE_SIGMA, type ResidueTerm, residueTerms } from './instrument-residue.ts';
 
 /** A lumped discontinuity, inside a section or tied to a joint. */
@@ -178,9 +179,20 @@ function boundaryCovariance(line: Line, lengths: readonly number[], endSigmaM: n
 
 /** Relative velocity tolerance of a section. */
 function velocitySpread(section: Line['sections'][number]): number {
-  if (section.type === 'device') return DEVICE_VELOCITY_SPREAD;
-  return section.cable.velocityFactorTolerance / section.cable.velocityFactor;
+  switch (section.type) {
+    case 'device':
+      return DEVICE_VELOCITY_SPREAD;
+    case 'guide':
+      return GUIDE_VELOCITY_SPREAD;
+    case 'coax':
+      return section.cable.velocityFactorTolerance / section.cable.velocityFactor;
+    default:
+      return assertNever(section);
+  }
 }
+
+/** Relative spread of a guide's velocity, which its width fixes. Common practice: widths hold to 0.1 %. */
+const GUIDE_VELOCITY_SPREAD = 0.002;
 
 /** Relative spread of the velocity inside in-line devices, about which descriptions say nothing. */
 const DEVICE_VELOCITY_SPREAD = 0.3;

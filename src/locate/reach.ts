@@ -2,7 +2,7 @@
 import { distanceOfDelay, groupDelaySPerM, type MediumRun, pathTo, runLengthM } from '../line/medium-run.ts';
 import { quantile } from '../numerics/statistics.ts';
 import { createWindow, type WindowSpec } from '../numerics/window.ts';
-import type { Notice } from '../outcome.ts';
+
 import type { Sweep } from '../sweep/sweep.ts';
 import { planApparentTrace } from './distance-trace.ts';
 import { medianStepHz, traceWeights } from './grid-weights.ts';
@@ -51,17 +51,6 @@ export function reachOf({ sweep, run, window }: ReachOptions): Reach {
     unambiguousM,
     weakestReturnLossDb: weakestAtEndDb(sweep, run, window, { resolutionM, unambiguousM }),
     impedanceProfile: profileOrigin(frequencyHz, run, resolutionM),
-  };
-}
-
-/** Notice for a line longer than the sweep can tell apart, or null. */
-export function foldingNotice(unambiguousM: number, toM: number): Notice | null {
-  if (toM <= unambiguousM) return null;
-  return {
-    code: 'line-folds',
-    what:
-      `the sweep's step lets it tell distances apart only up to ${unambiguousM.toFixed(1)} m; ` +
-      `what lies beyond appears again ${unambiguousM.toFixed(1)} m nearer`,
   };
 }
 

@@ -99,10 +99,11 @@ export function solveLine(
     lumps,
     endKind: endKind.kind,
     endConfidence: 1 / (1 + Math.exp(-Math.min(30, endKind.lead / 2))),
+    endsEarly: end.cut,
     scale,
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
-  const endEcho = echoes.find((echo) => echo.joint?.index === model.boundaryM.length + 1)!;
+  const endEcho = echoes[echoes.length - 1]!;
   return {
     echoes,
     ghosts: [],

@@ -1,6 +1,7 @@
 /** The described line as the strip draws it. */
 import type { Analysis } from '../app/analysis.ts';
-import type { Line } from '../line/line.ts';
+import type { Line, Section } from '../line/line.ts';
+import { assertNever } from '../outcome.ts';
 import type { StripSection } from '../plot/line-strip.ts';
 import { lengthText, type Units } from '../plot/quantity-text.ts';
 
@@ -17,7 +18,7 @@ export function stripSections(line: Line, lengthM: number | null, units: Units):
     const ownM = section.lengthM ?? (lengthM === null ? null : lengthM - fromM);
     if (ownM === null || !(ownM > 0)) break;
     const length = lengthText(ownM, units, 1);
-    const kind = section.type === 'coax' ? section.cable.name : section.device;
+    const kind = sectionKind(section);
     sections.push({
       fromM,
       toM: fromM + ownM,
@@ -39,4 +40,18 @@ export function stripSections(line: Line, lengthM: number | null, units: Units):
 export function endText({ line, solution }: Analysis): string {
   const end = line.end === 'unknown' ? solution.end : line.end;
   return end === 'unknown' ? 'end' : end;
+}
+
+/** What a section is made of, in a word or two. */
+function sectionKind(section: Section): string {
+  switch (section.type) {
+    case 'coax':
+      return section.cable.name;
+    case 'guide':
+      return section.guide.id;
+    case 'device':
+      return section.device;
+    default:
+      return assertNever(section);
+  }
 }

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { SPEED_OF_LIGHT } from '../../src/line/constants.ts';
 import { losslessRun } from '../../src/line/medium-run.ts';
-import { foldingNotice, noisePerPoint, reachOf } from '../../src/locate/reach.ts';
+import { noisePerPoint, reachOf } from '../../src/locate/reach.ts';
 import type { WindowSpec } from '../../src/numerics/window.ts';
 import { evenHz, FOAM, lineOf, MATCHED, OPEN, runOfLine, SHORT, SOLID, sweepThrough } from './drawn-line.ts';
 
@@ -82,16 +82,6 @@ describe('reachOf', () => {
         log.map((f) => f + 200e6),
       ).impedanceProfile,
     ).toBe('modelled');
-  });
-});
-
-describe('foldingNotice', () => {
-  it('speaks where the line is longer than the range, with the figure', () => {
-    expect(foldingNotice(66.2, 66.1)).toBeNull();
-    expect(foldingNotice(66.24, 80)).toMatchObject({
-      code: 'line-folds',
-      what: expect.stringMatching(/up to 66\.2 m; .* 66\.2 m nearer/),
-    });
   });
 });
 
