@@ -2,6 +2,7 @@
 import { describedLengthM } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { runOfMedia } from '../line/medium-run.ts';
+import { usableBand } from '../line/usable-band.ts';
 import { type DistanceTrace, planCorrectedTrace } from '../locate/distance-trace.ts';
 import { parseWindow } from '../numerics/window.ts';
 import { readSweep } from '../sweep/read-sweep.ts';
@@ -27,7 +28,7 @@ export function firstLook(
   const read = readSweep(request.sweepBytes, port === null ? { file: sweepFile } : { file: sweepFile, port });
   if (!window.ok || !read.ok) return null;
   const { frequencyHz: all, gamma, portOhm } = read.value;
-  const first = all[0] === 0 ? 1 : 0;
+  const first = Math.max(all[0] === 0 ? 1 : 0, usableBand(line, all).carried.from);
   const frequencyHz = all.subarray(first);
   if (frequencyHz.length < 2) return null;
   const media = line.sections.map((section) =>

@@ -121,13 +121,14 @@ export const VERBS = {
     mostArguments: 1,
     summary: 'the cable table',
     description: [
-      'Lists the cables, or shows one with its figures and where each was read. With --at and --length it gives loss ' +
+      'Lists the cables and guides, or shows one with its figures and where each was read. With --at and --length it gives loss ' +
         'and delay.',
     ],
     flags: ['at', 'length', 'temperature', 'cables', 'units', 'json'],
     examples: [
       { command: 'feedsonde cables', shows: 'all of them' },
       { command: 'feedsonde cables rg-213 --at 900MHz --length 46m', shows: 'loss and delay of a run' },
+      { command: 'feedsonde cables WR-137 --at 6.5GHz --length 20m', shows: 'the same of a waveguide' },
     ],
   },
   simulate: {
@@ -140,7 +141,9 @@ export const VERBS = {
         'like? LINE is a line file. The sweep goes to standard output, or to a file with -o.',
       'Faults: series-resistance:9ohm@joint3, shunt-leakage:400ohm@12.5m, series-inductance:1.5nH@joint2, ' +
         'shunt-capacitance:0.6pF@31.4m, section:75ohm@20m-23m, open@17.4m, short@17.4m, wet:k2x12,er1.03@20m-28m ' +
-        '(dielectric loss and permittivity times these factors). Joint 1 is the one at the port.',
+        '(dielectric loss and permittivity times these factors). Joint 1 is the one at the port. A size without a unit is ' +
+        'relative to the line it sits in, at the middle of the swept band: r0.2, g0.2, x0.2 or b0.2 in the order of the ' +
+        'first four kinds. In a guide, which has no ohms of its own, only such sizes mean something.',
     ],
     flags: [
       'fault',
