@@ -12,7 +12,7 @@ import {
   type Setup,
   shortKey,
 } from './entry.ts';
-import { figuresForm, readStored, setupForm } from './figures.ts';
+import { figuresForm, objectForm, readStored, setupForm } from './figures.ts';
 import { hashOf, pack, unpack, unpackText } from './packing.ts';
 import { keepLine } from './stored-lines.ts';
 
@@ -176,7 +176,8 @@ export function readEntry(db: Database, key: EntryKey, file: string): Outcome<En
   const setup = row && readStored(String(row['setup']), setupForm);
   const figures = row && readStored(String(row['figures']), figuresForm);
   const document = row ? unpackText(row['document']) : null;
-  if (!row || !setup || !figures || document === null) return fail(damagedEntry(key, file));
+  const readable = document !== null && [document, String(row?.['described_then'])].every(isObjectText);
+  if (!row || !setup || !figures || document === null || !readable) return fail(damagedEntry(key, file));
   return succeed({
     ...summaryOf(row),
     hash: String(row['original']),
@@ -186,6 +187,10 @@ export function readEntry(db: Database, key: EntryKey, file: string): Outcome<En
     figures,
     document,
   });
+}
+
+function isObjectText(text: string): boolean {
+  return readStored(text, objectForm) !== null;
 }
 
 /** The bytes of an original as they came. */

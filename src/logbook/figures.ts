@@ -65,6 +65,9 @@ export const setupForm = v.object({
   standards: v.nullable(v.object({ open: hash, short: hash, load: hash })),
 }) satisfies v.GenericSchema<unknown, Setup>;
 
+/** A line file or a result: any object. */
+export const objectForm = v.record(v.string(), v.unknown());
+
 /**
  * Reads stored JSON.
  *

@@ -1,5 +1,5 @@
 /** One line over the years: which echo of one sweep is which of the next, and how each changes. */
-import type { EchoFigures, EntryFigures, EntryKey } from './entry.ts';
+import type { BandFigures, EchoFigures, EntryFigures, EntryKey } from './entry.ts';
 
 /** One sweep of the line. */
 export type Moment = {
@@ -39,9 +39,14 @@ export type LineTrend = {
   readonly moments: readonly Moment[];
   /** In order of distance. */
   readonly echoes: readonly EchoTrend[];
+  /** One way, of the sweeps that tell it at the frequency of the last one that does. */
   readonly lossDb: Course;
+  readonly lossAtHz: number | null;
   readonly lengthM: Course;
-  /** Worst return loss over each named band, dB, positive. */
+  /**
+   * Worst return loss over each named band, dB, positive; of sweeps that cover the band as the last one did, with an
+   * end that takes the power: behind a short or an open there is no match to speak of.
+   */
   readonly match: readonly { readonly band: string; readonly returnLossDb: Course }[];
 };
 
@@ -49,6 +54,9 @@ export type LineTrend = {
 const SHORTEST_SLOPE_DAYS = 90;
 const DAYS_PER_YEAR = 365.25;
 const MS_PER_DAY = 86_400_000;
+
+/** Two frequencies closer than this share are the same. */
+const SAME_FREQUENCY = 0.01;
 
 /** How far a joint may seem to move before it is taken for another one of that number: m, and share of distance. */
 const JOINT_MOVES_M = 1;
@@ -60,13 +68,13 @@ const SAME_PLACE_M = 0.2;
  * Follows a line through its sweeps.
  *
  * An echo at a joint is the same as that at the same joint before, as long as the joint has not moved by more than a
- * metre or 5 %; one inside a section is the same as the nearest before it within 3σ of both, or one resolution.
+ * metre or 5 %; one inside a section is the same as the nearest before it within 3σ of both, or one resolution. The end
+ * is followed apart for each thing that stood there: antenna, load, short, open.
  *
  * @param moments In order of time.
  */
 export function followLine(moments: readonly Moment[]): LineTrend {
   const days = moments.map(({ takenAt }) => dayOf(takenAt));
-  const bands = [...new Set(moments.flatMap(({ figures }) => figures.bands.map((band) => band.name)))];
   const course = (figureOf: (figures: EntryFigures) => number | null | undefined): Course =>
     courseOf(
       moments.flatMap(({ figures }, at) => {
@@ -75,6 +83,7 @@ export function followLine(moments: readonly Moment[]): LineTrend {
       }),
       days,
     );
+  const lossAtHz = moments.findLast(({ figures }) => figures.lossDb !== null)?.figures.lossAtHz ?? null;
   return {
     moments,
     echoes: trackEchoes(moments).map((seen) => {
@@ -92,13 +101,39 @@ export function followLine(moments: readonly Moment[]): LineTrend {
         ),
       };
     }),
-    lossDb: course((figures) => figures.lossDb),
-    lengthM: course((figures) => figures.lengthM),
-    match: bands.map((band) => ({
-      band,
-      returnLossDb: course((figures) => figures.bands.find(({ name }) => name === band)?.worstReturnLossDb),
+    lossDb: course(({ lossDb, lossAtHz: atHz }) =>
+      atHz !== null && lossAtHz !== null && sameFrequency(atHz, lossAtHz) ? lossDb : null,
+    ),
+    lossAtHz,
+    lengthM: course(({ lengthM }) => lengthM),
+    match: lastBands(moments).map((wanted) => ({
+      band: wanted.name,
+      returnLossDb: course((figures) => matchOver(wanted, figures)),
     })),
   };
+}
+
+/** Every band that was judged, as the last sweep has it that does. */
+function lastBands(moments: readonly Moment[]): readonly BandFigures[] {
+  const bands = new Map<string, BandFigures>();
+  for (const { figures } of moments)
+    if (takesPower(figures)) for (const band of figures.bands) bands.set(band.name, band);
+  return [...bands.values()];
+}
+
+function matchOver(wanted: BandFigures, figures: EntryFigures): number | null {
+  const band = takesPower(figures) ? figures.bands.find(({ name }) => name === wanted.name) : undefined;
+  return band && sameFrequency(band.fromHz, wanted.fromHz) && sameFrequency(band.toHz, wanted.toHz)
+    ? band.worstReturnLossDb
+    : null;
+}
+
+function takesPower({ end }: EntryFigures): boolean {
+  return end !== 'open' && end !== 'short';
+}
+
+function sameFrequency(a: number, b: number): boolean {
+  return Math.abs(a - b) <= SAME_FREQUENCY * Math.max(a, b);
 }
 
 /** Days since 1970 of a wall time. */
@@ -110,20 +145,26 @@ type Track = { readonly at: number; readonly echo: EchoFigures }[];
 
 function trackEchoes(moments: readonly Moment[]): readonly Track[] {
   const all: Track[] = [];
-  const atJoint = new Map<number, Track>();
+  const atJoint = new Map<string, Track>();
   /** Those inside sections, in order of the distance at which they were last seen. */
   const between: Track[] = [];
+  const endJoint = moments.reduce(
+    (highest, { figures }) => figures.echoes.reduce((max, { joint }) => Math.max(max, joint ?? 0), highest),
+    0,
+  );
   for (const [at, { figures }] of moments.entries())
     for (const echo of [...figures.echoes].sort((a, b) => a.distanceM - b.distanceM)) {
+      const jointKey =
+        echo.joint === null ? null : `${echo.joint}${echo.joint === endJoint ? ` ${figures.end}` : ''}`;
       const known =
-        echo.joint === null
+        jointKey === null
           ? takeNearest(between, echo, at, figures.resolutionM)
-          : sameJoint(atJoint.get(echo.joint), echo);
+          : sameJoint(atJoint.get(jointKey), echo);
       const track = known ?? [];
       if (!known) all.push(track);
       track.push({ at, echo });
-      if (echo.joint === null) between.splice(placeOf(between, echo.distanceM), 0, track);
-      else atJoint.set(echo.joint, track);
+      if (jointKey === null) between.splice(placeOf(between, echo.distanceM), 0, track);
+      else atJoint.set(jointKey, track);
     }
   return all.sort((a, b) => lastOf(a).distanceM - lastOf(b).distanceM);
 }
