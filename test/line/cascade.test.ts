@@ -218,7 +218,7 @@ describe('createCascade', () => {
       { stage: 4, of: 'conductor', column: 8, factor: 1 },
       { stage: 0, of: 'dielectric', column: 9, factor: 1 },
       { stage: 4, of: 'dielectric', column: 9, factor: 1 },
-      { stage: 8, of: 2, column: 10, factor: 1 },
+      { stage: 8, of: 3, column: 10, factor: 1 },
     ];
     compareWithDifferences(f, values, build, slots);
   });
