@@ -83,6 +83,7 @@ export const GUIDE_HINTS = {
 export const GUIDE_TABLE_HINTS = {
   ...GUIDE_HINTS,
   guides: 'a list of one guide or more, each { "id": …, "aMm": …, "bMm": …, "conductivitySPerM": … }',
+  'guides[]': '{ "id": …, "aMm": …, "bMm": …, "conductivitySPerM": … }',
   aToleranceMm: 'a tolerance of the width in millimetres, above 0',
   bMm: `the inner height in millimetres, from ${NARROWEST_MM} to ${WIDEST_MM}, for example 15.799`,
   conductivitySPerM: 'the conductivity of the walls in S/m, from 1e5 to 1e8, for example 5.8e7 for copper',

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { CableEntry } from '../../src/line/cable.ts';
-import { cableKey, cableOf, createCableTable, isCable } from '../../src/line/cable-table.ts';
+import { cableKey, cableOf, createCableTable, guideOf, isCable } from '../../src/line/cable-table.ts';
+import { GUIDE_FIGURES } from '../../src/line/guide.ts';
 import { readCables } from '../../src/line/read-cables.ts';
 import { shippedTable } from './shipped-cables.ts';
 
@@ -61,6 +62,50 @@ describe('createCableTable', () => {
     expect(table.find('feeder')).toBe(second);
     expect(table.find('long-run')).toBe(first);
     expect(table.entries).toEqual([first, second]);
+  });
+});
+
+describe('createCableTable with guides', () => {
+  const table = shippedTable();
+
+  it('createCableTable finds guides by id, IEC code or name, and keeps them apart from cables', () => {
+    for (const name of ['WR-137', 'wr137', 'R 70', 'r70', 'WR-137 waveguide'])
+      expect(table.findGuide(name)?.id).toBe('WR-137');
+    expect(table.find('WR-137')).toBeUndefined();
+    expect(table.findGuide('rg-213')).toBeUndefined();
+    expect(table.guides).toHaveLength(8);
+    expect(table.entries.some((entry) => 'aMm' in entry)).toBe(false);
+    expect(table.nearestGuide('WR-138')).toContain('WR-137');
+    expect(table.nearest('WR-138')).not.toContain('WR-137');
+  });
+
+  it("createCableTable lets a user's own guide win, and gives every figure a source", () => {
+    const text = '{ "guides": [{ "id": "R 70", "aMm": 34.85, "lossDbPer100m": 7.4 }] }';
+    const read = readCables(text, 'own.json');
+    const own = createCableTable(shippedTable().guides, read.ok ? read.value : []);
+    expect(own.findGuide('WR-137')?.lossDbPer100m).toBe(7.4);
+    expect(own.guides).toHaveLength(8);
+    for (const guide of table.guides)
+      for (const figure of GUIDE_FIGURES)
+        expect([guide.id, figure, guide.sources[figure] !== undefined]).toEqual([
+          guide.id,
+          figure,
+          guide[figure] !== null,
+        ]);
+  });
+
+  it('guideOf keeps what the physics needs and nothing else', () => {
+    const guide = table.findGuide('WR-137');
+    expect(guide && guideOf(guide)).toEqual({
+      id: 'WR-137',
+      name: 'WR-137 waveguide',
+      aMm: 34.8488,
+      aToleranceMm: 0.102,
+      bMm: 15.7988,
+      conductivitySPerM: 5.813e7,
+      lossDbPer100m: null,
+      bandMHz: [5850, 8200],
+    });
   });
 });
 

@@ -50,7 +50,7 @@ describe('the table of guides', () => {
     (id, a, b, cutoffGHz, nextGHz, bandGHz, ratios) => {
       const found = guide(id);
       // Exact inch sizes there, printed to a micrometre.
-    expect([found.aMm, found.bMm]).toEqual([expect.closeTo(a, 3), expect.closeTo(b, 3)]);
+      expect([found.aMm, found.bMm]).toEqual([expect.closeTo(a, 3), expect.closeTo(b, 3)]);
       expect(guideCutoffHz(found) / 1e9).toBeCloseTo(cutoffGHz, 4);
       expect(guideNextModeHz(found) / 1e9).toBeCloseTo(nextGHz, 3);
       expect(found.bandMHz?.map((mhz) => mhz / 1e3)).toEqual(bandGHz);

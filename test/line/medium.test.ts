@@ -1,9 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { DB_PER_NEPER, SPEED_OF_LIGHT } from '../../src/line/constants.ts';
+import { guideCutoffHz, guideLossDbPer100m, guidePhaseRadPerM } from '../../src/line/guide.ts';
 import type { DeviceSection } from '../../src/line/line.ts';
 import { PLAIN_JOINT } from '../../src/line/line.ts';
 import { attenuationDbPer100m } from '../../src/line/loss.ts';
-import { coaxMedium, deviceMedium, portMedium, sectionMedium } from '../../src/line/medium.ts';
+import { coaxMedium, deviceMedium, guideMedium, portMedium, sectionMedium } from '../../src/line/medium.ts';
 import { createFft } from '../../src/numerics/fft.ts';
 import { shippedTable } from './shipped-cables.ts';
 
@@ -203,6 +204,51 @@ describe('deviceMedium', () => {
     const cable = figures(50, 0.8, 0.6, 0.006);
     const coax = { type: 'coax', cable, lengthM: 1, label: '', jointAfter: PLAIN_JOINT } as const;
     expect(sectionMedium(coax, BAND, options).gamma).toEqual(coaxMedium(cable, BAND, at20).gamma);
+  });
+});
+
+describe('guideMedium', () => {
+  const guide = shippedTable().findGuide('WR-137')!;
+  const band = Float64Array.of(5.85e9, 6.5e9, 7.4e9, 8.2e9);
+  const options = { temperatureC: 35, z0Ohm: 50 };
+
+  it('travels with β and loses what its walls take, at the temperature they have', () => {
+    const { gamma } = guideMedium(guide, band, options);
+    band.forEach((f, k) => {
+      expect(gamma.im[k]).toBe(guidePhaseRadPerM(guide, f));
+      expect(gamma.re[k]! * 100 * DB_PER_NEPER).toBeCloseTo(guideLossDbPer100m(guide, f, 35), 12);
+    });
+  });
+
+  it('has the impedance of what it is joined to, so that no transition steps', () => {
+    const { impedance, z0Ohm } = guideMedium(guide, band, { ...options, z0Ohm: 75 });
+    expect([Array.from(impedance.re), Array.from(impedance.im), z0Ohm]).toEqual([
+      [75, 75, 75, 75],
+      [0, 0, 0, 0],
+      75,
+    ]);
+  });
+
+  it('has a loss that is all of its conductor, with the derivative of a factor on it', () => {
+    const as = guideMedium(guide, band, options);
+    const twice = guideMedium(guide, band, { ...options, loss: { conductor: 2, dielectric: 3 } });
+    band.forEach((_, k) => {
+      expect(twice.gamma.re[k]! - as.gamma.re[k]!).toBeCloseTo(as.gammaPerConductorLoss.re[k]!, 14);
+      expect(twice.gamma.im[k]).toBe(as.gamma.im[k]);
+    });
+    for (const none of [
+      as.gammaPerConductorLoss.im,
+      as.gammaPerDielectricLoss.re,
+      as.gammaPerDielectricLoss.im,
+    ])
+      expect(none.every((v) => v === 0)).toBe(true);
+  });
+
+  it('is what sectionMedium makes of a guide section, and refuses the cut-off', () => {
+    const section = { type: 'guide', guide, lengthM: 4, label: '', jointAfter: PLAIN_JOINT } as const;
+    expect(sectionMedium(section, band, options)).toEqual(guideMedium(guide, band, options));
+    const atCutoff = Float64Array.of(guideCutoffHz(guide), 6e9);
+    expect(() => guideMedium(guide, atCutoff, options)).toThrow(RangeError);
   });
 });
 

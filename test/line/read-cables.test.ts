@@ -163,6 +163,51 @@ describe('readCables', () => {
     expect(problems[50]?.what).toBe('and 30 more problems');
   });
 
+  it('readCables reads guides, alone or beside cables, and fills in what is usual', () => {
+    const guides =
+      '"guides": [{ "id": "G 1", "aMm": 30, "bMm": 15, "conductivitySPerM": 5.8e7, "bandMHz": [6000, 9000] }]';
+    const read = readCables(`{ "family": "mine", ${guides} }`, 'own.json');
+    expect(read).toMatchObject({
+      ok: true,
+      value: [
+        {
+          id: 'G 1',
+          name: 'G 1',
+          family: 'mine',
+          // 0.3 % of the width.
+          aToleranceMm: expect.closeTo(0.09, 12),
+          lossDbPer100m: null,
+          sources: {
+            aMm: { source: 'own.json', status: 'as given' },
+            aToleranceMm: { status: 'common practice' },
+          },
+        },
+      ],
+    });
+    const both = readCables(REEL.replace('"cables"', `${guides}, "cables"`), 'own.json');
+    expect(both.ok && both.value.map((entry) => entry.id)).toEqual(['own-reel', 'G 1']);
+  });
+
+  it('readCables says what is wrong with a guide', () => {
+    const text = `{ "guides": [
+      { "id": "a", "aMm": 30, "bMm": 15 },
+      { "id": "b", "aMm": 10, "bMm": 15, "lossDbPer100m": 3 },
+      { "id": "c", "aMm": 30, "lossDbPer100m": 3, "bandMHz": [4000, 9000] },
+      { "id": "A", "lossDbPer100m": 3, "aMm": 20 },
+      7] }`;
+    expect(problemsOf(text).map(({ line, what, mend }) => `${line}: ${what} | ${mend}`)).toEqual([
+      '2: guide 1 says nothing of its loss | give "bMm" and "conductivitySPerM", or "lossDbPer100m"',
+      '3: guide 2 is higher than wide | make aMm the larger side',
+      // c/2a of 30 mm: 4997 MHz.
+      '4: guide 3 has a band that starts at or below its cut-off | raise the start of bandMHz',
+      '6: guide 5 is of the wrong kind | write { "id": …, "aMm": …, "bMm": …, "conductivitySPerM": … }',
+    ]);
+    const twice =
+      '{ "guides": [{ "id": "a", "aMm": 9, "lossDbPer100m": 3 }, { "id": "A", "aMm": 8, "lossDbPer100m": 3 }] }';
+    expect(problemsOf(twice)).toMatchObject([{ code: 'guide-twice', mend: 'give each guide its own id' }]);
+    expect(problemsOf('{ "guides": [] }')).toMatchObject([{ code: 'list-length' }]);
+  });
+
   it("readCables reads the program's own files", () => {
     for (const { file, text } of shippedFiles())
       expect([file, readCables(text, file).ok]).toEqual([file, true]);

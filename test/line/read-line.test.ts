@@ -119,6 +119,44 @@ describe('readLine', () => {
     expect(jointName(line, 3)).toBe('bulkhead');
   });
 
+  it('readLine takes a guide by its id or another name, and by its own figures', () => {
+    const line =
+      lineOf(`{ "sections": [{ "guide": "WR-137", "lengthM": 12 }, { "guide": "r 70", "lengthFt": 10, "label": "top" },
+      { "guide": { "id": "own", "aMm": 30, "lossDbPer100m": 7 } }] }`);
+    const table = { id: 'WR-137', name: 'WR-137 waveguide', aMm: 34.8488, bMm: 15.7988, lossDbPer100m: null };
+    expect(line.sections).toMatchObject([
+      { type: 'guide', guide: table, lengthM: 12, label: 'WR-137 waveguide', jointAfter: PLAIN_JOINT },
+      { type: 'guide', guide: table, lengthM: expect.closeTo(3.048, 12), label: 'top' },
+      {
+        type: 'guide',
+        guide: { id: 'own', aMm: 30, bMm: null, lossDbPer100m: 7, bandMHz: null },
+        lengthM: null,
+      },
+    ]);
+    // Like a cable, it takes the physics only to the worker.
+    expect(line.sections[0]?.type === 'guide' && Object.keys(line.sections[0].guide)).not.toContain(
+      'sources',
+    );
+  });
+
+  it('readLine says what is wrong with a guide', () => {
+    const text = `{ "sections": [
+      { "cable": "WR-137", "lengthM": 1 },
+      { "guide": "rg-213", "lengthM": 1 },
+      { "guide": { "id": "own", "aMm": 0, "bMm": 10 }, "lengthM": 1 },
+      { "guide": "WR-90" },
+      { "guide": "WR-90", "device": "bend", "lengthM": 1 }] }`;
+    expect(inWords(text)).toEqual([
+      '2: section 1, cable names a waveguide | write "guide": "WR-137"',
+      '3: section 2, guide names a guide that is not in the table: rg-213 | otherwise give the guide\'s own figures: { "id", "aMm", "lossDbPer100m" }',
+      '4: section 3, guide, aMm is out of range | write the inner width in millimetres, from 0.1 to 1000, for example 34.849',
+      '4: section 3, guide, lossDbPer100m is missing | write "lossDbPer100m": a loss in dB per 100 m, from 0 to 100000, for example 7.4 (dB per 100 ft × 3.2808)',
+      '4: section 3, guide, bMm is not a key that is known here | remove it; the keys here are id, aMm, lossDbPer100m',
+      '5: section 4 has no length | write "lengthM" (or "lengthFt"); only the last section may be of unknown length',
+      '6: section 5 is more than one of cable, guide and device | make a section of each',
+    ]);
+  });
+
   it('readLine turns a VSWR limit into return loss, and names a band without a name', () => {
     const line = lineOf(`{ "sections": [{ "cable": "rg-213" }],
       "limits": { "bands": [{ "fromMHz": 144, "toMHz": 146, "vswr": 1.5 }] } }`);
