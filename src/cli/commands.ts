@@ -12,7 +12,11 @@ export type FlagSpec = {
 };
 
 export const FLAGS = {
-  line: { value: 'FILE', help: 'line description; by default NAME.line.json beside NAME.s1p' },
+  line: {
+    value: 'FILE|NAME',
+    help: 'line description, or the name of a logged line; by default NAME.line.json beside NAME.s1p',
+  },
+  logbook: { value: 'FILE', help: 'another logbook than the one in your data folder' },
   cable: {
     value: 'ID',
     help: 'no line file but one cable of this type; without --length its end is searched for',
@@ -39,6 +43,17 @@ export const FLAGS = {
   'as-built': { value: 'SEED', help: 'a line as built: ripple, ordinary connectors, samples off their type' },
   seed: { value: 'NUMBER', help: 'seed of noise and residue; 1 by default' },
   output: { value: 'FILE', short: 'o', help: 'file to write' },
+  when: { value: 'DATE', help: 'when the sweep was taken: 2026-05-03 or 2026-05-03T14:30' },
+  who: { value: 'TEXT', help: 'who took the sweep' },
+  instrument: { value: 'TEXT', help: 'what it was taken with' },
+  weather: { value: 'TEXT', help: 'rain, frost, ...' },
+  note: { value: 'TEXT', help: 'anything worth knowing later' },
+  name: { value: 'NAME', help: 'name of the line where its description gives none' },
+  site: { value: 'SITE', help: 'its site; with list and export: only of this site' },
+  baseline: { value: null, help: 'later sweeps of the line are compared with this one' },
+  replace: { value: null, help: 'a sweep that is there already gets the new line, results and remarks' },
+  since: { value: 'DATE', help: 'only sweeps taken on this day or later' },
+  until: { value: 'DATE', help: 'only sweeps taken on this day or before' },
   force: { value: null, help: 'replace files that are already there' },
   help: { value: null, short: 'h', help: 'this text' },
   version: { value: null, help: 'the version of the program' },
@@ -76,6 +91,7 @@ export const ANALYSIS_FLAGS = [
   'standard-short',
   'standard-load',
   'cables',
+  'logbook',
   'units',
 ] as const satisfies readonly FlagName[];
 
@@ -165,6 +181,53 @@ export const VERBS = {
           'feedsonde simulate samples/north-1.line.json --fault series-resistance:10ohm@joint3 -o what-if.s1p',
         shows: 'a what-if, to be opened with --line samples/north-1.line.json',
       },
+    ],
+  },
+  log: {
+    arguments: 'ACTION ...',
+    fewestArguments: 1,
+    mostArguments: Number.POSITIVE_INFINITY,
+    summary: 'the logbook: sweeps and results by site and line',
+    description: [
+      'add SWEEP... analyses sweeps and saves each whole, with its line, its results and what you say about it; a ' +
+        'line file among them is stored as a line. list [LINE] shows the entries, show ENTRY|LINE one of them (a ' +
+        'line: its latest; -o FILE gives back its sweep byte for byte). baseline LINE [ENTRY] tells or chooses what ' +
+        'later sweeps are compared with. trend LINE follows each echo, the loss and the match over the years. ' +
+        'export FOLDER [LINE] writes sweeps and JSON, import FOLDER takes them into another logbook. check compares ' +
+        'every entry with the hashes taken when it was saved.',
+      'ENTRY is the beginning of its key, LINE the name of a line, also with hyphens for blanks: ' +
+        'ansel-ridge-north-1. The same sweep added twice is one entry.',
+      'Exit status: 0 done; 1: a sweep that was added shows a fault (it is saved all the same), or check found damage; ' +
+        '2: it could not be done.',
+    ],
+    flags: [
+      ...ANALYSIS_FLAGS,
+      'when',
+      'who',
+      'instrument',
+      'weather',
+      'note',
+      'name',
+      'site',
+      'baseline',
+      'replace',
+      'since',
+      'until',
+      'output',
+      'force',
+      'json',
+    ],
+    examples: [
+      {
+        command: 'feedsonde log add samples/north-1.s1p --when 2024-05-03 --who Mara --baseline',
+        shows: 'a sweep as the baseline of its line',
+      },
+      { command: 'feedsonde log add samples/north-1-later.s1p --when 2026-05-11', shows: 'two years later' },
+      { command: 'feedsonde log list', shows: 'all entries' },
+      { command: 'feedsonde log trend ansel-ridge-north-1', shows: 'how the line has changed' },
+      { command: 'feedsonde log show ansel-ridge-north-1', shows: 'its latest entry' },
+      { command: 'feedsonde log export logged', shows: 'a folder for another logbook' },
+      { command: 'feedsonde log check', shows: 'whether everything is as it was saved' },
     ],
   },
 } as const satisfies Readonly<Record<string, VerbSpec>>;

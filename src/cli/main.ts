@@ -57,6 +57,8 @@ async function runVerb(invocation: Invocation, argv: readonly string[]): Promise
       return (await import('./cables.ts')).runCables(invocation, io);
     case 'simulate':
       return (await import('./simulate.ts')).runSimulate(invocation, io, argv);
+    case 'log':
+      return (await import('./log.ts')).runLog(invocation, io);
     default:
       return assertNever(invocation.verb);
   }

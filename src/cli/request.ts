@@ -81,6 +81,7 @@ export async function prepareRequest(
 export function lineFlags(invocation: Invocation) {
   return {
     line: invocation.text('line'),
+    logbook: invocation.text('logbook'),
     cable: invocation.text('cable'),
     length: invocation.text('length'),
     end: invocation.text('end'),
