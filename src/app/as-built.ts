@@ -5,7 +5,7 @@
  * The figures are common practice for sound lines; they make simulated sweeps look like the field.
  */
 
-import type { Line, Section } from '../line/line.ts';
+import { hasGuide, type Line, type Section } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { createRandom, type Random } from '../numerics/random.ts';
@@ -117,10 +117,6 @@ export function drawAsBuilt(
   });
   const stray = line.sections.at(-1)?.type === 'guide' ? GUIDE_END_STRAY : 1;
   return { sections, joints, endStrayS: stray * between(END_STRAY_S, random) };
-}
-
-function hasGuide(line: Line): boolean {
-  return line.sections.some((section) => section.type === 'guide');
 }
 
 /** True on a guide, and beyond either end of a line, where what it is joined to has a flange too. */

@@ -105,6 +105,11 @@ export function jointName(line: Line, index: number): string {
   return after ? `${before.label} / ${after.label}` : `${before.label} / end`;
 }
 
+/** True for a line with a waveguide in it: along that there are no ohms to speak of. */
+export function hasGuide(line: Line): boolean {
+  return line.sections.some((section) => section.type === 'guide');
+}
+
 /** What a section is made of, in a few words: the cable's or guide's name, or what the device is. */
 export function sectionKind(section: Section): string {
   switch (section.type) {

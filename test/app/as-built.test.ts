@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { asDrawn, drawAsBuilt } from '../../src/app/as-built.ts';
+import { PLAIN_JOINT } from '../../src/line/line.ts';
 import { median } from '../../src/numerics/statistics.ts';
 import { makeLine } from '../assess/made-line.ts';
 
@@ -81,6 +82,59 @@ describe('drawAsBuilt', () => {
     // A double exponential has a median of ln 2/√2 = 0.49 of its RMS, a normal draw 0.67.
     expect(median(ratios) / rms).toBeLessThan(0.6);
     expect(Math.max(...ratios)).toBeLessThan(0.1);
+  });
+});
+
+describe('drawAsBuilt of a guide', () => {
+  const guide = {
+    id: 'own',
+    name: 'own guide',
+    aMm: 34.8488,
+    aToleranceMm: 0.1,
+    bMm: null,
+    conductivitySPerM: null,
+    lossDbPer100m: 6,
+    bandMHz: null,
+  };
+  const tubes = makeLine({
+    sections: [1.5, 4, 4].map((lengthM) => ({
+      type: 'guide' as const,
+      guide,
+      lengthM,
+      label: 'tube',
+      jointAfter: PLAIN_JOINT,
+    })),
+  });
+  const guideBand = { startHz: 5.9e9, stopHz: 7.9e9 };
+  const all = seeds.map((seed) => drawAsBuilt(tubes, guideBand, seed));
+
+  it('gives flanges 36 to 46 dB of return loss at the top of the band', () => {
+    for (const { joints } of all)
+      for (const { inductiveS, capacitiveS } of joints) {
+        const db = -20 * Math.log10(Math.PI * guideBand.stopHz * Math.abs(inductiveS - capacitiveS));
+        expect(db).toBeGreaterThanOrEqual(36);
+        expect(db).toBeLessThanOrEqual(46);
+      }
+  });
+
+  it('draws tubes that hold their width to a few tenths of a per cent, and short plates that add no length', () => {
+    for (const { sections, endStrayS } of all) {
+      for (const { velocity } of sections) expect(Math.abs(velocity - 1)).toBeLessThan(0.0025);
+      expect(endStrayS).toBeLessThan(0.03e-12 + 1e-18);
+    }
+  });
+
+  it('leaves the cables of a mixed run the ripple that they would have without the guide', () => {
+    const [jumper] = line.sections;
+    const mixed = drawAsBuilt({ ...line, sections: [jumper!, tubes.sections[1]!] }, guideBand, 5);
+    const alone = drawAsBuilt({ ...line, sections: [jumper!] }, guideBand, 5);
+    // The draws of the slabs are the same; the level of the ripple is drawn after them.
+    const lengthsOf = (drawn: typeof alone): number[] => drawn.sections[0]!.slabs.map((slab) => slab.lengthM);
+    expect(lengthsOf(mixed)).toEqual(lengthsOf(alone));
+    const rms = (ratios: readonly number[]): number =>
+      Math.sqrt(ratios.reduce((sum, r) => sum + Math.log(r) ** 2, 0) / ratios.length);
+    const cableRms = rms(mixed.sections[0]!.slabs.map((slab) => slab.ratio));
+    expect(cableRms).toBeGreaterThan(2 * rms(mixed.sections[1]!.slabs.map((slab) => slab.ratio)));
   });
 });
 

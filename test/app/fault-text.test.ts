@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { FAULT_FORMS, parseFault } from '../../src/app/fault-text.ts';
+import { FAULT_FORMS, NORMALISED_FORMS, parseFault } from '../../src/app/fault-text.ts';
 
 const read = (text: string): unknown => {
   const fault = parseFault(text);
@@ -23,6 +23,19 @@ describe('parseFault', () => {
     ['wet:er1.5@1m-2m', { kind: 'wet', k2Factor: 1, permittivityFactor: 1.5, fromM: 1, toM: 2 }],
   ])('reads %s', (text, expected) => {
     expect(read(text)).toEqual(expected);
+  });
+
+  it.each([
+    ['series-resistance:r0.2@joint3', 'series-resistance', 0.2],
+    ['shunt-leakage:g0.05@joint3', 'shunt-leakage', 0.05],
+    ['series-inductance:X1.5@joint3', 'series-inductance', 1.5],
+    ['shunt-capacitance:b2@joint3', 'shunt-capacitance', 2],
+  ])('reads %s, a size relative to the line', (text, kind, normalised) => {
+    expect(read(text)).toEqual({ kind, normalised, place: { at: 'joint', joint: 3 } });
+  });
+
+  it('reads every form without a unit that messages show', () => {
+    for (const form of Object.values(NORMALISED_FORMS)) expect(parseFault(form).ok, form).toBe(true);
   });
 
   it('takes henries and farads from nH and pF', () => {
@@ -52,6 +65,11 @@ describe('parseFault', () => {
     ['section:0ohm@20m-23m', 'fault-text'],
     ['wet:k2x0.5@20m-28m', 'fault-text'],
     ['wet:@20m-28m', 'fault-text'],
+    ['series-resistance:x0.2@joint3', 'fault-text'],
+    ['series-inductance:x0@joint3', 'fault-text'],
+    ['series-inductance:x0.2ohm@joint3', 'fault-text'],
+    ['series-inductance:x1e9@joint3', 'fault-text'],
+    ['series-inductance:x0.2@3', 'fault-text'],
   ])('refuses %j', (text, code) => {
     expect(read(text)).toBe(code);
   });

@@ -36,6 +36,34 @@ describe('firstLook', () => {
     expect(firstLook({ ...request, line }, view)).toBeNull();
   });
 
+  it('leaves out what lies at or below the cut-off of a guide', () => {
+    const [section] = analysis.line.sections;
+    // c/2a above the lower half of the sweep, below its upper end.
+    const { frequencyHz } = analysis.sweep;
+    const cutoffHz = frequencyHz[frequencyHz.length >> 1]!;
+    const guide = {
+      id: 'own',
+      name: 'own',
+      aMm: 299_792_458e3 / (2 * cutoffHz),
+      aToleranceMm: 1,
+      bMm: null,
+      conductivitySPerM: null,
+      lossDbPer100m: 3,
+      bandMHz: null,
+    };
+    const line = {
+      ...analysis.line,
+      sections: [
+        { type: 'guide' as const, guide, lengthM: 20, label: 'tube', jointAfter: section!.jointAfter },
+      ],
+    };
+    const look = firstLook({ ...request, line }, view)!;
+    expect(look.value.re.every(Number.isFinite)).toBe(true);
+    const narrow = { ...guide, aMm: 1 };
+    const none = { ...line, sections: [{ ...line.sections[0]!, guide: narrow }] };
+    expect(firstLook({ ...request, line: none }, view)).toBeNull();
+  });
+
   it('leaves it to the analysis to say what cannot be read', () => {
     expect(firstLook({ ...request, sweepBytes: new Uint8Array() }, view)).toBeNull();
     expect(firstLook({ ...request, windowSpec: 'no such' }, view)).toBeNull();

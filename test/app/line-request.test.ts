@@ -62,6 +62,27 @@ describe('requestLine', () => {
     expect(outcome.ok && outcome.notices.map((notice) => notice.code)).toContain('line-beside');
   });
 
+  it('takes a guide by --cable, its length known or not', async () => {
+    const known = await request({ cable: 'WR-137', length: '20m' });
+    expect(known.ok && known.value).toMatchObject({
+      lineDescribed: true,
+      line: {
+        sections: [{ type: 'guide', guide: { id: 'WR-137' }, lengthM: 20, label: 'WR-137 waveguide' }],
+      },
+    });
+    const open = await request({ cable: 'r70' });
+    expect(open.ok && open.value).toMatchObject({
+      lineDescribed: false,
+      line: { sections: [{ lengthM: null }] },
+    });
+  });
+
+  it('names near guides for a slip, and refuses a velocity factor where nothing has one', async () => {
+    const slip = await request({ cable: 'WR-138' });
+    expect(!slip.ok && slip.problems[0]?.mend).toContain('"WR-137"');
+    expect(await codesOf({ cable: 'WR-137', velocityFactor: '0.8' })).toEqual(['flag-clash']);
+  });
+
   it('says nothing about a line file that was named', async () => {
     const outcome = await request({ line: join(folder, 'run.line.json') }, '-');
     expect(outcome.ok && outcome.notices).toEqual([]);

@@ -27,7 +27,10 @@ describe('feedsonde cables', () => {
 
   it('gives of each entry what a script needs', async () => {
     for (const entry of await entries()) {
-      for (const key of ['z0', 'velocityFactor', 'k1', 'k2']) expect(typeof entry[key], key).toBe('number');
+      const guide = entry['type'] === 'guide';
+      for (const key of ['z0', 'velocityFactor', 'k1', 'k2'])
+        expect(entry[key] === null ? 'null' : typeof entry[key], key).toBe(guide ? 'null' : 'number');
+      if (guide) for (const key of ['aMm', 'bMm', 'cutoffMHz']) expect(typeof entry[key], key).toBe('number');
       expect(entry['name']).not.toBe('');
     }
   });
@@ -45,6 +48,40 @@ describe('feedsonde cables', () => {
     const { stdout } = await runCli(['cables', 'rg-213', '--at', '900MHz', '--length', '46m']);
     expect(stdout).toContain(`${run.lossDb.toFixed(2)} dB for 46.00 m at 900 MHz, 20 °C`);
     expect(stdout).toContain(`${run.delayNs.toFixed(2)} ns one way`);
+  });
+
+  it('gives loss, delay, cut-off and wavelength of a guide', async () => {
+    const [entry] = await entries('WR-137', '--at', '6.5GHz', '--length', '20m');
+    const { run, cutoffMHz } = entry as unknown as {
+      readonly cutoffMHz: number;
+      readonly run: { readonly lossDb: number; readonly delayNs: number; readonly guideWavelengthM: number };
+    };
+    // c/2a with a = 1.372 in; delay L/(c·√(1 − (fc/f)²)); λg = λ0/√(1 − (fc/f)²). @source references.md section 4.
+    expect(cutoffMHz).toBeCloseTo(299.792458 / (2 * 1.372 * 0.0254), 6);
+    const root = Math.sqrt(1 - (cutoffMHz / 6500) ** 2);
+    expect(run.delayNs).toBeCloseTo(20 / 0.299792458 / root, 6);
+    expect(run.guideWavelengthM).toBeCloseTo(0.299792458 / 6.5 / root, 9);
+    // Between the copper losses at 5.85 and 8.2 GHz, 6.40 and 5.05 dB per 100 m.
+    expect(run.lossDb).toBeGreaterThan(1.01);
+    expect(run.lossDb).toBeLessThan(1.28);
+    const { stdout } = await runCli(['cables', 'wr137', '--at', '6.5GHz', '--length', '20m']);
+    expect(stdout).toContain(`${run.lossDb.toFixed(2)} dB for 20.00 m at 6.5 GHz, 20 °C`);
+    expect(stdout).toContain(`${run.delayNs.toFixed(2)} ns one way`);
+    expect(stdout).toContain('4301.3 MHz (TE10)');
+    expect(stdout).toContain('61.52 mm along the guide');
+    expect(stdout).toContain('with the far end shorted');
+  });
+
+  it('says so outside the band of a guide, and refuses what does not travel in it', async () => {
+    const { stdout } = await runCli(['cables', 'WR-137', '--at', '4.6GHz']);
+    expect(stdout.replace(/\s+/gu, ' ')).toContain(
+      'meant for 5850–8200 MHz; below it its delay and loss rise steeply',
+    );
+    const refused = await runCli(['cables', 'WR-137', '--at', '4301MHz']);
+    expect(refused).toMatchObject({ status: 2, stdout: '' });
+    expect(refused.stderr).toMatch(
+      /nothing travels in WR-137 waveguide at or below its cut-off, 4301.3 MHz/u,
+    );
   });
 
   it('takes and shows feet and °F', async () => {
