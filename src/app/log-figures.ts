@@ -8,7 +8,7 @@ import type { Sweep } from '../sweep/sweep.ts';
 import type { Analysis } from './analysis.ts';
 import { echoWords } from './echo-words.ts';
 
-/** Name of the match over everything that was swept, which every sweep has. */
+/** Name of the match over everything that was swept: what is followed where the line names no bands. */
 export const WHOLE_SWEEP = 'whole sweep';
 
 /** Takes the figures out; those of a loss check are null, for `locate` makes none. */
@@ -33,7 +33,9 @@ export function figuresOf(analysis: Analysis): EntryFigures {
     lossSigmaDb: null,
     lossMarginDb: null,
     lossPass: null,
-    bands: [whole, ...line.limits.bands].flatMap((band) => bandFigures(band, sweep)),
+    bands: (line.limits.bands.length > 0 ? line.limits.bands : [whole]).flatMap((band) =>
+      bandFigures(band, sweep),
+    ),
     echoes: solution.echoes.flatMap((echo, i) => {
       const { distanceM, distanceSigmaM, returnLossDb: seenDb, correctedReturnLossDb, kind } = echo;
       const figures: EchoFigures = {

@@ -7,7 +7,7 @@
 import { link, mkdir, open, rename, rm, stat } from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
 import { type Logbook, openLogbook } from '../logbook/logbook.ts';
-import { versionProblem } from '../logbook/schema.ts';
+import { markProblem } from '../logbook/schema.ts';
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { diskProblem, fileExists, shownName } from './files.ts';
 import { dataFolder } from './settings.ts';
@@ -45,7 +45,7 @@ export async function openLogbookFile(
     if (!made.ok) return made;
   }
   const refused = await looksWrong(place, file);
-  return refused ? fail(refused) : openLogbook(place, file, options.patienceMs);
+  return refused ? fail(refused) : openLogbook(place, { ...options, file });
 }
 
 /** The problem with what lies at this place, seen without SQLite; null when it is a logbook as far as one can see. */
@@ -67,12 +67,7 @@ async function looksWrong(place: string, file: string): Promise<Problem | null> 
               : 'this file is not a logbook, or was overwritten',
           mend: 'check the name; the file was left as it is',
         };
-      const wrong = versionProblem(
-        header.readUInt32BE(APPLICATION_AT),
-        header.readUInt32BE(VERSION_AT),
-        file,
-      );
-      return wrong?.problems[0] ?? null;
+      return markProblem(header.readUInt32BE(APPLICATION_AT), header.readUInt32BE(VERSION_AT), file);
     } finally {
       await handle.close();
     }
@@ -88,7 +83,7 @@ async function makeLogbook(place: string, file: string, makeFolder: boolean): Pr
     if (makeFolder) await mkdir(dirname(place), { recursive: true });
     await stat(dirname(place));
     await (await open(draft, 'wx')).close();
-    const made = openLogbook(draft, file);
+    const made = openLogbook(draft, { file, fresh: true });
     if (!made.ok) return made;
     made.value.close();
     await putInPlace(draft, place);

@@ -1,7 +1,7 @@
 /** Entries of the logbook as text: the list, and one of them with what was concluded. */
 
 import type { Severity } from '../locate/echo.ts';
-import { type Entry, type EntrySummary, shortKey } from '../logbook/entry.ts';
+import { type EchoFigures, type Entry, type EntrySummary, shortKey } from '../logbook/entry.ts';
 import { fullName } from '../logbook/stored-lines.ts';
 import type { Verification } from '../logbook/verify.ts';
 import { cutText, wrapText } from '../plot/cells.ts';
@@ -39,6 +39,12 @@ export function verdictWords({ faults, watches }: Pick<EntrySummary, 'faults' | 
 /** Wall time with a blank in place of the T. */
 export function whenText(takenAt: string): string {
   return takenAt.replace('T', ' ');
+}
+
+/** What an echo is and where: an end and an ordinary joint say both at once. */
+export function echoLabel({ kind, words, place }: EchoFigures): string {
+  if (words.startsWith('end: ')) return words;
+  return kind === 'joint' ? place.replace(/^at /u, '') : `${words}, ${place}`;
 }
 
 /** A table of entries, one line each, and how many there are. */
@@ -89,7 +95,7 @@ export function entryText(entry: Entry, { columns, units, paint }: LogTextOption
       lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, units),
       fixedText(-echo.returnLossDb, 1),
       fixedText(-echo.correctedReturnLossDb, 1),
-      `${echo.words}, ${echo.place}`,
+      echoLabel(echo),
     ]),
   );
   const head = `${MARKS[severity]} ${fullName(entry.line)}, ${whenText(entry.takenAt)}: ${verdictWords(entry)}`;

@@ -6,7 +6,7 @@ import { cutText, fitText, wrapText } from '../plot/cells.ts';
 import { drawChart } from '../plot/chart.ts';
 import { fixedText, frequencyText, lengthText } from '../plot/quantity-text.ts';
 import { runsText } from '../plot/run.ts';
-import { type LogTextOptions, MARKS, whenText } from './log-text.ts';
+import { echoLabel, type LogTextOptions, MARKS, whenText } from './log-text.ts';
 import { tableLines } from './table-lines.ts';
 
 const CHART_ROWS = 10;
@@ -98,7 +98,7 @@ function echoLines(trend: LineTrend, { columns, units, paint }: LogTextOptions):
         fixedText(echo.levelDb.points.at(-1)!.value, 1),
         signed(echo.levelDb.change, 1),
         signed(echo.levelDb.perYear, 1),
-        `${echo.words}, ${echo.place}${seenWords(echo, trend)}`,
+        `${echoLabel(last.echo)}${seenWords(echo, trend)}`,
       ];
     }),
   );

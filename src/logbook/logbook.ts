@@ -56,17 +56,22 @@ export type Logbook = {
 const PATIENCE_MS = 10_000;
 
 /**
- * Opens a logbook that exists (an empty file becomes a new one).
+ * Opens a logbook.
  *
  * Write-ahead log with full sync: what was reported saved survives a kill and a power cut. The write-ahead log needs
  * shared memory beside the file, so a logbook belongs on a disk of this machine, not on a network share.
  *
- * @param path Of the file.
- * @param file Name for people.
- * @param patienceMs How long to wait for another program that writes.
+ * @param path Of the file, which exists.
+ * @param options.file Name for people.
+ * @param options.fresh Makes a logbook of an empty file.
+ * @param options.patienceMs How long to wait for another program that writes; default 10 s.
  * @returns The logbook; or why it cannot be opened. The file is then as it was.
  */
-export function openLogbook(path: string, file: string, patienceMs = PATIENCE_MS): Outcome<Logbook> {
+export function openLogbook(
+  path: string,
+  options: { readonly file: string; readonly fresh?: boolean; readonly patienceMs?: number },
+): Outcome<Logbook> {
+  const { file, fresh = false, patienceMs = PATIENCE_MS } = options;
   const driver = findDriver();
   if (!driver) return fail(noDriverProblem(file));
   return guarded(file, () => {
@@ -75,12 +80,12 @@ export function openLogbook(path: string, file: string, patienceMs = PATIENCE_MS
       db.exec(`PRAGMA busy_timeout = ${patienceMs}`);
       db.exec('PRAGMA synchronous = FULL');
       db.exec('PRAGMA foreign_keys = ON');
-      const migrated = migrate(db, file);
+      const migrated = migrate(db, file, fresh);
       if (!migrated.ok) {
         db.close();
         return migrated;
       }
-      db.exec('PRAGMA journal_mode = WAL');
+      if (fresh) db.exec('PRAGMA journal_mode = WAL');
     } catch (error) {
       db.close();
       throw error;

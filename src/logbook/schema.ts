@@ -1,5 +1,5 @@
 /** The tables of a logbook, as a list of migrations: the number of those done is the version of the file. */
-import { fail, type Outcome, succeed } from '../outcome.ts';
+import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import type { Database } from './driver.ts';
 import { inTransaction } from './trouble.ts';
 
@@ -64,16 +64,17 @@ export const SCHEMA_VERSION = MIGRATIONS.length;
  * Brings a database up to this program's version, or refuses one that is ahead of it or is something else.
  *
  * @param file Name for the problems.
+ * @param fresh True for a file that was made for this a moment ago; any other without the mark is not ours.
  */
-export function migrate(db: Database, file: string): Outcome<null> {
-  const known = versionProblem(applicationId(db), version(db), file);
-  if (known) return known;
+export function migrate(db: Database, file: string, fresh: boolean): Outcome<null> {
+  const wrong = fresh ? null : markProblem(applicationId(db), version(db), file);
+  if (wrong) return fail(wrong);
   if (version(db) === SCHEMA_VERSION) return succeed(null);
   return inTransaction(db, () => {
     // Another program may have been faster.
     const from = version(db);
-    const late = versionProblem(applicationId(db), from, file);
-    if (late) return late;
+    const late = fresh ? null : markProblem(applicationId(db), from, file);
+    if (late) return fail(late);
     for (const migration of MIGRATIONS.slice(from)) db.exec(migration);
     db.exec(`PRAGMA application_id = ${APPLICATION_ID}`);
     db.exec(`PRAGMA user_version = ${SCHEMA_VERSION}`);
@@ -81,26 +82,22 @@ export function migrate(db: Database, file: string): Outcome<null> {
   });
 }
 
-/**
- * The problem with a file of this mark and version; null when there is none.
- *
- * @param id Application id; 0 only in a file that has just been made.
- */
-export function versionProblem(id: number, fileVersion: number, file: string) {
-  if (id !== APPLICATION_ID && (id !== 0 || fileVersion !== 0))
-    return fail({
+/** The problem with a SQLite file of this mark and version; null when there is none. */
+export function markProblem(id: number, fileVersion: number, file: string): Problem | null {
+  if (id !== APPLICATION_ID)
+    return {
       code: 'logbook-not-one',
       file,
       what: 'this is the database of another program, not a logbook',
       mend: 'check the name; the file was left as it is',
-    });
+    };
   if (fileVersion > SCHEMA_VERSION)
-    return fail({
+    return {
       code: 'logbook-newer',
       file,
       what: `the logbook was written by a newer feedsonde (its version ${fileVersion}, known here ${SCHEMA_VERSION})`,
       mend: 'update feedsonde on this machine; the logbook was left as it is',
-    });
+    };
   return null;
 }
 

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { TYPED_VERBS } from '../../src/cli/commands.ts';
 import { type Invocation, parseArguments } from '../../src/cli/parse-arguments.ts';
 import type { Problem } from '../../src/outcome.ts';
 
@@ -61,7 +62,7 @@ describe('parseArguments', () => {
     [
       ['xyzzy'],
       'verb-unknown',
-      'the verbs are locate, cables, simulate; to open a sweep of that name write ./xyzzy',
+      `the verbs are ${TYPED_VERBS.join(', ')}; to open a sweep of that name write ./xyzzy`,
     ],
     [['locate', 'a.s1p', '--lenght', '3m'], 'flag-unknown', 'did you mean --length?'],
     [['locate', 'a.s1p', '--fault', 'open@3m'], 'flag-unknown', 'feedsonde locate --help lists the flags'],
