@@ -24,7 +24,7 @@ const samples = [
   { name: 'south-3', built: 15, seed: 106, faults: ['open@17.4m'] },
   {
     name: 'link-1',
-    built: 16,
+    built: 20,
     seed: 107,
     faults: ['series-inductance:x0.15@joint4'],
     sweep: '5900MHz-7900MHz:801',

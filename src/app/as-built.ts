@@ -5,7 +5,7 @@
  * The figures are common practice for sound lines; they make simulated sweeps look like the field.
  */
 
-import { hasGuide, type Line, type Section } from '../line/line.ts';
+import { type GuideSection, hasGuide, type Line, type Section } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { createRandom, type Random } from '../numerics/random.ts';
@@ -44,7 +44,9 @@ const JOINT_DB = [30, 40] as const;
 const FLANGE_DB = [36, 46] as const;
 /** 1σ of a sample against its type. */
 const VELOCITY_SPREAD = 0.002;
-const GUIDE_WIDTH_SPREAD = 0.0005;
+/** Tubes of one lot share a die: the same deviation of the width, and hardly one of their own. */
+const GUIDE_LOT_SPREAD = 0.0005;
+const GUIDE_WIDTH_SPREAD = 0.00003;
 const IMPEDANCE_SPREAD = 0.006;
 const LOSS_SPREAD = 0.02;
 /** Fringe capacitance of a cut 50 Ω line is some 0.05 pF, a soldered short some 0.1 nH: both about 2 ps. */
@@ -81,9 +83,11 @@ export function drawAsBuilt(
   seed: number,
 ): AsBuilt {
   const random = createRandom(seed);
+  const lots = new Map<string, number>();
   const drawn = line.sections.map((section) => ({
     section,
-    velocity: 1 + (section.type === 'guide' ? GUIDE_WIDTH_SPREAD : VELOCITY_SPREAD) * random.normal(),
+    velocity:
+      section.type === 'guide' ? drawWidth(section, lots, random) : 1 + VELOCITY_SPREAD * random.normal(),
     impedance: 1 + IMPEDANCE_SPREAD * random.normal(),
     loss: 1 + LOSS_SPREAD * random.normal(),
     shapes: section.type === 'device' ? [] : drawShapes(section.lengthM ?? 0, random),
@@ -122,6 +126,13 @@ export function drawAsBuilt(
 /** True on a guide, and beyond either end of a line, where what it is joined to has a flange too. */
 function isGuided(line: Line, section: number): boolean {
   return (line.sections[section]?.type ?? 'guide') === 'guide';
+}
+
+/** Width of a tube over that of its type. */
+function drawWidth(section: GuideSection, lots: Map<string, number>, random: Random): number {
+  const { id } = section.guide;
+  if (!lots.has(id)) lots.set(id, 1 + GUIDE_LOT_SPREAD * random.normal());
+  return lots.get(id)! + GUIDE_WIDTH_SPREAD * random.normal();
 }
 
 /** A slab before its ripple is scaled. */

@@ -6,6 +6,7 @@ import {
   guideGroupDelaySPerM,
   guideLossDbPer100m,
   guideNextModeHz,
+  guidePhasePerWidth,
   guidePhaseRadPerM,
   guideReach,
   guideVelocitySpread,
@@ -173,6 +174,33 @@ describe('guideReach', () => {
       { startHz: 9e9, stopHz: 10e9, points: 1 },
     ])
       expect(() => guideReach(found, sweep)).toThrow(RangeError);
+  });
+});
+
+describe('guidePhasePerWidth', () => {
+  it('is the slope of β over the width, (π/a)²/β', () => {
+    const { aMm } = guide('WR-137');
+    for (const f of [4.5e9, 5.9e9, 7.9e9]) {
+      const h = 1e-6;
+      const slope =
+        (guidePhaseRadPerM({ aMm: aMm * (1 + h) }, f) - guidePhaseRadPerM({ aMm: aMm * (1 - h) }, f)) /
+        (2 * h);
+      // Second order of a step of 1e-6, and eleven digits left in the difference.
+      expect(guidePhasePerWidth({ aMm }, f) / slope).toBeCloseTo(1, 7);
+    }
+  });
+
+  it('turns an echo 10 m out by about a sixth of a radian, per ten-thousandth, beyond what a delay explains', () => {
+    const { aMm } = guide('WR-137');
+    const frequencies = Array.from({ length: 201 }, (_, k) => 5.9e9 + k * 1e7);
+    const beta = frequencies.map((f) => guidePhaseRadPerM({ aMm }, f));
+    const turn = frequencies.map((f) => 2 * 10 * 1e-4 * guidePhasePerWidth({ aMm }, f));
+    // The straight line through turn against β: its slope is a distance, its intercept the phase of the kind.
+    const mean = (values: readonly number[]): number => values.reduce((sum, v) => sum + v, 0) / values.length;
+    const [mb, mt] = [mean(beta), mean(turn)];
+    const slope = mean(beta.map((b, k) => (b - mb) * (turn[k]! - mt))) / mean(beta.map((b) => (b - mb) ** 2));
+    expect(Math.abs(mt - slope * mb)).toBeGreaterThan(0.1);
+    expect(Math.abs(mt - slope * mb)).toBeLessThan(0.4);
   });
 });
 
