@@ -79,7 +79,9 @@ export function analyse(
     lineDescribed: request.lineDescribed,
     reach,
     trace,
-    impedance: impedanceOf(request.line, sweep, reach.impedanceProfile, solution),
+    impedance: request.skipImpedance
+      ? null
+      : impedanceOf(request.line, sweep, reach.impedanceProfile, solution),
     solution,
     severities,
     places,

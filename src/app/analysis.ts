@@ -18,7 +18,7 @@ export type Analysis = {
   readonly reach: Reach;
   /** Corrected trace over the line with the chosen window, for a first look. */
   readonly trace: DistanceTrace;
-  /** Null when reach says 'no'. */
+  /** Null when reach says 'no', or when the request left it out. */
   readonly impedance: ImpedanceProfile | null;
   readonly solution: Solution;
   /** Severity of each echo, same order as `solution.echoes`. */

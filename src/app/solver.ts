@@ -17,6 +17,8 @@ export type AnalyseRequest = {
   readonly port: number | null;
   /** How far the reference plane lies from the instrument, m, toward the line. */
   readonly offsetM: number;
+  /** True leaves the impedance profile out, which costs as much again as a sound line's solve. */
+  readonly skipImpedance?: boolean;
   /** Sweeps of the three standards that correct the sweep first; null for a corrected sweep. */
   readonly standards: null | {
     readonly open: Uint8Array;

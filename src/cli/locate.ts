@@ -22,7 +22,7 @@ export async function runLocate(invocation: Invocation, io: Io): Promise<ExitSta
   if (!prepared.ok || refused)
     return printProblems(io, [...(refused ? [refused] : []), ...(prepared.ok ? [] : prepared.problems)]);
   const { request, settings } = prepared.value;
-  const outcome = analyse(request);
+  const outcome = analyse({ ...request, skipImpedance: traceFile === null });
   if (!outcome.ok) return printProblems(io, outcome.problems);
   const analysis = outcome.value;
   const notices = [...prepared.notices, ...outcome.notices];

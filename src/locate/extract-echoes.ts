@@ -4,7 +4,7 @@
  * Working on the whole cascade instead of a sum of echoes means that ghosts are explained, never found.
  */
 
-import { evaluateCost, type FitContext, refine, residualEnergy, residualVariance } from './fit-cascade.ts';
+import { evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { fitOneLump, type LumpFit } from './fit-lumps.ts';
 import { type JointVerdict, judgeJoint } from './judge-joints.ts';
 import {
@@ -12,15 +12,13 @@ import {
   addFreeLump,
   around,
   boundaryAt,
-  cloneModel,
   type LineModel,
   type Lump,
   lumpDistanceM,
   removeLump,
-  restoreModel,
   translate,
 } from './line-model.ts';
-import { localEcho } from './local-echo.ts';
+import { type LocalEcho, localEcho } from './local-echo.ts';
 import { expectBoundary, placeJoints } from './place-joints.ts';
 import { lumpedTypeOf, lumpReturnLossDb, pureTypeOf } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
@@ -73,7 +71,7 @@ export type Extracted = { readonly verdicts: ReadonlyMap<number, JointVerdict> }
 export function extractEchoes(context: FitContext, model: LineModel, settings: SearchSettings): Extracted {
   const verdicts = new Map<number, JointVerdict>();
   const refused: number[] = [];
-  let trace = traceResidual(context, model, settings);
+  let trace = traceResidual(context, settings);
   let calm = false;
   for (let round = 0; round < MOST_ROUNDS; round++) {
     settings.onRound?.(round, MOST_ROUNDS);
@@ -83,7 +81,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
       settings.onCalm?.(round > 0);
       placeJoints(context, model, verdicts);
       refineAll(context, model);
-      trace = traceResidual(context, model, settings);
+      trace = traceResidual(context, settings);
       continue;
     }
     if (peak === null) break;
@@ -102,13 +100,14 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
     }
     if (calm) refineAll(context, model);
     else evaluateCost(context, model, ALL_FREE, 1);
-    trace = traceResidual(context, model, settings);
+    trace = traceResidual(context, settings);
   }
   if (!calm) refineAll(context, model);
   mergeIntoJoints(context, model, settings, verdicts);
   retestTypes(context, model, settings);
+  dropCompanions(context, model, settings);
   pruneLumps(context, model, settings);
-  refineAll(context, model);
+  evaluateCost(context, model, ALL_FREE, 1);
   return { verdicts };
 }
 
@@ -209,9 +208,10 @@ function mergeIntoJoints(
   const merged = new Set<number>();
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
     const boundary = nearestBoundary(model, cells, lumpDistanceM(model, lump));
-    if (boundary === null || boundary === 0 || boundary === model.boundaryM.length) continue;
+    if (boundary === null || boundary === 0) continue;
     removeLump(model, lump.id);
-    merged.add(boundary);
+    if (boundary === model.boundaryM.length) settle(context, model, settings, lumpDistanceM(model, lump));
+    else merged.add(boundary);
   }
   for (const boundary of merged) verdicts.set(boundary, judgeJoint(context, model, settings, boundary));
 }
@@ -276,20 +276,25 @@ const PRUNE_COST = 30;
 
 /** Drops lumps without which the sweep is explained as well. */
 function pruneLumps(context: FitContext, model: LineModel, settings: SearchSettings): void {
-  dropCompanions(context, model, settings);
-  refineAll(context, model);
-  const trace = traceResidual(context, model, settings);
+  const trace = traceResidual(context, settings);
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
     evaluateCost(context, model, ALL_FREE, 1);
     const mean = residualVariance(context);
-    const variance = localVariance(trace, lumpDistanceM(model, lump), settings.resolutionM, mean);
-    const kept = residualEnergy(context);
-    const trial = cloneModel(model);
-    removeLump(trial, lump.id);
-    refine(context, trial, ALL_FREE, { variance: mean, maxIterations: 5 });
-    const gain = (residualEnergy(context) - kept) / variance;
-    if (gain < PRUNE_COST) restoreModel(model, trial);
+    const distanceM = lumpDistanceM(model, lump);
+    const variance = localVariance(trace, distanceM, settings.resolutionM, mean);
+    const echo = localEcho(context, model, distanceM, { lumps: [lump.id], boundary: null });
+    const [best] = fitOneLump(echo, LUMP_REACH * settings.resolutionM, variance);
+    if (best && localEnergy(echo) / variance - best.cost > PRUNE_COST) continue;
+    removeLump(model, lump.id);
+    settle(context, model, settings, distanceM);
   }
+}
+
+/** Σ w·|q|²: what a place costs when nothing stands there. */
+function localEnergy({ re, im, weight }: LocalEcho): number {
+  let sum = 0;
+  for (let b = 0; b < weight.length; b++) sum += weight[b]! * (re[b]! ** 2 + im[b]! ** 2);
+  return sum;
 }
 
 /** Drops what stands within a cell of something far stronger: that one's own imperfection. */

@@ -330,15 +330,13 @@ function tryKind(
     kind === 'antenna'
       ? antennaStarts(base, search, startsM).map((distanceM) => ({ distanceM, value: 0 }))
       : phaseStarts(context, base, search, kind, startsM);
+  if (kind === 'antenna') return [bestAntenna(context, base, freedom, starts)];
   return starts.map((start): Trial => {
     const model = cloneModel(base);
     moveEnd(model, start.distanceM);
     model.end = startingEnd(kind, start.value);
-    if (kind === 'antenna') fitAntenna(context, model, freedom);
-    else {
-      evaluateCost(context, model, freedom, 1);
-      refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 10 });
-    }
+    evaluateCost(context, model, freedom, 1);
+    refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 10 });
     return { model, kind, energy: residualEnergy(context) };
   });
 }
@@ -354,6 +352,30 @@ function expectedEnd(base: LineModel): { readonly meanM: number; readonly sigmaM
 
 /** Standard deviations of the description within which the end is looked for. */
 const END_SIGMAS = 3.5;
+
+/** Resonances that a first look at a starting distance fits. */
+const FIRST_RESONANCES = 2;
+
+/** An antenna fitted roughly from every start, and in full from the best. */
+function bestAntenna(
+  context: FitContext,
+  base: LineModel,
+  freedom: Freedom,
+  starts: readonly { readonly distanceM: number }[],
+): Trial {
+  let best: Trial | null = null;
+  for (const { distanceM } of starts) {
+    const model = cloneModel(base);
+    moveEnd(model, distanceM);
+    model.end = startingEnd('antenna', 0);
+    fitAntenna(context, model, freedom, FIRST_RESONANCES);
+    const energy = residualEnergy(context);
+    if (best === null || energy < best.energy) best = { model, kind: 'antenna', energy };
+  }
+  const { model } = best!;
+  fitAntenna(context, model, freedom);
+  return { model, kind: 'antenna', energy: residualEnergy(context) };
+}
 
 /**
  * Starting distances of an antenna: the echo's tip lies behind the antenna by the delay of its resonances, which in a

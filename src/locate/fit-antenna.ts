@@ -12,8 +12,9 @@ import { cloneModel, type Freedom, type LineModel, restoreModel } from './line-m
 
 /** Most resonances of one antenna. */
 const MOST_RESONANCES = 5;
-/** Parameters of one resonance. */
+/** Parameters of one resonance, and of the constant part. */
 const PER_RESONANCE = 4;
+const CONSTANT_PART = 2;
 /** Gain over the information criterion that one more resonance must bring, as a factor of it. */
 const WORTH = 1.5;
 
@@ -24,18 +25,25 @@ const WIDTHS = [0.03, 0.06, 0.12, 0.25, 0.5, 1];
 /**
  * Fits an antenna at the end of the model, in place.
  *
- * @param model Its end is an antenna without resonances to begin with.
+ * @param model Its end is an antenna, with or without resonances to begin with.
+ * @param most Resonances at most.
  */
-export function fitAntenna(context: FitContext, model: LineModel, freedom: Freedom): void {
+export function fitAntenna(
+  context: FitContext,
+  model: LineModel,
+  freedom: Freedom,
+  most = MOST_RESONANCES,
+): void {
   const points = context.weight.reduce((sum, w) => sum + w, 0);
   settle(context, model, freedom, 6);
-  for (let count = 0; count < MOST_RESONANCES; count++) {
+  const already = (model.end.parameters.length - CONSTANT_PART) / PER_RESONANCE;
+  for (let count = already; count < most; count++) {
     const before = Math.max(residualEnergy(context), 1e-14);
     const trial = cloneModel(model);
     const found = strongestResonance(context, trial, freedom);
     if (found === null) return;
     trial.end = { type: 'antenna', parameters: [...trial.end.parameters, ...found] };
-    settle(context, trial, freedom, 12);
+    settle(context, trial, freedom, most === MOST_RESONANCES ? 10 : 5);
     const after = Math.max(residualEnergy(context), 1e-14);
     const gain = 2 * points * Math.log(before / after);
     if (gain < WORTH * PER_RESONANCE * Math.log(2 * points)) {

@@ -142,7 +142,7 @@ export function judgeJoint(
   evaluateCost(context, model, ALL_FREE, 1);
   const atM = boundaryAt(model, boundary);
   const mean = residualVariance(context);
-  const variance = localVariance(traceResidual(context, model, settings), atM, settings.resolutionM, mean);
+  const variance = localVariance(traceResidual(context, settings), atM, settings.resolutionM, mean);
   const place = placeOf(context, model, settings, boundary);
   const faults = PURE_TYPES.flatMap((state) => bestTrial(place, state, variance) ?? [])
     .filter(keepsItsKind)

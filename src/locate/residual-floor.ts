@@ -3,13 +3,14 @@
  * weighed with. Structural ripple is sparse and heavy-tailed, so a median would flood healthy lines with false echoes.
  */
 import { quantile, quantileOfSorted } from '../numerics/statistics.ts';
+import type { WindowSpec } from '../numerics/window.ts';
 import type { FitContext } from './fit-cascade.ts';
 import { boundaryAt, type LineModel, sectionAt } from './line-model.ts';
-import { type ResidualTrace, residualTrace } from './residual-trace.ts';
+import { planResidualTrace, type ResidualTrace, type ResidualTracer } from './residual-trace.ts';
 
 export type SearchSettings = {
-  /** Taper for traces, length n. */
-  readonly taper: Float64Array;
+  /** Trace of what a fit leaves over. */
+  readonly tracer: ResidualTracer;
   /** 6 dB width of an echo, m. */
   readonly resolutionM: number;
   /** Called once when nothing strong is left to explain; `found` tells whether something strong was there. */
@@ -22,15 +23,23 @@ export type SearchSettings = {
 const FLOOR_QUANTILE = 0.85;
 
 /** Trace of the residual as the last evaluation left it. */
-export function traceResidual(
-  context: FitContext,
+export function traceResidual(context: FitContext, settings: SearchSettings): ResidualTrace {
+  return settings.tracer(context.residual);
+}
+
+/** Distances of the trace per 6 dB width of an echo. */
+const POINTS_PER_RESOLUTION = 4;
+const MOST_POINTS = 40_000;
+
+/** Plans the trace of a model's residual from the port to just beyond its end. */
+export function planTracer(
   model: LineModel,
-  settings: SearchSettings,
-): ResidualTrace {
-  const stepM = settings.resolutionM / 4;
+  search: { readonly window: WindowSpec; readonly taper: Float64Array; readonly resolutionM: number },
+): ResidualTracer {
+  const stepM = search.resolutionM / POINTS_PER_RESOLUTION;
   const endM = boundaryAt(model, model.boundaryM.length);
-  const points = Math.max(8, Math.min(40_000, Math.ceil((endM + settings.resolutionM) / stepM)));
-  return residualTrace(model, context.residual, settings.taper, { fromM: 0, stepM, points });
+  const points = Math.max(8, Math.min(MOST_POINTS, Math.ceil((endM + search.resolutionM) / stepM)));
+  return planResidualTrace(model, search.window, search.taper, { stepM, points });
 }
 
 /** Cells that a section must have to speak for itself. */

@@ -2,8 +2,12 @@
  * Trace of what the model leaves over, with loss and dispersion of the fitted line undone: where the search looks for
  * the next echo, and where it reads the floor that an echo must rise above.
  */
+
+import { type MediumRun, pathTo } from '../line/medium-run.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
+import type { WindowSpec } from '../numerics/window.ts';
+import { planCorrectedTrace } from './distance-trace.ts';
 import type { LineModel } from './line-model.ts';
 
 export type ResidualTrace = {
@@ -112,4 +116,95 @@ function lossyGamma(model: LineModel, section: number, i: number): { alpha: numb
     alpha: gamma.re[i]! + model.conductor * c.re[i]! + model.dielectric * d.re[i]!,
     beta: gamma.im[i]! + model.conductor * c.im[i]! + model.dielectric * d.im[i]!,
   };
+}
+
+/** A trace that is planned once for a model and used for every residual that it leaves. */
+export type ResidualTracer = (residual: ComplexArray) => ResidualTrace;
+
+/** Knots per section at which the throughput is summed; between them its logarithm is nearly straight. */
+const KNOTS = 12;
+
+/**
+ * Plans the trace of what a model leaves over, by chirp-z transforms: the line as fitted at the time of planning.
+ *
+ * @param window Taper. @param weight The same taper's values, length n, for the density.
+ * @param grid From the port on.
+ */
+export function planResidualTrace(
+  model: LineModel,
+  window: WindowSpec,
+  weight: Float64Array,
+  grid: { readonly stepM: number; readonly points: number },
+): ResidualTracer {
+  const run = runOfModel(model);
+  const plan = planCorrectedTrace({
+    frequencyHz: model.frequencyHz,
+    run,
+    window,
+    fromM: 0,
+    toM: grid.stepM * (grid.points - 1),
+    points: grid.points,
+  });
+  let weightSum = 0;
+  let weightEnergy = 0;
+  for (const w of weight) {
+    weightSum += w;
+    weightEnergy += w * w;
+  }
+  const norm = throughputAlong(run, weight, grid);
+  return (residual) => {
+    const value = plan.trace(residual).value;
+    const level = new Float64Array(grid.points);
+    const density = new Float64Array(grid.points);
+    for (let k = 0; k < grid.points; k++) {
+      const power = value.re[k]! ** 2 + value.im[k]! ** 2;
+      level[k] = Math.sqrt(power);
+      density[k] = (power * norm[k]! * weightSum) / weightEnergy;
+    }
+    return { fromM: 0, stepM: grid.stepM, value, level, density };
+  };
+}
+
+/** The model's sections with their fitted loss. */
+function runOfModel(model: LineModel): MediumRun {
+  const rates = model.media.map((_, section) =>
+    Array.from(model.frequencyHz, (_, i) => lossyGamma(model, section, i)),
+  );
+  return {
+    startM: Float64Array.from([0, ...model.boundaryM]),
+    alpha: rates.map((rate) => Float64Array.from(rate, ({ alpha }) => alpha)),
+    beta: rates.map((rate) => Float64Array.from(rate, ({ beta }) => beta)),
+  };
+}
+
+/** Σ W·e^{−4A(d)} on the grid. */
+function throughputAlong(
+  run: MediumRun,
+  weight: Float64Array,
+  grid: { readonly stepM: number; readonly points: number },
+): Float64Array {
+  const toM = grid.stepM * (grid.points - 1);
+  const knotsM = new Set<number>([toM]);
+  for (let section = 0; section < run.alpha.length; section++) {
+    const fromM = run.startM[section]!;
+    const untilM = section + 1 < run.alpha.length ? run.startM[section + 1]! : Math.max(toM, fromM);
+    for (let k = 0; k < KNOTS; k++) knotsM.add(fromM + ((untilM - fromM) * k) / KNOTS);
+  }
+  const sorted = [...knotsM].sort((a, b) => a - b);
+  const logs = sorted.map((distanceM) => {
+    const { attenuation } = pathTo(run, distanceM);
+    let sum = 0;
+    for (let i = 0; i < weight.length; i++) sum += weight[i]! * Math.exp(-4 * attenuation[i]!);
+    return Math.log(Math.max(sum, 1e-300));
+  });
+  const out = new Float64Array(grid.points);
+  let knot = 0;
+  for (let k = 0; k < grid.points; k++) {
+    const distanceM = k * grid.stepM;
+    while (knot + 2 < sorted.length && sorted[knot + 1]! < distanceM) knot++;
+    const low = sorted[knot]!;
+    const share = (distanceM - low) / Math.max((sorted[knot + 1] ?? low) - low, 1e-9);
+    out[k] = Math.exp(logs[knot]! + share * ((logs[knot + 1] ?? logs[knot]!) - logs[knot]!));
+  }
+  return out;
 }

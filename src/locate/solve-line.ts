@@ -17,7 +17,7 @@ import { leaveOutInterference } from './interference.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, lumpDistanceM } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
-import { localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
+import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 import type { Solution } from './solution.ts';
 
@@ -53,11 +53,6 @@ export function solveLine(
   if (!spec.ok) throw new TypeError(`unknown window ${SEARCH_WINDOW}`);
   const taper = Float64Array.from(createWindow(spec.value, n).values);
   const context = createFitContext(sweep.frequencyHz, sweep.gamma, new Float64Array(n).fill(1));
-  const settings: SearchSettings = {
-    taper,
-    resolutionM: request.resolutionM,
-    onRound: (round, limit) => onProgress('searching echoes', 0.2 + (0.6 * round) / limit),
-  };
   onProgress('finding the end', 0.05);
   const search: EndSearch = {
     line,
@@ -71,6 +66,11 @@ export function solveLine(
   const interfered = leaveOutInterference(context);
   if (interfered.length > 0) end = findEnd(context, search);
   const { model } = end;
+  const settings: SearchSettings = {
+    tracer: planTracer(model, { window: spec.value, taper, resolutionM: request.resolutionM }),
+    resolutionM: request.resolutionM,
+    onRound: (round, limit) => onProgress('searching echoes', 0.2 + (0.6 * round) / limit),
+  };
   placeJoints(context, model);
   addSoundJoints(model);
   evaluateCost(context, model, ALL_FREE, 1);
@@ -88,7 +88,7 @@ export function solveLine(
   evaluateCost(context, model, ALL_FREE, 1);
   refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
   onProgress('weighing what is known', 0.95);
-  const floor = traceResidual(context, model, settings);
+  const floor = traceResidual(context, settings);
   const lumps = nameLumps(context, model, settings, floor);
   evaluateCost(context, model, ALL_FREE, 1);
   const variance = residualVariance(context);

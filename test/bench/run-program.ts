@@ -26,6 +26,7 @@ export function requestOf(scene: SweepAndLine, cables: CableTable): Outcome<Anal
       windowSpec: 'kaiser:6',
       port: null,
       offsetM: 0,
+      skipImpedance: true,
       standards: null,
     },
   };
