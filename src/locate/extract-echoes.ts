@@ -12,6 +12,7 @@ import {
   addFreeLump,
   around,
   boundaryAt,
+  type Freedom,
   type LineModel,
   type Lump,
   lumpDistanceM,
@@ -98,7 +99,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
         continue;
       }
     }
-    if (calm) refineAll(context, model);
+    if (calm) refine(context, model, NO_RESIDUE, { variance: residualVariance(context), maxIterations: 5 });
     else evaluateCost(context, model, ALL_FREE, 1);
     trace = traceResidual(context, settings);
   }
@@ -119,6 +120,9 @@ function hasFreeLumpNear(model: LineModel, distanceM: number, withinM: number): 
     (lump) => lump.boundary === null && Math.abs(lumpDistanceM(model, lump) - distanceM) < withinM,
   );
 }
+
+/** Everything but the instrument, which was fitted once and hardly changes with what is found on the line. */
+const NO_RESIDUE: Freedom = { ...ALL_FREE, residue: false };
 
 /** Refines everything against the residual as it stands. */
 function refineAll(context: FitContext, model: LineModel): void {
@@ -208,9 +212,11 @@ function mergeIntoJoints(
   const merged = new Set<number>();
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
     const boundary = nearestBoundary(model, cells, lumpDistanceM(model, lump));
-    if (boundary === null || boundary === 0) continue;
+    if (boundary === null) continue;
     removeLump(model, lump.id);
-    if (boundary === model.boundaryM.length) settle(context, model, settings, lumpDistanceM(model, lump));
+    // Port and end are fitted as they are: what stands in their cells is theirs.
+    if (boundary === 0 || boundary === model.boundaryM.length)
+      settle(context, model, settings, lumpDistanceM(model, lump));
     else merged.add(boundary);
   }
   for (const boundary of merged) verdicts.set(boundary, judgeJoint(context, model, settings, boundary));

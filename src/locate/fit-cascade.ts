@@ -19,6 +19,8 @@ export type FitContext = {
   readonly modelled: ComplexArray;
   readonly columns: ComplexArray[];
   readonly residueModel: ResidueModel;
+  /** Scattered parts of the points by size, for curvatures. */
+  readonly scattered: Map<number, Int32Array>;
 };
 
 export type FitOptions = {
@@ -51,6 +53,7 @@ export function createFitContext(
     modelled: complexZeros(frequencyHz.length),
     columns: [],
     residueModel: createResidueModel(frequencyHz),
+    scattered: new Map(),
   };
 }
 
@@ -69,7 +72,7 @@ export function refine(
   options: FitOptions,
 ): FitResult {
   const tolerance = options.tolerance ?? 1e-4;
-  let linear = linearise(context, model, freedom, options.variance);
+  let linear = linearise(context, model, freedom, options.variance, 'some');
   let damping = 1e-3;
   let growth = 2;
   let iterations = 0;
@@ -94,7 +97,7 @@ export function refine(
     if (cost < linear.cost) {
       const fall = linear.cost - cost;
       settled = fall < tolerance * Math.max(1, cost * 0.01) && fall < 0.05;
-      linear = linearise(context, model, freedom, options.variance);
+      linear = linearise(context, model, freedom, options.variance, 'some');
       damping = Math.max(1e-9, damping / (predicted > 0 && fall > 0.5 * predicted ? 10 : 3));
       growth = 2;
     } else {
@@ -122,12 +125,18 @@ export type Linearisation = {
   readonly curvature: Float64Array;
 };
 
-/** Residual, Jacobian and normal equations of the model as it stands. */
+/**
+ * Residual, Jacobian and normal equations of the model as it stands.
+ *
+ * @param curvatureFrom `some`: curvature from a part of the points, for the steps of a search. The gradient is exact
+ *   either way, and with it where the search ends.
+ */
 export function linearise(
   context: FitContext,
   model: LineModel,
   freedom: Freedom,
   variance: number,
+  curvatureFrom: 'all' | 'some' = 'all',
 ): Linearisation {
   const translation = translate(model, freedom);
   const { parameters, slots, stages } = translation;
@@ -148,7 +157,7 @@ export function linearise(
   const inverse = 1 / variance;
   const gradient = new Float64Array(p);
   for (let a = 0; a < p; a++) gradient[a] = dot(columns[a]!, context.residual) * inverse;
-  const curvature = productsOf(columns, inverse);
+  const curvature = productsOf(columns, curvatureFrom === 'some' ? somePoints(context, p) : null, inverse);
   const cost = residualEnergy(context) * inverse + addPriors(model, parameters, gradient, curvature);
   return { translation, cost, gradient, curvature };
 }
@@ -213,20 +222,52 @@ function dot(a: ComplexArray, b: ComplexArray): number {
   return sum;
 }
 
-/** Re conj(column a)·(column b) for every pair, times a factor; two by two, which halves the reading of memory. */
-function productsOf(columns: readonly ComplexArray[], factor: number): Float64Array {
+/** Points per parameter from which the curvature is read when some will do, and the fewest. */
+const POINTS_PER_PARAMETER = 10;
+const FEWEST_POINTS = 300;
+
+/** Golden-ratio stride: a scattered part of the points folds no distance onto another. */
+const SCATTER = (Math.sqrt(5) - 1) / 2;
+
+/** A scattered part of the points, or null where all of them are as few. */
+function somePoints(context: FitContext, parameters: number): Int32Array | null {
+  const n = context.frequencyHz.length;
+  const wanted = Math.max(FEWEST_POINTS, POINTS_PER_PARAMETER * parameters);
+  if (wanted > 0.7 * n) return null;
+  const known = context.scattered.get(wanted);
+  if (known) return known;
+  const share = wanted / n;
+  const points = Int32Array.from(
+    Array.from({ length: n }, (_, i) => i).filter((i) => (i * SCATTER) % 1 < share),
+  );
+  context.scattered.set(wanted, points);
+  return points;
+}
+
+/**
+ * Re conj(column a)·(column b) for every pair, times a factor; two by two, which halves the reading of memory.
+ *
+ * @param points Those that stand for all; null for all.
+ */
+function productsOf(
+  columns: readonly ComplexArray[],
+  points: Int32Array | null,
+  factor: number,
+): Float64Array {
   const p = columns.length;
+  const used = points === null ? columns : columns.map((column) => pick(column, points));
+  const scale = points === null ? factor : (factor * (columns[0]?.re.length ?? 0)) / points.length;
   const products = new Float64Array(p * p);
   const put = (a: number, b: number, value: number): void => {
-    products[a * p + b] = value * factor;
-    products[b * p + a] = value * factor;
+    products[a * p + b] = value * scale;
+    products[b * p + a] = value * scale;
   };
   for (let a = 0; a < p; a += 2) {
-    const { re: aRe, im: aIm } = columns[a]!;
-    const { re: cRe, im: cIm } = columns[Math.min(a + 1, p - 1)]!;
+    const { re: aRe, im: aIm } = used[a]!;
+    const { re: cRe, im: cIm } = used[Math.min(a + 1, p - 1)]!;
     for (let b = 0; b <= a; b += 2) {
-      const { re: bRe, im: bIm } = columns[b]!;
-      const { re: dRe, im: dIm } = columns[Math.min(b + 1, p - 1)]!;
+      const { re: bRe, im: bIm } = used[b]!;
+      const { re: dRe, im: dIm } = used[Math.min(b + 1, p - 1)]!;
       let ab = 0;
       let ad = 0;
       let cb = 0;
@@ -252,6 +293,15 @@ function productsOf(columns: readonly ComplexArray[], factor: number): Float64Ar
     }
   }
   return products;
+}
+
+function pick(column: ComplexArray, points: Int32Array): ComplexArray {
+  const out = complexZeros(points.length);
+  for (let k = 0; k < points.length; k++) {
+    out.re[k] = column.re[points[k]!]!;
+    out.im[k] = column.im[points[k]!]!;
+  }
+  return out;
 }
 
 /** Share of the fourth power in a stiff prior: as much as the square at four standard deviations. */
