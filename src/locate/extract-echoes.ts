@@ -156,7 +156,9 @@ function strongestAboveFloor(
     if (boundary !== null && (judged.has(boundary) || boundary === n)) continue;
     if (boundary === null && level < 10 ** (-(WEAKEST_FLAW_DB + TRACE_SLACK_DB) / 20)) continue;
     const ratio = level / floorAt(trace, model, k, resolutionM);
-    const threshold = boundary === null ? thresholdOverFloor(level) : OVER_FLOOR_AT_JOINT;
+    // On a line of few cells a strong echo is the floor; that strong, nothing else is needed.
+    const threshold =
+      level > STRONG_LEVEL ? 0.1 : boundary === null ? thresholdOverFloor(level) : OVER_FLOOR_AT_JOINT;
     if (ratio / threshold > Math.max(1, bestRatio)) {
       bestRatio = ratio / threshold;
       best = { distanceM, boundary, level };
