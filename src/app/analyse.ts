@@ -7,13 +7,14 @@ import { findingsOf, placesOf } from '../assess/find-findings.ts';
 import { severitiesOf } from '../assess/severity.ts';
 import { sweepNotices } from '../assess/sweep-notices.ts';
 import { SPEED_OF_LIGHT } from '../line/constants.ts';
-import type { Line } from '../line/line.ts';
+import { hasGuide, type Line } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { type MediumRun, runLengthM, runOfMedia } from '../line/medium-run.ts';
+import { usableBand } from '../line/usable-band.ts';
 import { planCorrectedTrace } from '../locate/distance-trace.ts';
 import { type ImpedanceProfile, measuredProfile } from '../locate/impedance-profile.ts';
 import { modelledProfile } from '../locate/modelled-profile.ts';
-import { type Reach, reachOf } from '../locate/reach.ts';
+import { type Reach, type ReachOptions, reachOf } from '../locate/reach.ts';
 import type { Solution } from '../locate/solution.ts';
 import { solveLine } from '../locate/solve-line.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
@@ -39,7 +40,7 @@ export function analyse(
   const corrected = correct(request, read.value);
   if (!corrected.ok) return corrected;
   const moved = moveReferencePlane(corrected.value, request.offsetM);
-  const usable = withoutZeroFrequency(moved);
+  const usable = usablePoints(moved, request.line);
   if (!usable.ok) return usable;
   const sweep = usable.value;
   const quality = sweepQuality(sweep);
@@ -60,7 +61,7 @@ export function analyse(
   onProgress({ stage: 'putting it into words', fraction: 0.95 });
   const scale = solution.distanceScale;
   const run = runOf(request.line, sweep, solution.lengthM / scale, scale);
-  const reach = reachOf({ sweep, run, window: window.value });
+  const reach = reachOn(request.line, { sweep, run, window: window.value });
   const traceToM = runLengthM(run) + 4 * reach.resolutionM;
   const modelTrace = planCorrectedTrace({
     frequencyHz: sweep.frequencyHz,
@@ -132,30 +133,43 @@ function moveReferencePlane(sweep: Sweep, offsetM: number): Sweep {
 /** Fewest points of which anything can be made. */
 const FEWEST_POINTS = 8;
 
-/** The cascade is not used at 0 Hz, so a first point there is left out. */
-function withoutZeroFrequency(sweep: Sweep): Outcome<Sweep> {
+/** The points that can say something of the line: above 0 Hz and any cut-off, within every device's pass band. */
+function usablePoints(sweep: Sweep, line: Line): Outcome<Sweep> {
   const first = sweep.frequencyHz.findIndex((f) => f > 0);
-  const points = first < 0 ? 0 : sweep.frequencyHz.length - first;
+  const aboveZero = first < 0 ? pointsOf(sweep, 0, 0) : pointsOf(sweep, first, sweep.frequencyHz.length);
+  const band = usableBand(line, aboveZero.frequencyHz);
+  const used = pointsOf(aboveZero, band.through.from, band.through.to);
+  const points = used.frequencyHz.length;
   if (points < FEWEST_POINTS)
     return fail({
       code: 'sweep-too-short',
       file: sweep.file,
       what: `the sweep has ${points} usable point${points === 1 ? '' : 's'}; ${FEWEST_POINTS} are the least`,
-      mend: 'save a sweep of some hundreds of points',
+      mend: 'save a sweep of some hundreds of points in the band that the line carries',
     });
-  if (first === 0) return succeed(sweep);
-  const notice: Notice = {
-    code: 'zero-frequency',
-    what: 'the point at 0 Hz is left out: the line is solved from the points above it',
+  const notices = [...(first > 0 ? [ZERO_FREQUENCY] : []), ...band.notices];
+  return succeed(used, notices);
+}
+
+/** The line is solved from the points above 0 Hz, for its waves are not defined there. */
+const ZERO_FREQUENCY: Notice = {
+  code: 'zero-frequency',
+  what: 'the point at 0 Hz is left out: the line is solved from the points above it',
+};
+
+function pointsOf(sweep: Sweep, from: number, to: number): Sweep {
+  if (from === 0 && to === sweep.frequencyHz.length) return sweep;
+  const { re, im } = sweep.gamma;
+  return {
+    ...sweep,
+    frequencyHz: sweep.frequencyHz.slice(from, to),
+    gamma: { re: re.slice(from, to), im: im.slice(from, to) },
   };
-  return succeed(
-    {
-      ...sweep,
-      frequencyHz: sweep.frequencyHz.slice(first),
-      gamma: { re: sweep.gamma.re.slice(first), im: sweep.gamma.im.slice(first) },
-    },
-    [notice],
-  );
+}
+
+function reachOn(line: Line, options: ReachOptions): Reach {
+  const reach = reachOf(options);
+  return hasGuide(line) ? { ...reach, impedanceProfile: 'no' } : reach;
 }
 
 /** Ohms along the line, from the sweep itself where it reaches down to 0 Hz, else from the solved line. */
@@ -165,6 +179,8 @@ function impedanceOf(
   origin: Reach['impedanceProfile'],
   solution: Solution,
 ): ImpedanceProfile | null {
+  // A guide has no ohms, and no way down to 0 Hz.
+  if (hasGuide(line)) return null;
   const { lengthM, distanceScale } = solution;
   switch (origin) {
     case 'measured':

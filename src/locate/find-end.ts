@@ -425,6 +425,7 @@ function phaseStarts(
   for (const startM of kind === 'load' || kind === 'antenna' ? startsM : startsM.slice(0, 1)) {
     const fromM = Math.max(0.02, startM - search.resolutionM, meanM - END_SIGMAS * sigmaM);
     const toM = Math.min(startM + search.resolutionM, meanM + END_SIGMAS * sigmaM);
+    if (toM < fromM) continue;
     const points = Math.max(3, Math.ceil((toM - fromM) / stepM) + 1);
     const trace = residualTrace(base, context.measured, context.weight, { fromM, stepM, points });
     const sign = kind === 'short' ? -1 : 1;
@@ -433,12 +434,25 @@ function phaseStarts(
     const tips = findPeaks(real)
       .filter((peak) => Math.abs(real[peak.index]!) > LEAST_TIP * highest)
       .map((peak) => ({ distanceM: fromM + peak.index * stepM, value: trace.value.re[peak.index]! }))
+      .filter((tip) => !isFaint(kind, tip.value) || Math.abs(tip.distanceM - meanM) < FAINT_SIGMAS * sigmaM)
       .sort((a, b) => Math.abs(b.value) - Math.abs(a.value));
     starts.push(...tips.slice(0, MOST_TIPS));
   }
-  if (starts.length === 0) starts.push({ distanceM: startsM[0]!, value: top > 0 ? 0.01 : 0 });
+  if (starts.length === 0) {
+    const described = Math.abs(startsM[0]! - meanM) < END_SIGMAS * sigmaM ? meanM : startsM[0]!;
+    starts.push({ distanceM: kind === 'load' ? described : startsM[0]!, value: top > 0 ? 0.01 : 0 });
+  }
   return starts;
 }
+
+/** A load that hardly reflects can't be told from a flaw before it, and is looked for where it is described. */
+function isFaint(kind: EndKind, value: number): boolean {
+  return kind === 'load' && Math.abs(value) < FAINT_LOAD;
+}
+
+/** −23 dB, and how far from its described place such a load may be taken to stand. */
+const FAINT_LOAD = 0.07;
+const FAINT_SIGMAS = 1.2;
 
 function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number): EndModel {
   switch (kind) {

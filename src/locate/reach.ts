@@ -1,5 +1,12 @@
 /** What a sweep can do on a line: resolution, unambiguous distance, weakest visible echo at the far end. */
-import { distanceOfDelay, groupDelaySPerM, type MediumRun, pathTo, runLengthM } from '../line/medium-run.ts';
+import {
+  distanceOfDelay,
+  groupDelaySPerM,
+  type MediumRun,
+  pathTo,
+  runLengthM,
+  slowestGroupDelaySPerM,
+} from '../line/medium-run.ts';
 import { quantile } from '../numerics/statistics.ts';
 import { createWindow, type WindowSpec } from '../numerics/window.ts';
 
@@ -43,7 +50,8 @@ export function reachOf({ sweep, run, window }: ReachOptions): Reach {
   const { frequencyHz } = sweep;
   const bandHz = frequencyHz[frequencyHz.length - 1]! - frequencyHz[0]!;
   const delays = groupDelaySPerM(run, frequencyHz);
-  const unambiguousM = distanceOfDelay(run, delays, 1 / medianStepHz(frequencyHz));
+  const slowest = slowestGroupDelaySPerM(run, frequencyHz);
+  const unambiguousM = distanceOfDelay(run, slowest, 1 / medianStepHz(frequencyHz));
   const resolutionM =
     createWindow(window, frequencyHz.length).width6DbBins / (2 * bandHz * meanDelay(run, delays));
   return {
