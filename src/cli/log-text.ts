@@ -57,7 +57,7 @@ export function listText(
     ['entry', 'taken', 'found', 'line'],
     entries.map((entry) => [
       shortKey(entry.key),
-      whenText(entry.takenAt),
+      entry.takenAt.slice(0, 10),
       verdictWords(entry),
       [fullName(entry.line), ...(entry.baseline ? ['baseline'] : []), entry.who, entry.note]
         .filter((text) => text !== '')
