@@ -1,15 +1,17 @@
 /** Sweeps of lines with discontinuities by the program's own cascade, and the solver's first picture of such lines. */
 import type { Cable } from '../../src/line/cable.ts';
 import { createCascade, type Stage } from '../../src/line/cascade.ts';
+import { SPEED_OF_LIGHT } from '../../src/line/constants.ts';
 import { type LumpedKind, strengthOf } from '../../src/line/discontinuity.ts';
 import type { EndModel } from '../../src/line/end.ts';
 import type { Line } from '../../src/line/line.ts';
 import { coaxMedium, portMedium } from '../../src/line/medium.ts';
 import { createFitContext, type FitContext } from '../../src/locate/fit-cascade.ts';
 import { createLineModel, type LineModel } from '../../src/locate/line-model.ts';
+import { planTracer, type SearchSettings } from '../../src/locate/residual-floor.ts';
 import type { ComplexArray } from '../../src/numerics/complex.ts';
 import { createRandom } from '../../src/numerics/random.ts';
-import { createWindow } from '../../src/numerics/window.ts';
+import { createWindow, type WindowSpec } from '../../src/numerics/window.ts';
 import { lineOf } from './drawn-line.ts';
 
 /** Something put into a run: a kind and its size in Ω, Ω, H or F, at a distance from the port. */
@@ -78,14 +80,24 @@ export function modelOf(run: DrawnRun, frequencyHz: Float64Array, { lossSigma = 
   return model;
 }
 
+/** Taper of every search here. */
+export const SEARCH_WINDOW: WindowSpec = { kind: 'kaiser', beta: 5 };
+
 /** The search's taper and what it resolves in a cable. */
 export function searchOn(frequencyHz: Float64Array, cable: Cable) {
-  const window = createWindow({ kind: 'kaiser', beta: 5 }, frequencyHz.length);
+  const window = createWindow(SEARCH_WINDOW, frequencyHz.length);
   const bandHz = frequencyHz.at(-1)! - frequencyHz[0]!;
   return {
+    window: SEARCH_WINDOW,
     taper: Float64Array.from(window.values),
-    resolutionM: (window.width6DbBins * 299_792_458 * cable.velocityFactor) / (2 * bandHz),
+    resolutionM: (window.width6DbBins * SPEED_OF_LIGHT * cable.velocityFactor) / (2 * bandHz),
   };
+}
+
+/** How a search of a model goes about it. */
+export function settingsOf(model: LineModel, cable: Cable): SearchSettings {
+  const search = searchOn(model.frequencyHz, cable);
+  return { tracer: planTracer(model, search), resolutionM: search.resolutionM };
 }
 
 /** A kind of discontinuity with a size that returns about 26 dB at the top of a band that ends at 2.7 GHz. */

@@ -11,7 +11,7 @@ import {
   type DrawnRun,
   modelOf,
   reflectionOf,
-  searchOn,
+  settingsOf,
   varianceOf,
   withNoise,
 } from './drawn-model.ts';
@@ -25,8 +25,8 @@ const RUN: DrawnRun = {
   end: MATCHED,
 };
 const MODEL = modelOf(RUN, GRID);
-const SEARCH = searchOn(GRID, FOAM);
-const { resolutionM } = SEARCH;
+const SETTINGS = settingsOf(MODEL, FOAM);
+const { resolutionM } = SETTINGS;
 
 /** A trace of complex noise, by its RMS at each distance. */
 function noisyTrace(rmsAt: (distanceM: number) => number, seed = 1): ResidualTrace {
@@ -54,7 +54,7 @@ describe('traceResidual', () => {
       reflectionOf({ ...RUN, put: [{ kind: 'series-resistance', value: 5, atM: 12 }] }, GRID),
     );
     evaluateCost(context, MODEL, NOTHING_FREE, 1);
-    const trace = traceResidual(context, MODEL, SEARCH);
+    const trace = traceResidual(context, SETTINGS);
     expect(trace.fromM).toBe(0);
     expect(trace.fromM + trace.stepM * (trace.level.length - 1)).toBeGreaterThan(20);
     const peak = trace.level.indexOf(Math.max(...trace.level));
@@ -119,7 +119,7 @@ describe('localVariance', () => {
     for (let seed = 1; seed <= trials; seed++) {
       const context = contextOn(GRID, withNoise(reflectionOf(RUN, GRID), -50, seed));
       evaluateCost(context, MODEL, NOTHING_FREE, 1);
-      const trace = traceResidual(context, MODEL, SEARCH);
+      const trace = traceResidual(context, SETTINGS);
       mean += localVariance(trace, 6, resolutionM, varianceOf(-50)) / varianceOf(-50) / trials;
     }
     // A quantile of some 40 cells, ten times: 8 %; the loss, which differs over the band, another 10 %.

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { coaxMedium } from '../../src/line/medium.ts';
-import { residualTrace } from '../../src/locate/residual-trace.ts';
+import { planResidualTrace, residualTrace } from '../../src/locate/residual-trace.ts';
 import { type ComplexArray, complexZeros } from '../../src/numerics/complex.ts';
 import { evenHz, MATCHED, SOLID, THIN } from './drawn-line.ts';
 import { type DrawnRun, modelOf, searchOn, withNoise } from './drawn-model.ts';
@@ -15,7 +15,7 @@ const RUN: DrawnRun = {
 };
 const MODEL = modelOf(RUN, GRID);
 const MEDIA = RUN.sections.map(({ cable }) => coaxMedium(cable, GRID, { temperatureC: 20 }));
-const { taper } = searchOn(GRID, SOLID);
+const { taper, window } = searchOn(GRID, SOLID);
 const ALONG = { fromM: 0, stepM: 0.02, points: 250 };
 
 /** 2γ·d summed along the run to a distance. */
@@ -107,5 +107,26 @@ describe('residualTrace', () => {
     expect(half(0, 100)).toBeLessThan(1.15);
     expect(half(150, 250)).toBeGreaterThan(0.6);
     expect(half(150, 250)).toBeLessThan(1.7);
+  });
+});
+
+describe('planResidualTrace', () => {
+  it('is the direct sum, planned once for any residual', () => {
+    const model = modelOf(RUN, GRID);
+    model.conductor = 0.1;
+    const tracer = planResidualTrace(model, window, taper, ALONG);
+    for (const values of [loneEcho(3.2, 0.2), withNoise(loneEcho(1.1, -0.1), -30, 3)]) {
+      const planned = tracer(values);
+      const direct = residualTrace(model, values, taper, ALONG);
+      expect(planned.fromM).toBe(0);
+      expect(planned.stepM).toBe(ALONG.stepM);
+      direct.level.forEach((level, k) => {
+        // Design section 5: −80 dB of a full reflection or better. The density's norm is read between knots: 1 %.
+        expect(Math.abs(planned.level[k]! - level)).toBeLessThan(1e-4);
+        expect(planned.value.re[k]! - direct.value.re[k]!).toBeCloseTo(0, 4);
+      });
+      const peak = direct.level.indexOf(Math.max(...direct.level));
+      expect(planned.density[peak]! / direct.density[peak]!).toBeCloseTo(1, 1);
+    }
   });
 });
