@@ -19,6 +19,7 @@ const UNIT_TEXT: Readonly<Record<EchoValue['unit'], string>> = {
   ohm: 'Ω',
   nH: 'nH',
   pF: 'pF',
+  z0: 'of the guide’s own impedance',
   dB: 'dB return loss',
 };
 

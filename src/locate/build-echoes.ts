@@ -1,4 +1,5 @@
 /** From the fitted model to echoes: distance scaled to what is known, level, kind, value and uncertainty. */
+import { normalisedOf } from '../line/discontinuity.ts';
 import type { Line } from '../line/line.ts';
 import { jointName } from '../line/line.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
@@ -6,9 +7,10 @@ import { complexRms, complexZeros } from '../numerics/complex.ts';
 import type { DistanceScale } from './distance-scale.ts';
 import type { Echo, EchoKind, EchoValue } from './echo.ts';
 import { type FitContext, fitCovariance, linearise } from './fit-cascade.ts';
+import type { EndJointVerdict } from './judge-end-joint.ts';
 import { type JointVerdict, reactiveStrength, resistiveStrength } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, type Lump, lumpDistanceM, sectionAt } from './line-model.ts';
-import { pureTypeOf } from './probe.ts';
+import { lumpedTypeOf, lumpReturnLossDb, type PureType, pureTypeOf } from './probe.ts';
 
 /** What the type competition said of one free lump. */
 export type LumpVerdict = { readonly id: number; readonly confidence: number; readonly resolved: boolean };
@@ -16,6 +18,8 @@ export type LumpVerdict = { readonly id: number; readonly confidence: number; re
 export type EchoParts = {
   readonly line: Line;
   readonly joints: readonly JointVerdict[];
+  /** A fault at the joint before a load; null where there is none. */
+  readonly endJoint: EndJointVerdict | null;
   readonly lumps: readonly LumpVerdict[];
   readonly endKind: 'open' | 'short' | 'load' | 'antenna';
   readonly endConfidence: number;
@@ -28,6 +32,10 @@ export type EchoParts = {
 
 /** Confidence of a joint that nothing speaks against. */
 const SOUND_CONFIDENCE = 0.98;
+
+/** Lead in nats that names the kind of a fault before a load, and how much of its size the load leaves in doubt. */
+const KIND_LEAD = 1.5;
+const LOAD_DOUBT = 0.2;
 
 /** A sound joint is listed when its own reflection stands above this level, dB. */
 const LISTED_JOINT_DB = 55;
@@ -89,7 +97,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
       correctedReturnLossDb: levelDb(own),
       kind: verdict && !verdict.resolved ? 'unresolved' : pure,
       confidence: verdict?.confidence ?? 0.5,
-      value: lumpValue(pure, lump.strength, strengthSigma, model.media[lump.section]!.z0Ohm),
+      value: valueIn(lump.section, pure, lump.strength, strengthSigma),
       joint: null,
       section: sectionAt(model, distanceM),
     });
@@ -98,8 +106,42 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     const echo = jointEcho(verdict);
     if (echo) echoes.push(echo);
   }
-  echoes.push(endEcho());
-  return echoes.sort((a, b) => a.distanceM - b.distanceM);
+  const end = endEcho();
+  if (parts.endJoint) echoes.push(endJointEcho(parts.endJoint, end));
+  // The end comes last, also after a fault at its own joint.
+  return [...echoes.sort((a, b) => a.distanceM - b.distanceM), end];
+
+  function endJointEcho(verdict: EndJointVerdict, at: Echo): Echo {
+    const type = lumpedTypeOf(verdict.state);
+    const level = lumpReturnLossDb(context.frequencyHz, { type, strength: verdict.strength });
+    return {
+      ...at,
+      correctedReturnLossDb: level,
+      returnLossDb: level + at.returnLossDb - at.correctedReturnLossDb,
+      kind: verdict.lead >= KIND_LEAD ? verdict.state : 'unresolved',
+      confidence: oddsToConfidence(verdict.odds, verdict.lead),
+      value: valueIn(
+        parts.line.sections.length - 1,
+        verdict.state,
+        verdict.strength,
+        LOAD_DOUBT * Math.abs(verdict.strength),
+      ),
+    };
+  }
+
+  function valueIn(section: number, kind: PureType, strength: number, sigma: number): EchoValue {
+    if (parts.line.sections[section]?.type !== 'guide')
+      return lumpValue(kind, strength, sigma, model.media[section]!.z0Ohm);
+    const f = context.frequencyHz;
+    const middleHz = (f[0]! + f[f.length - 1]!) / 2;
+    const type = lumpedTypeOf(kind);
+    return {
+      quantity: 'normalised',
+      value: Math.abs(normalisedOf({ type, strength }, middleHz)),
+      sigma: normalisedOf({ type, strength: sigma }, middleHz),
+      unit: 'z0',
+    };
+  }
 
   function jointEcho(verdict: JointVerdict): Echo | null {
     const { boundary } = verdict;
@@ -129,7 +171,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
       ...base,
       kind: verdict.clear ? verdict.state : 'unresolved',
       confidence: oddsToConfidence(verdict.odds, verdict.lead),
-      value: lumpValue(verdict.state, strength, sigma, model.media[section]!.z0Ohm),
+      value: valueIn(section, verdict.state, strength, sigma),
     };
   }
 

@@ -34,10 +34,11 @@ export type DistanceScale = {
   readonly notices: readonly Notice[];
 };
 
-/** Measured and described length may differ by this many standard deviations before the description is doubted. */
-const DOUBT_SIGMAS = 1.5;
-/** They may always differ by this share. Common practice: velocity factors are good to 1 %. */
-const ALWAYS_TRUSTED = 0.012;
+/** Measured and described length may always differ by this share. Common practice: velocity factors are good to 1 %. */
+const ALWAYS_TRUSTED = 0.011;
+
+/** Share of a difference that stays in doubt: whether it was the velocity factor or the tape. */
+const LEFT_IN_DOUBT = 0.3;
 
 /**
  * Decides what the distances are scaled to.
@@ -49,21 +50,25 @@ export function createDistanceScale(line: Line, model: LineModel, cut: boolean):
   const measured = boundaryAt(model, model.boundaryM.length);
   const tolerance = velocityTolerance(line);
   const off = described === null ? 0 : measured / described - 1;
-  const trusted = Math.abs(off) <= Math.max(ALWAYS_TRUSTED, DOUBT_SIGMAS * tolerance);
-  if (described !== null && !cut && trusted) return scaleToDescription(line, model);
+  const trusted = Math.abs(off) <= Math.max(ALWAYS_TRUSTED, tolerance);
+  if (described !== null && !cut && trusted)
+    return scaleToDescription(line, model, LEFT_IN_DOUBT * Math.abs(off));
   const notices = described === null || cut ? [] : [lengthNotice(measured, described, off)];
   return scaleToVelocity(line, model, tolerance, notices);
 }
 
 /** Each section stretched to its described length. */
-function scaleToDescription(line: Line, model: LineModel): DistanceScale {
+function scaleToDescription(line: Line, model: LineModel, doubt: number): DistanceScale {
   const starts = [0];
   for (const section of line.sections) starts.push(starts.at(-1)! + section.lengthM!);
   const last = model.boundaryM.length;
   return {
     to: 'description',
     factor: starts[last]! / boundaryAt(model, last),
-    place: (distanceM, atBoundary) => placeBetween(line, model, starts, distanceM, atBoundary),
+    place(distanceM, atBoundary) {
+      const place = placeBetween(line, model, starts, distanceM, atBoundary);
+      return { ...place, sigmaM: Math.hypot(place.sigmaM, doubt * distanceM) };
+    },
     notices: [],
   };
 }

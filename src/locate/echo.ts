@@ -14,12 +14,15 @@ export type EchoKind =
 
 export type StretchKind = 'wet' | 'wrong-cable' | 'sound';
 
-/** Size of an echo in its own quantity; null fields where unknown. */
+/**
+ * Size of an echo in its own quantity; null fields where unknown. `normalised` is r, x, g or b of a discontinuity in a
+ * guide at mid-band, relative to the guide's own impedance.
+ */
 export type EchoValue = {
-  readonly quantity: 'resistance' | 'inductance' | 'capacitance' | 'impedance' | 'return loss';
+  readonly quantity: 'resistance' | 'inductance' | 'capacitance' | 'impedance' | 'normalised' | 'return loss';
   readonly value: number;
   readonly sigma: number | null;
-  readonly unit: 'ohm' | 'nH' | 'pF' | 'dB';
+  readonly unit: 'ohm' | 'nH' | 'pF' | 'z0' | 'dB';
 };
 
 export type Severity = 'fault' | 'watch' | 'sound';

@@ -176,11 +176,15 @@ export function jointCells(model: LineModel, resolutionM: number): number[] {
   const others = new Set(model.boundaryM.keys());
   return Array.from({ length: n + 1 }, (_, boundary) => {
     const own = JOINT_CELL * resolutionM + 0.03;
-    if (boundary === 0 || boundary === n) return own;
+    if (boundary === 0) return own + PORT_RESIDUE_M;
+    if (boundary === n) return own;
     const { sigmaM } = expectBoundary(model, others, boundary - 1);
     return own + PLACE_SIGMAS * sigmaM;
   });
 }
+
+/** How far into the line the residue of the instrument's correction reaches, m: 1.2 ns there and back. */
+const PORT_RESIDUE_M = 0.15;
 
 /** Standard deviations of a joint's own place that its cell is widened by. */
 const PLACE_SIGMAS = 2;

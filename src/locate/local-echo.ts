@@ -11,7 +11,7 @@ import { fitLeastSquares, type LeastSquaresFit } from '../numerics/least-squares
 import { solveSymmetric } from '../numerics/linear-solve.ts';
 import { type FitContext, linearise } from './fit-cascade.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
-import { putBack } from './probe.ts';
+import { putBack, putBackEnd } from './probe.ts';
 
 /** What the sweep shows at a place. */
 export type LocalEcho = {
@@ -40,13 +40,14 @@ export function localEcho(
   context: FitContext,
   model: LineModel,
   atM: number,
-  own: { readonly lumps: readonly number[]; readonly boundary: number | null },
+  own: { readonly lumps: readonly number[]; readonly boundary: number | null; readonly end?: boolean },
 ): LocalEcho {
   const { stages, stageOfLump, stageOfBoundary } = linearise(context, model, NOTHING_FREE, 1).translation;
   const mine = own.lumps.map((id) => stageOfLump.get(id)!);
   if (own.boundary !== null && stageOfBoundary[own.boundary] !== undefined)
     mine.push(stageOfBoundary[own.boundary]!);
   for (const stage of mine) putBack(context, stage);
+  if (own.end) putBackEnd(context, stages.length);
   // The stretch before the first of them (or the one that holds the plane) leads there.
   let leadM = 0;
   let lead = -1;

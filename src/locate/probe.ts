@@ -10,6 +10,7 @@
 import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
 
+import type { ComplexArray } from '../numerics/complex.ts';
 import { type FitContext, linearise } from './fit-cascade.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
 
@@ -85,7 +86,15 @@ export function probeAcross(
 
 /** Adds a lump's own echo to the residual. */
 export function putBack(context: FitContext, stage: number): void {
-  const own = context.cascade.reflection(stage);
+  addEcho(context, context.cascade.reflection(stage), stage);
+}
+
+/** Adds the end's echo to the residual. @param stages Number of stages of the last `linearise`. */
+export function putBackEnd(context: FitContext, stages: number): void {
+  addEcho(context, context.cascade.behind(stages), stages);
+}
+
+function addEcho(context: FitContext, own: ComplexArray, stage: number): void {
   const through = context.cascade.sensitivity(stage);
   const { residual, weight } = context;
   for (let i = 0; i < weight.length; i++) {

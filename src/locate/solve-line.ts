@@ -14,6 +14,7 @@ import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
+import { judgeEndJoint } from './judge-end-joint.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, lumpDistanceM } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
@@ -88,6 +89,7 @@ export function solveLine(
   evaluateCost(context, model, ALL_FREE, 1);
   refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
   onProgress('weighing what is known', 0.95);
+  const endJoint = judgeEndJoint(context, model, settings);
   const floor = traceResidual(context, settings);
   const lumps = nameLumps(context, model, settings, floor);
   evaluateCost(context, model, ALL_FREE, 1);
@@ -96,6 +98,7 @@ export function solveLine(
   const echoes = buildEchoes(context, model, {
     line: end.line,
     joints,
+    endJoint,
     lumps,
     endKind: endKind.kind,
     endConfidence: 1 / (1 + Math.exp(-Math.min(30, endKind.lead / 2))),
