@@ -1,7 +1,20 @@
 // Bundles the program into dist/: one entry for the command line, one for the solve worker.
 // Splitting keeps the workspace (Ink, React) out of the path of every other verb.
 import { chmodSync, rmSync, writeFileSync } from 'node:fs';
+import { resolve } from 'node:path';
 import { build } from 'esbuild';
+
+const TEXT_WIDTH = resolve('src/plot/text-width.ts');
+
+/** Whoever measures text, the UI library too, asks our own front to string-width; only that asks string-width. */
+const textWidthOnce = {
+  name: 'text-width-once',
+  setup(bundle) {
+    bundle.onResolve({ filter: /^string-width$/ }, ({ importer }) =>
+      importer === TEXT_WIDTH ? undefined : { path: TEXT_WIDTH },
+    );
+  },
+};
 
 const common = {
   bundle: true,
@@ -10,10 +23,17 @@ const common = {
   target: 'node20',
   // Some libraries' "main" is a loader that no bundler sees through; their "module" is plain.
   mainFields: ['module', 'main'],
-  // Libraries of the older module kind ask for their own file's name and for require.
-  define: { 'process.env.NODE_ENV': '"production"', __filename: 'bundleFilename' },
+  define: {
+    'process.env.NODE_ENV': '"production"',
+    // Libraries of the older module kind ask for their own file's name and for require.
+    __filename: 'bundleFilename',
+    // Nothing here goes to the network. The layout engine under Ink would have Node load its whole HTTP client, 15 ms
+    // of every start, to unpack a text it holds itself; without fetch it does so on its own.
+    fetch: 'undefined',
+  },
   // Ink loads its developer tools only when asked; they are no dependency of ours.
   alias: { 'react-devtools-core': './src/terminal/no-devtools.ts' },
+  plugins: [textWidthOnce],
   banner: {
     js: [
       "import { createRequire as createRequireForBundle } from 'node:module';",

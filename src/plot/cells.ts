@@ -1,13 +1,13 @@
 /** Text measured and cut in terminal cells, not in characters. */
-import stringWidth from 'string-width';
 import { mergeRuns, type Run, run } from './run.ts';
+import { textWidth } from './text-width.ts';
 
 const PLAIN_ASCII = /^[\x20-\x7e]*$/;
 const CONTROL = /[\u0000-\u001f\u007f-\u009f\u200e\u200f\u202a-\u202e\u2066-\u2069]/g;
 
 /** Cells that a text takes on a terminal; wide characters count two, combining ones none. */
 export function cellWidth(text: string): number {
-  return PLAIN_ASCII.test(text) ? text.length : stringWidth(text);
+  return textWidth(text);
 }
 
 /** The text without control and direction characters, so that nothing read from a file can move the cursor. */

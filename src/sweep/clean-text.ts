@@ -86,14 +86,13 @@ function withoutEndMark(text: string): string {
   return text.endsWith('\x1a') ? text.slice(0, -1) : text;
 }
 
+/** All controls but tab, line ends and form feed. */
+const CONTROLS_IN_BINARY = /[\u0000-\u0008\u000b\u000e-\u001f\u007f]/g;
+
 function looksBinary(text: string): boolean {
   const sniffed = text.length > SNIFFED_LENGTH ? text.slice(0, SNIFFED_LENGTH) : text;
   if (sniffed.includes('\0')) return true;
-  let controls = 0;
-  for (let i = 0; i < sniffed.length; i++) {
-    const code = sniffed.charCodeAt(i);
-    if ((code < 32 && code !== 9 && code !== 10 && code !== 12 && code !== 13) || code === 127) controls++;
-  }
+  const controls = sniffed.match(CONTROLS_IN_BINARY)?.length ?? 0;
   return controls > sniffed.length * CONTROL_SHARE_LIMIT;
 }
 
