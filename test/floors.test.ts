@@ -104,6 +104,14 @@ describe('the floors of src', () => {
     expect(wrong).toEqual([]);
   });
 
+  it('ask for a SQLite in one file only', () => {
+    // Both are asked for at run time, where no import shows.
+    const asks = files.filter((file) =>
+      /\(\s*['"](?:node:sqlite|better-sqlite3)['"]/u.test(withoutComments(textOf(file))),
+    );
+    expect(asks).toEqual(['logbook/driver.ts']);
+  });
+
   it('leave stopping the process to cli/main.ts', () => {
     const wrong = files.filter(
       (file) => file !== 'cli/main.ts' && /\bprocess\.exit\s*\(/u.test(withoutComments(textOf(file))),

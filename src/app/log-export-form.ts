@@ -133,7 +133,10 @@ export function stemOf(entry: Entry): string {
   return [entry.takenAt.slice(0, 10), line, shortKey(entry.key)].filter((part) => part !== '').join('-');
 }
 
-/** Ending of a sweep's file: its own where it is a plain one. */
-export function endingOf(file: string): string {
-  return /\.[a-z0-9]{1,5}$/iu.exec(file)?.[0].toLowerCase() ?? '.txt';
+/** Ending of a sweep's file: its own where it is a plain one, else what its text looks like. */
+export function endingOf(file: string, bytes: Uint8Array): string {
+  const own = /\.[a-z0-9]{1,5}$/iu.exec(file)?.[0].toLowerCase();
+  return (
+    own ?? (/^\s*#/mu.test(new TextDecoder('latin1').decode(bytes.subarray(0, 20_000))) ? '.s1p' : '.csv')
+  );
 }

@@ -70,12 +70,16 @@ async function writeEntry(logbook: Logbook, entry: Entry, folder: string): Promi
   const standards = standardsOf(logbook, entry);
   if (!sweep.ok) return sweep;
   if (!standards.ok) return standards;
-  const names = { sweep: stem + endingOf(entry.file), standards: { open: '', short: '', load: '' } };
+  const names = {
+    sweep: stem + endingOf(entry.file, sweep.value),
+    standards: { open: '', short: '', load: '' },
+  };
   const bytes: (readonly [string, Uint8Array])[] = [[names.sweep, sweep.value]];
+  // The names of the standards' files are not kept.
   for (const which of ['open', 'short', 'load'] as const) {
     const standard = standards.value?.[which];
     if (!standard) continue;
-    names.standards[which] = `${stem}-standard-${which}${sniffedEnding(standard)}`;
+    names.standards[which] = `${stem}-standard-${which}${endingOf('', standard)}`;
     bytes.push([names.standards[which], standard]);
   }
   for (const [name, content] of bytes) {
@@ -83,11 +87,6 @@ async function writeEntry(logbook: Logbook, entry: Entry, folder: string): Promi
     if (!written.ok) return written;
   }
   return writeJson(join(folder, `${stem}.json`), entryDocument(entry, names));
-}
-
-/** The names of the standards' files are not kept, so their ending is seen from their text. */
-function sniffedEnding(bytes: Uint8Array): string {
-  return /^\s*#/mu.test(new TextDecoder('latin1').decode(bytes.subarray(0, 20_000))) ? '.s1p' : '.csv';
 }
 
 function writeJson(path: string, document: unknown): Promise<Outcome<null>> {

@@ -127,6 +127,7 @@ async function makeLogbook(place: string, file: string, makeFolder: boolean): Pr
     if (!made.ok) return made;
     made.value.close();
     await putInPlace(draft, place);
+    await syncFolder(dirname(place));
     return succeed(null);
   } catch (error) {
     return fail(diskProblem(error, file, 'write'));
@@ -145,6 +146,14 @@ async function putInPlace(draft: string, place: string): Promise<void> {
     if (await fileExists(place)) return;
     await rename(draft, place);
   }
+}
+
+/** The name of the file outlives a power cut too; where folders cannot be opened (Windows) nothing can be asked. */
+async function syncFolder(folder: string): Promise<void> {
+  const handle = await open(folder, 'r').catch(() => null);
+  if (!handle) return;
+  await handle.sync().catch(() => {});
+  await handle.close();
 }
 
 function missing(file: string): Problem {

@@ -6,7 +6,7 @@ import { STANDARD_INPUT, shownName } from '../app/files.ts';
 import { readLineFile } from '../app/line-request.ts';
 import { keepLine, knownLine, newEntry } from '../app/log-add.ts';
 import { logHead, summaryDocument } from '../app/log-documents.ts';
-import type { Added } from '../logbook/entries.ts';
+import type { Added } from '../logbook/add-entry.ts';
 import { type EntrySummary, type LineName, shortKey } from '../logbook/entry.ts';
 import type { Logbook } from '../logbook/logbook.ts';
 import { fullName } from '../logbook/stored-lines.ts';

@@ -131,7 +131,7 @@ function courseLines(trend: LineTrend, { columns, units }: LogTextOptions): stri
     if (!first || !last) return [];
     const moved = course.change === null ? '' : ` → ${text(last.value)}, ${change(course.change)}`;
     const yearly = course.perYear === null ? '' : ` (${change(course.perYear)} a year)`;
-    return wrapText(`${label}  ${text(first.value)}${moved}${yearly}`, columns);
+    return wrapText(`${label}: ${text(first.value)}${moved}${yearly}`, columns);
   };
   const decibel =
     (decimals: number) =>

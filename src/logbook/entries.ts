@@ -1,27 +1,10 @@
-/** Sweeps in and out of the tables. Adding the same sweep twice is one entry. */
+/** Sweeps out of the tables: lists, one entry, one line's history. */
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
 import type { Database, Row, SqlValue } from './driver.ts';
-import {
-  type Entry,
-  type EntryFigures,
-  type EntryKey,
-  type EntrySummary,
-  entryKey,
-  type NewEntry,
-  type Setup,
-  shortKey,
-} from './entry.ts';
+import { type Entry, type EntryFigures, type EntryKey, type EntrySummary, shortKey } from './entry.ts';
 import { figuresForm, objectForm, readStored, setupForm } from './figures.ts';
-import { hashOf, pack, unpack, unpackText } from './packing.ts';
-import { keepLine } from './stored-lines.ts';
-
-export type Added = {
-  readonly key: EntryKey;
-  readonly how: 'new' | 'already' | 'replaced';
-  /** True when the line is from now on known by another description than before. */
-  readonly lineChanged: boolean;
-};
+import { hashOf, unpack, unpackText } from './packing.ts';
 
 export type ListFilter = {
   readonly lineId?: number | null;
@@ -37,81 +20,6 @@ const SELECT_SUMMARY = `
     entry.who, entry.instrument, entry.weather, entry.note, entry.tool, entry.faults, entry.watches,
     line.baseline IS entry.key AS baseline
   FROM entry JOIN line ON line.id = entry.line`;
-
-/**
- * Adds a sweep; to be run within a transaction.
- *
- * @param replace With it an entry that is already there gets the new line, results and remarks; its original stays.
- */
-export function addEntry(db: Database, entry: NewEntry, replace: boolean): Added {
-  const hash = hashOf(entry.bytes);
-  const key = entryKey(hash, entry.port);
-  const there = db.get('SELECT line FROM entry WHERE key = ?', key);
-  if (there && !replace) return { key, how: 'already', lineChanged: false };
-  const line = keepLine(db, entry.line, entry.knownAs, entry.addedAt);
-  keepOriginal(db, entry.bytes, replace);
-  const standards = entry.standards && {
-    open: keepOriginal(db, entry.standards.open, replace),
-    short: keepOriginal(db, entry.standards.short, replace),
-    load: keepOriginal(db, entry.standards.load, replace),
-  };
-  const setup: Setup = { ...entry.setup, standards };
-  const row: EntryRow = {
-    key,
-    original: hash,
-    file: entry.file,
-    port: entry.port,
-    takenAt: entry.takenAt,
-    addedAt: entry.addedAt,
-    who: entry.who,
-    instrument: entry.instrument,
-    weather: entry.weather,
-    note: entry.note,
-    tool: entry.tool,
-    faults: entry.faults,
-    watches: entry.watches,
-    setup: JSON.stringify(setup),
-    described: entry.described,
-    figures: JSON.stringify(entry.figures),
-    document: entry.document,
-  };
-  const conclusion: SqlValue[] = [row.setup, row.described, row.figures, pack(row.document)];
-  const columns: SqlValue[] = [
-    line.id,
-    hash,
-    row.file,
-    row.port,
-    row.takenAt,
-    row.addedAt,
-    row.who,
-    row.instrument,
-    row.weather,
-    row.note,
-    row.tool,
-    row.faults,
-    row.watches,
-    digestOf(row, entry.line.site, entry.line.name),
-  ];
-  if (there) {
-    db.run(
-      `UPDATE entry SET line = ?, original = ?, file = ?, port = ?, taken_at = ?, added_at = ?, who = ?,
-        instrument = ?, weather = ?, note = ?, tool = ?, faults = ?, watches = ?, digest = ? WHERE key = ?`,
-      ...columns,
-      key,
-    );
-    db.run(
-      'UPDATE conclusion SET setup = ?, described = ?, figures = ?, document = ? WHERE entry = ?',
-      ...conclusion,
-      key,
-    );
-    // It may have been the baseline of the line that it was logged under by mistake.
-    db.run('UPDATE line SET baseline = NULL WHERE baseline = ? AND id <> ?', key, line.id);
-  } else {
-    db.run(`INSERT INTO entry VALUES (?${', ?'.repeat(columns.length)})`, key, ...columns);
-    db.run('INSERT INTO conclusion VALUES (?, ?, ?, ?, ?)', key, ...conclusion);
-  }
-  return { key, how: there ? 'replaced' : 'new', lineChanged: line.changed };
-}
 
 /** Entries in the order in which the sweeps were taken. */
 export function listEntries(db: Database, filter: ListFilter): readonly EntrySummary[] {
@@ -221,51 +129,6 @@ export function lineHistory(
   return problems.length > 0 ? fail(...problems) : succeed(history);
 }
 
-/** What the digest of an entry covers: everything that was saved with it. */
-export type EntryRow = Pick<
-  NewEntry,
-  | 'file'
-  | 'port'
-  | 'takenAt'
-  | 'addedAt'
-  | 'who'
-  | 'instrument'
-  | 'weather'
-  | 'note'
-  | 'tool'
-  | 'faults'
-  | 'watches'
-  | 'described'
-  | 'document'
-> & { readonly key: EntryKey; readonly original: string; readonly setup: string; readonly figures: string };
-
-/** SHA-256 over an entry, by which `check` knows that nothing of it was touched. */
-export function digestOf(row: EntryRow, site: string, name: string): string {
-  return hashOf(
-    JSON.stringify([
-      site,
-      name,
-      row.key,
-      row.original,
-      row.file,
-      row.port,
-      row.takenAt,
-      row.addedAt,
-      row.who,
-      row.instrument,
-      row.weather,
-      row.note,
-      row.tool,
-      row.faults,
-      row.watches,
-      row.setup,
-      row.described,
-      row.figures,
-      row.document,
-    ]),
-  );
-}
-
 export function damagedEntry(key: EntryKey, file: string): Problem {
   return {
     code: 'entry-damaged',
@@ -273,21 +136,6 @@ export function damagedEntry(key: EntryKey, file: string): Problem {
     what: `entry ${shortKey(key)} is damaged`,
     mend: 'the others are read as before; log its sweep again with --replace if you still have the file',
   };
-}
-
-/** Stores bytes once, whoever needs them; `mend` writes them again over what may be damaged. */
-function keepOriginal(db: Database, bytes: Uint8Array, mend: boolean): string {
-  const hash = hashOf(bytes);
-  const there = db.get('SELECT 1 FROM original WHERE hash = ?', hash);
-  if (there && !mend) return hash;
-  db.run(
-    `INSERT INTO original (hash, size, bytes) VALUES (?, ?, ?)
-     ON CONFLICT (hash) DO UPDATE SET size = excluded.size, bytes = excluded.bytes`,
-    hash,
-    bytes.length,
-    pack(bytes),
-  );
-  return hash;
 }
 
 function portOf(row: Row): string {

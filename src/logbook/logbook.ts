@@ -1,16 +1,8 @@
 /** A logbook that is open: every call gives an outcome, and what SQLite says becomes a problem. */
 import { fail, type Outcome, succeed } from '../outcome.ts';
+import { type Added, addEntry } from './add-entry.ts';
 import { type Database, type DriverName, findDriver } from './driver.ts';
-import {
-  type Added,
-  addEntry,
-  findEntry,
-  type ListFilter,
-  lineHistory,
-  listEntries,
-  readEntry,
-  readOriginal,
-} from './entries.ts';
+import { findEntry, type ListFilter, lineHistory, listEntries, readEntry, readOriginal } from './entries.ts';
 import type { Entry, EntryKey, EntrySummary, LineName, NewEntry, StoredLine } from './entry.ts';
 import { migrate } from './schema.ts';
 import { chooseBaseline, findStoredLine, keepLine, storedLines } from './stored-lines.ts';

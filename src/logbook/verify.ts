@@ -1,6 +1,7 @@
 /** Whether everything in a logbook is still what was saved. */
+
+import { digestOf } from './add-entry.ts';
 import { type Database, type Row, sqlFault } from './driver.ts';
-import { digestOf } from './entries.ts';
 import type { EntryKey, LineName } from './entry.ts';
 import { figuresForm, readStored, setupForm } from './figures.ts';
 import { hashOf, unpack, unpackText } from './packing.ts';

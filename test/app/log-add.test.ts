@@ -13,7 +13,7 @@ import type { AnalyseRequest } from '../../src/app/solver.ts';
 import { type CableTable, cableOf } from '../../src/line/cable-table.ts';
 import type { Line } from '../../src/line/line.ts';
 import { attenuationDbPer100m } from '../../src/line/loss.ts';
-import type { Added } from '../../src/logbook/entries.ts';
+import type { Added } from '../../src/logbook/add-entry.ts';
 import { figuresForm, readStored } from '../../src/logbook/figures.ts';
 import type { Logbook } from '../../src/logbook/logbook.ts';
 import type { Outcome } from '../../src/outcome.ts';
