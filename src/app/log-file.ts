@@ -4,6 +4,7 @@
  * A file is looked at before SQLite may touch it, so that whatever it is, it stays as it was. A new logbook is made
  * beside its place and put there whole: an empty file in that place is always a logbook that was lost.
  */
+import { randomUUID } from 'node:crypto';
 import { link, mkdir, open, rename, rm, stat } from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
 import { setTimeout } from 'node:timers/promises';
@@ -118,7 +119,7 @@ async function isCutOff(place: string): Promise<boolean> {
 
 /** Makes an empty logbook at a place where nothing lies; when another program is faster, its logbook stays. */
 async function makeLogbook(place: string, file: string, makeFolder: boolean): Promise<Outcome<null>> {
-  const draft = join(dirname(place), `.${FILE_NAME}-${process.pid}.new`);
+  const draft = join(dirname(place), `.${FILE_NAME}-${randomUUID()}.new`);
   try {
     if (makeFolder) await mkdir(dirname(place), { recursive: true });
     await stat(dirname(place));
