@@ -98,11 +98,15 @@ function findHeader(text: string): Header | null {
     const content = raw.slice(0, LONGEST_LINE).trim();
     const comment = isComment(content);
     const shown = comment ? content.replace(/^[#!\s]+/, '') : content;
+    let parted = false;
     for (const delimiter of DELIMITERS) {
+      // Names hold blanks too ("Freq [MHz];S11 dB"): these part columns only where nothing else does.
+      if (delimiter === ' ' && parted) break;
       const names = splitRow(shown, delimiter);
       if (names === null || names.length < 2) continue;
       const columns = recogniseColumns(names.map((name) => cleanForDisplay(name, 60)));
       const roles = new Set(columns.map((column) => `${column.role} ${column.parameter}`)).size;
+      parted ||= roles >= 2;
       const score = roles < 2 ? 0 : roles + (comment ? 0 : 0.5);
       if (score <= bestScore) continue;
       bestScore = score;

@@ -1,14 +1,8 @@
-/** The keywords of Touchstone 2.0 and 2.1: the header up to the network data, and what may follow it. */
-import type { Notice } from '../outcome.ts';
+/** The header of Touchstone 2.0 and 2.1: its keywords, from the version up to the network data. */
 import { readNumber } from './number-scan.ts';
 import type { ProblemList } from './problem-list.ts';
-import {
-  afterEndNotice,
-  badArgument,
-  type Keyword,
-  looseLine,
-  unknownKeyword,
-} from './touchstone-keyword-problems.ts';
+import { BRACKET, readKeyword, skipInformation } from './touchstone-keyword-line.ts';
+import { badArgument, type Keyword, looseLine, unknownKeyword } from './touchstone-keyword-problems.ts';
 import type { TouchstoneLines } from './touchstone-lines.ts';
 import { readOptionLine, type TouchstoneOptions } from './touchstone-option-line.ts';
 
@@ -87,56 +81,6 @@ export function readVersion2Header(lines: TouchstoneLines, problems: ProblemList
     mend: 'save the sweep again; if the file was cut short, copy it again',
   });
   return null;
-}
-
-/**
- * Goes from the line after the network data to the end: noise data and information are skipped, anything unknown is
- * a problem, and a missing `[End]` is a notice.
- *
- * @param standing True when `lines` already stands on the keyword that ended the data.
- */
-export function readVersion2Tail(
-  lines: TouchstoneLines,
-  standing: boolean,
-  problems: ProblemList,
-): readonly Notice[] {
-  let inNoise = false;
-  for (let has = standing; has; has = lines.next()) {
-    if (problems.full) return [];
-    if (lines.firstCode !== BRACKET) {
-      if (!inNoise) problems.add(looseLine(lines));
-      continue;
-    }
-    const keyword = readKeyword(lines, problems);
-    if (keyword?.name === 'end') return lines.next() ? [afterEndNotice(lines.line)] : [];
-    if (keyword?.name === 'noise data') inNoise = true;
-    else if (keyword?.name === 'begin information') skipInformation(lines, problems);
-    else if (keyword !== null) problems.add(unknownKeyword(lines, keyword));
-  }
-  return [
-    {
-      code: 'touchstone-no-end',
-      what: 'the file has no [End] after its data; it may have been cut short',
-    },
-  ];
-}
-
-/** Keyword of the current line, name in small letters; null after adding a problem. */
-function readKeyword(lines: TouchstoneLines, problems: ProblemList): Keyword | null {
-  const text = lines.content();
-  const close = text.indexOf(']');
-  if (close === -1) {
-    problems.add({
-      code: 'touchstone-keyword',
-      line: lines.line,
-      what: 'has a keyword without its closing bracket',
-      found: text,
-      mend: 'write the keyword in square brackets',
-    });
-    return null;
-  }
-  const name = text.slice(1, close).trim().toLowerCase().replace(/\s+/g, ' ');
-  return { name, argument: text.slice(close + 1).trim() };
 }
 
 function readVersion(lines: TouchstoneLines, problems: ProblemList): void {
@@ -308,18 +252,4 @@ function wholeNumber(
   return null;
 }
 
-function skipInformation(lines: TouchstoneLines, problems: ProblemList): void {
-  const begin = lines.line;
-  while (lines.next()) {
-    if (lines.firstCode === BRACKET && /^\[\s*end\s+information\s*\]/i.test(lines.content(200))) return;
-  }
-  problems.add({
-    code: 'touchstone-information',
-    line: begin,
-    what: 'begins an information block that never ends',
-    mend: 'add [End Information]',
-  });
-}
-
-const BRACKET = 91;
 const HASH = 35;

@@ -11,9 +11,10 @@ import { createProblemList, type ProblemList } from './problem-list.ts';
 import type { Sweep } from './sweep.ts';
 import { createSweepPoints } from './sweep-points.ts';
 import { guessPorts, type NetworkLayout, readNetworkData } from './touchstone-data.ts';
-import { readVersion2Header, readVersion2Tail, type Version2Header } from './touchstone-keywords.ts';
+import { readVersion2Header, type Version2Header } from './touchstone-keywords.ts';
 import { createTouchstoneLines, type TouchstoneLines } from './touchstone-lines.ts';
 import { readOptionLine } from './touchstone-option-line.ts';
+import { readVersion2Tail } from './touchstone-tail.ts';
 
 /** What a Touchstone reader must know beside the text. */
 export type TouchstoneRequest = {

@@ -38,6 +38,10 @@ describe('readDelimitedText: columns', () => {
     ['mhz,magnitude_db,phase_deg', '1,-20,180', [-0.1, 0]],
     ['mhz,return_loss_db,phase_deg', '1,20,0', [0.1, 0]],
     ['mhz,vswr,phase_deg', '1,1.5,0', [0.2, 0]],
+    ['Freq [MHz];S11 dB;S11 deg', '1;-20;180', [-0.1, 0]],
+    ['Freq [MHz],S11 [dB],S11 [deg]', '1,-20,180', [-0.1, 0]],
+    ['Frequency MHz\tReturn loss dB\tPhase deg', '1\t20\t0', [0.1, 0]],
+    ['# Freq [MHz];S11 lin mag;S11 deg', '1;0.5;90', [0, 0.5]],
     ['mhz,linmag,phase_rad', `1,0.5,${Math.PI / 2}`, [0, 0.5]],
   ])('reads size and phase by %s', (header, row, wanted) => {
     const [found] = pairsOf(sweepOf(table(header, row, row.replace(/^1/, '2')), CSV));
