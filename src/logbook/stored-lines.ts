@@ -67,11 +67,7 @@ export function findStoredLine(db: Database, wanted: string, file: string): Outc
       found: shown,
       mend: `name the site too: ${orList(found.map(fullName))}`,
     });
-  const near = nearestWords(
-    shown,
-    lines.flatMap((line) => [line.name, fullName(line)]),
-    2,
-  );
+  const near = nearestWords(shown, [...new Set(lines.flatMap((line) => [line.name, fullName(line)]))], 2);
   return fail({
     code: 'line-not-logged',
     file,

@@ -180,6 +180,10 @@ describe('findLine', () => {
       { code: 'line-ambiguous', mend: expect.stringContaining('"Bell Hill north 1"') },
     ]);
     expect(codesOf(logbook.findLine(''))).toEqual(['line-not-logged']);
+    const once = logbook.findLine('ansel ridge suth 1');
+    expect(once.ok ? [] : once.problems).toMatchObject([
+      { mend: 'did you mean "Ansel Ridge south 1" or "Ansel Ridge north 1"?' },
+    ]);
   });
 });
 
