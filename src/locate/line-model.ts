@@ -37,7 +37,10 @@ export type LineModel = {
   readonly boundaryM: number[];
   /** ln of each section's impedance over its description. */
   readonly impedanceRatio: number[];
-  /** Relative changes of conductor and dielectric loss, common to all sections. */
+  /**
+   * Relative changes of conductor and dielectric loss, common to all sections. A sample's loss differs as a whole; what
+   * the dielectric has beyond that is water or age.
+   */
   conductor: number;
   dielectric: number;
   readonly lumps: Lump[];
@@ -337,12 +340,13 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
   const add = (parameter: Parameter): number => parameters.push(parameter) - 1;
   const free = { boundary: null, lump: null, mean: 0 };
 
-  const conductorColumn = freedom.loss
+  const lossColumn = freedom.loss
     ? add({
         ...free,
-        name: 'conductor loss',
+        name: 'loss',
         get: () => model.conductor,
         set: (v) => {
+          model.dielectric += v - model.conductor;
           model.conductor = v;
         },
         sigma: model.priors.lossSigma,
@@ -354,10 +358,10 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
   const dielectricColumn = freedom.loss
     ? add({
         ...free,
-        name: 'dielectric loss',
-        get: () => model.dielectric,
+        name: 'dielectric loss beyond that',
+        get: () => model.dielectric - model.conductor,
         set: (v) => {
-          model.dielectric = v;
+          model.dielectric = model.conductor + v;
         },
         // The loss that is linear in frequency varies more between samples than the conductor's.
         sigma: Math.max(0.18, model.priors.lossSigma),
@@ -419,7 +423,10 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
     });
     for (const column of to.terms) slots.push({ stage, of: 'length', column, factor: 1 });
     for (const column of from.terms) slots.push({ stage, of: 'length', column, factor: -1 });
-    if (conductorColumn >= 0) slots.push({ stage, of: 'conductor', column: conductorColumn, factor: 1 });
+    if (lossColumn >= 0) {
+      slots.push({ stage, of: 'conductor', column: lossColumn, factor: 1 });
+      slots.push({ stage, of: 'dielectric', column: lossColumn, factor: 1 });
+    }
     if (dielectricColumn >= 0) slots.push({ stage, of: 'dielectric', column: dielectricColumn, factor: 1 });
     from = to;
   };

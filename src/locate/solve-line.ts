@@ -12,6 +12,7 @@ import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
+import { findWater } from './find-water.ts';
 import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
@@ -110,7 +111,7 @@ export function solveLine(
   return {
     echoes,
     ghosts: [],
-    stretches: [],
+    stretches: request.lineDescribed && !end.cut ? findWater(line, model, scale) : [],
     lengthM: endEcho.distanceM,
     lengthSigmaM: endEcho.distanceSigmaM,
     distanceScale: scale.factor,
