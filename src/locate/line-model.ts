@@ -81,6 +81,9 @@ export type Parameter = {
   readonly lump: number | null;
 };
 
+/** Names of the two loss parameters. */
+export const LOSS_PARAMETERS = { common: 'loss', dielectric: 'dielectric loss beyond that' };
+
 /** The model translated for one evaluation. */
 export type Translation = {
   readonly stages: readonly Stage[];
@@ -343,7 +346,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
   const lossColumn = freedom.loss
     ? add({
         ...free,
-        name: 'loss',
+        name: LOSS_PARAMETERS.common,
         get: () => model.conductor,
         set: (v) => {
           model.dielectric += v - model.conductor;
@@ -358,7 +361,7 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
   const dielectricColumn = freedom.loss
     ? add({
         ...free,
-        name: 'dielectric loss beyond that',
+        name: LOSS_PARAMETERS.dielectric,
         get: () => model.dielectric - model.conductor,
         set: (v) => {
           model.dielectric = model.conductor + v;

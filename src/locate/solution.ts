@@ -12,6 +12,15 @@ export type Ghost = {
   readonly betweenM: readonly number[];
 };
 
+/** How the loss of the run differs from its description, as the end showed it. */
+export type FittedLoss = {
+  /** Relative change of the loss that grows with the root of frequency, and of that which grows with frequency. */
+  readonly conductor: number;
+  readonly dielectric: number;
+  /** Covariance of the two: conductor, both, dielectric. Priors counted; the instrument's residue is in it. */
+  readonly covariance: readonly [number, number, number];
+};
+
 export type Solution = {
   /** In order of distance; described joints and the end included. */
   readonly echoes: readonly Echo[];
@@ -30,6 +39,9 @@ export type Solution = {
   readonly scaledTo: 'description' | 'velocity-factor';
   /** Fitted loss over described loss. */
   readonly lossFactor: number;
+  readonly loss: FittedLoss;
+  /** Impedance of each section over its description, ln. */
+  readonly impedanceRatios: readonly number[];
   /** Γ of the solved cascade at the sweep's frequencies. */
   readonly modelGamma: ComplexArray;
   readonly residualDb: number;

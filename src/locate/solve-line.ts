@@ -13,15 +13,23 @@ import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
 import { findWater } from './find-water.ts';
-import { createFitContext, evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
+import {
+  createFitContext,
+  evaluateCost,
+  type FitContext,
+  fitCovariance,
+  linearise,
+  refine,
+  residualVariance,
+} from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
 import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
-import { ALL_FREE, boundaryAt, type LineModel, lumpDistanceM } from './line-model.ts';
+import { ALL_FREE, boundaryAt, type LineModel, LOSS_PARAMETERS, lumpDistanceM } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
 import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
-import type { Solution } from './solution.ts';
+import type { FittedLoss, Solution } from './solution.ts';
 
 export type SolveRequest = {
   /** Frequencies all above 0. */
@@ -120,6 +128,8 @@ export function solveLine(
     endsEarly: end.cut,
     scaledTo: scale.to,
     lossFactor: 1 + model.conductor,
+    loss: fittedLoss(context, model, variance),
+    impedanceRatios: model.impedanceRatio.slice(),
     modelGamma: complexCopy(context.modelled),
     residualDb: residualDb(context),
     explained: 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300),
@@ -144,6 +154,24 @@ function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]):
         `interference (${shown}${more}); the model stands in for ${hit.length === 1 ? 'it' : 'them'}`,
     },
   ];
+}
+
+/** Loss parameters and their covariance; the fit's own are the common change and what the dielectric has beyond it. */
+function fittedLoss(context: FitContext, model: LineModel, variance: number): FittedLoss {
+  const linear = linearise(context, model, ALL_FREE, variance);
+  const covariance = fitCovariance(linear);
+  const p = linear.translation.parameters.length;
+  const at = (name: string): number => linear.translation.parameters.findIndex((q) => q.name === name);
+  const [c, d] = [at(LOSS_PARAMETERS.common), at(LOSS_PARAMETERS.dielectric)];
+  const cc = covariance?.[c * p + c] ?? 0;
+  const cd = covariance?.[c * p + d] ?? 0;
+  const dd = covariance?.[d * p + d] ?? 0;
+  // dielectric = common + beyond
+  return {
+    conductor: model.conductor,
+    dielectric: model.dielectric,
+    covariance: [cc, cc + cd, cc + 2 * cd + dd],
+  };
 }
 
 /** Confidence of each free lump's type from the competition of types. */

@@ -100,6 +100,8 @@ export function makeAnalysis(fields: Partial<Analysis> = {}): Analysis {
       endsEarly: false,
       scaledTo: 'description',
       lossFactor: 1.01,
+      loss: { conductor: 1.01 - 1, dielectric: 1.01 - 1, covariance: [1e-4, 1e-4, 1e-3] },
+      impedanceRatios: [],
       modelGamma: gamma,
       residualDb: -72.4,
       explained: 0.99998,

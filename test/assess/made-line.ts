@@ -66,6 +66,8 @@ export function makeSolution(echoes: readonly Echo[], fields: Partial<Solution> 
     endsEarly: false,
     scaledTo: 'description',
     lossFactor: 1,
+    loss: { conductor: 1 - 1, dielectric: 1 - 1, covariance: [1e-4, 1e-4, 1e-3] },
+    impedanceRatios: [],
     modelGamma: { re: new Float64Array(0), im: new Float64Array(0) },
     residualDb: -50,
     explained: 0.999,
