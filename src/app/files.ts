@@ -9,12 +9,10 @@ import type { Readable } from 'node:stream';
 import writeFileAtomic from 'write-file-atomic';
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
+import { STANDARD_INPUT } from './standard-input.ts';
 
 /** Largest input that is read, bytes (the design's limit). */
 export const MOST_FILE_BYTES = 256 * 1024 * 1024;
-
-/** The name that stands for standard input. */
-export const STANDARD_INPUT = '-';
 
 /**
  * Reads a whole file, or standard input for `-`.
@@ -39,8 +37,12 @@ export async function readBytes(
       return fail({
         code: 'file-empty',
         file,
-        what: 'the file is empty',
-        mend: 'save it again from the instrument, and check that the copy was complete',
+        ...(path === STANDARD_INPUT
+          ? { what: 'nothing came', mend: 'see that the command before the pipe writes the sweep' }
+          : {
+              what: 'the file is empty',
+              mend: 'save it again from the instrument, and check that the copy was complete',
+            }),
       });
     return succeed(bytes);
   } catch (error) {

@@ -14,7 +14,8 @@ import { readLine } from '../line/read-line.ts';
 import { fail, type Notice, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
 import { parseLengthM, parseTemperatureC } from '../sweep/number-text.ts';
-import { fileExists, readText, STANDARD_INPUT, shownName } from './files.ts';
+import { fileExists, readText, shownName } from './files.ts';
+import { STANDARD_INPUT } from './standard-input.ts';
 
 /** Flags that describe or change the line, as typed; null where not given. */
 export type LineFlags = {

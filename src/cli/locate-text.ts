@@ -3,6 +3,7 @@ import type { Analysis } from '../app/analysis.ts';
 import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
+import { spokenFile } from '../app/standard-input.ts';
 import type { Finding } from '../assess/finding.ts';
 import { describedLengthM } from '../line/line.ts';
 import type { Echo, Severity } from '../locate/echo.ts';
@@ -16,7 +17,7 @@ import {
   lengthText,
   lengthWithSigmaText,
   levelText,
-  percentText,
+  sureText,
   temperatureText,
   type Units,
 } from '../plot/quantity-text.ts';
@@ -71,7 +72,7 @@ function verdictLines(analysis: Analysis, { paint, columns }: TextOptions): stri
     ...(watches > 0 ? [`${watches} to watch`] : []),
   ];
   const verdict = words.length > 0 ? words.join(', ') : 'no fault found';
-  const name = cutText(analysis.line.name || analysis.sweep.file, columns - verdict.length - 4);
+  const name = cutText(analysis.line.name || spokenFile(analysis.sweep.file), columns - verdict.length - 4);
   return [`${paint(worst, `${MARKS[worst]} ${name}: ${verdict}`)}`];
 }
 
@@ -84,7 +85,7 @@ function summaryLines(analysis: Analysis, { units, columns }: TextOptions): stri
   return [
     ...hanging(
       'sweep ',
-      `${sweep.file}, ${frequencySpanText(sweep.frequencyHz[0] ?? 0, last)}, ${sweep.frequencyHz.length} points${port}`,
+      `${spokenFile(sweep.file)}, ${frequencySpanText(sweep.frequencyHz[0] ?? 0, last)}, ${sweep.frequencyHz.length} points${port}`,
       columns,
     ),
     ...hanging(
@@ -103,7 +104,7 @@ function summaryLines(analysis: Analysis, { units, columns }: TextOptions): stri
     ...hanging(
       'reach ',
       `resolution ${lengthText(reach.resolutionM, units)}, unambiguous to ${lengthText(reach.unambiguousM, units, 1)}, ` +
-        `weakest echo seen at the end ${levelText(reach.weakestReturnLossDb)}`,
+        `at the end echoes down to ${levelText(reach.weakestReturnLossDb)}`,
       columns,
     ),
     ...hanging('fit   ', `${solution.elements} elements leave ${decibelText(solution.residualDb)}`, columns),
@@ -117,7 +118,7 @@ function echoTable(analysis: Analysis, { columns, units, paint }: TextOptions): 
     fixedText(-echo.returnLossDb, 1),
     fixedText(-echo.correctedReturnLossDb, 1),
     echoWords(analysis, echo),
-    percentText(echo.confidence),
+    sureText(echo.confidence),
     shortPlace(analysis, echo),
   ]);
   const widths = TABLE_HEAD.map((title, column) =>
@@ -150,7 +151,7 @@ function findingLines(finding: Finding, { columns, units, paint }: TextOptions):
     `${lengthWithSigmaText(finding.distanceM, finding.distanceSigmaM, units)}`;
   return [
     ...wrapText(head, columns).map((line) => paint(finding.severity, line)),
-    ...hanging('  ', `${finding.what}, ${percentText(finding.confidence)} sure`, columns),
+    ...hanging('  ', `${finding.what}, ${sureText(finding.confidence)} sure`, columns),
     ...listed('  likely       ', finding.causes, columns),
     ...listed('  check first  ', finding.checks, columns),
     ...listed('  bring        ', finding.bring, columns),

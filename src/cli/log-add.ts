@@ -2,10 +2,11 @@
 import { stat } from 'node:fs/promises';
 import { analyse } from '../app/analyse.ts';
 import { programVersion } from '../app/bundled.ts';
-import { STANDARD_INPUT, shownName } from '../app/files.ts';
+import { shownName } from '../app/files.ts';
 import { readLineFile } from '../app/line-request.ts';
 import { keepLine, knownLine, newEntry } from '../app/log-add.ts';
 import { logHead, summaryDocument } from '../app/log-documents.ts';
+import { STANDARD_INPUT } from '../app/standard-input.ts';
 import type { Added } from '../logbook/add-entry.ts';
 import { type EntrySummary, type LineName, shortKey } from '../logbook/entry.ts';
 import type { Logbook } from '../logbook/logbook.ts';

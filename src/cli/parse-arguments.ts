@@ -121,6 +121,8 @@ function looksLikeFile(word: string): boolean {
 }
 
 function unknownVerb(word: string): Problem {
+  if (word === 'help')
+    return { code: 'verb-unknown', what: 'help is a flag of this program', mend: 'write feedsonde --help' };
   const [near] = nearestWords(word, TYPED_VERBS);
   return {
     code: 'verb-unknown',

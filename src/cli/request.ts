@@ -56,6 +56,11 @@ export async function prepareRequest(
   const port = parsePort(invocation.text('port'));
   if (!sweep.ok || !line.ok || !standards.ok || !offsetM.ok || !port.ok) {
     const outcomes: Outcome<unknown>[] = [sweep, line, standards, offsetM, port];
+    // A file that is no sweep at all is worth knowing before one looks for its line.
+    if (sweep.ok && port.ok) {
+      const { readSweep } = await import('../sweep/read-sweep.ts');
+      outcomes.unshift(readSweep(sweep.value, { file: sweepFile, ...(port.value && { port: port.value }) }));
+    }
     return fail(...outcomes.flatMap((outcome) => (outcome.ok ? [] : outcome.problems)));
   }
   return succeed(
@@ -102,7 +107,7 @@ async function readStandards(invocation: Invocation): Promise<Outcome<AnalyseReq
   if (missing.length > 0)
     return fail({
       code: 'standards-incomplete',
-      what: `a correction needs all three standards; ${missing.map((flag) => `--${flag}`).join(' and ')} is missing`,
+      what: `a correction needs all three standards; ${missing.map((flag) => `--${flag}`).join(' and ')} ${missing.length === 1 ? 'is' : 'are'} missing`,
       mend: 'give the sweeps of open, short and load, or none of them',
     });
   const files = await Promise.all(STANDARD_FLAGS.map((flag) => readBytes(invocation.text(flag) ?? '')));

@@ -64,7 +64,8 @@ export function spreadRuns(left: readonly Run[], right: readonly Run[], width: n
 }
 
 /**
- * A paragraph broken into lines of at most `width` cells, at blanks where there are any.
+ * A paragraph broken into lines of at most `width` cells, at blanks where there are any; a figure, its unit and its
+ * uncertainty stay together ("48.3 m ±0.5").
  *
  * @returns At least one line; a word longer than the line is broken.
  */
@@ -72,7 +73,7 @@ export function wrapText(text: string, width: number): readonly string[] {
   if (width < 1) throw new RangeError(`cannot wrap to ${width} cells`);
   const lines: string[] = [];
   let line = '';
-  for (let word of harmless(text).split(/\s+/).filter(Boolean)) {
+  for (let word of wordsOf(harmless(text))) {
     if (line !== '' && cellWidth(line) + 1 + cellWidth(word) <= width) {
       line += ` ${word}`;
       continue;
@@ -87,6 +88,18 @@ export function wrapText(text: string, width: number): readonly string[] {
   }
   if (line !== '' || lines.length === 0) lines.push(line);
   return lines;
+}
+
+/** A blank that no line ends at: before a unit after its figure, and about the sign of an uncertainty. */
+const FIRM_BLANK =
+  /(?<=\d) (?=(?:m|ft|Ω|dB|%|[kMG]?Hz|[np]H|[np]F|[np]s|mm|°[CF])(?![\p{L}\p{N}]))| (?=±)|(?<=±) /gu;
+
+/** Stands for a firm blank while words are parted; `harmless` leaves no such character in a text. */
+const FIRM = '\u0001';
+
+function wordsOf(text: string): readonly string[] {
+  const words = text.replace(/\s+/g, ' ').replace(FIRM_BLANK, FIRM).split(' ').filter(Boolean);
+  return words.map((word) => word.replaceAll(FIRM, ' '));
 }
 
 /** The longest start of a text that fits in `width` cells, never splitting a character from its accents. */

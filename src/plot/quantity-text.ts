@@ -52,6 +52,14 @@ export function lengthWithSigmaText(lengthM: number, sigmaM: number, units: Unit
     : `${value} ${units}`;
 }
 
+/** Where a length lies 95 times in 100: "between" "47.90 m and 48.10 m". Decimals follow the uncertainty. */
+export function lengthSpanText(lengthM: number, sigmaM: number, units: Units): string {
+  const perMetre = lengthPerMetre(units);
+  const decimals = decimalsFor(sigmaM * perMetre);
+  const ends = [lengthM - 2 * sigmaM, lengthM + 2 * sigmaM];
+  return ends.map((endM) => `${fixedText(endM * perMetre, decimals)} ${units}`).join(' and ');
+}
+
 /** A size of reflection from a positive return loss: 27.1 becomes "−27.1 dB". */
 export function levelText(returnLossDb: number): string {
   return `${fixedText(-returnLossDb, 1)} dB`;
@@ -72,6 +80,11 @@ export function percentText(share: number): string {
   if (!Number.isFinite(share)) return UNKNOWN;
   const percent = Math.round(share * 100);
   return `${share < 1 ? Math.min(99, percent) : percent} %`;
+}
+
+/** How sure an estimate is, as a percentage; none is surer than 99 %. */
+export function sureText(confidence: number): string {
+  return percentText(Math.min(0.99, confidence));
 }
 
 /** Degrees Celsius, or Fahrenheit where feet are shown: "12 °C", "54 °F". */

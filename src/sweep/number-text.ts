@@ -189,7 +189,7 @@ function parseQuantity(text: string, kind: Kind): Outcome<number> {
     );
   }
   if (tidied.length > LONGEST_QUANTITY || Number.isNaN(readNumber(numberText))) {
-    return fail(quantityProblem(text, kind, `is no ${kind.name}`, 'write a number and its unit'));
+    return fail(quantityProblem(text, kind, `this is no ${kind.name}`, 'write a number and its unit'));
   }
   if (rest === '' && kind.bare === null) {
     return fail(

@@ -1,5 +1,6 @@
 /** Questions to the solver, and its answers. */
 import type { AnalyseRequest } from '../app/solver.ts';
+import { STANDARD_INPUT } from '../app/standard-input.ts';
 import type { Notice } from '../outcome.ts';
 import { lookWish, outerSpan } from './derived.ts';
 import type { Effect } from './effects.ts';
@@ -47,7 +48,7 @@ function uniqueNotices(notices: readonly Notice[]): readonly Notice[] {
 /** Asks for the sweep file anew. */
 export function readAgain(state: State): Step {
   if (!state.request) return [state, []];
-  if (state.request.sweepFile === '-')
+  if (state.request.sweepFile === STANDARD_INPUT)
     return [{ ...state, remark: 'this sweep came on standard input and cannot be read again' }, []];
   const [next, id] = ask(state, state.request, 'reading the sweep');
   return [next, [{ type: 'stopSolving' }, { type: 'readSweep', id, file: state.request.sweepFile }]];

@@ -58,7 +58,7 @@ const WORK: readonly KeyRow[] = [
     group: 'what was found',
     shown: 'Enter',
     does: 'all that is known of the chosen one',
-    hint: { keys: 'Enter', word: 'all of it', rank: 4 },
+    hint: { keys: 'Enter', word: 'more', rank: 4 },
     needsAnswer: true,
     strokes: { enter: { type: 'openPage', page: 'finding' } },
   },

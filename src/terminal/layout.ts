@@ -31,6 +31,11 @@ export type Layout = {
   readonly detailRows: number;
 };
 
+/** Rows below the readout: heading, list, and the details where they do not stand beside it. */
+export function lowerHeight({ listRows, detailRows, sideBySide }: Layout): number {
+  return 1 + listRows + (sideBySide ? 0 : detailRows);
+}
+
 /** True when the terminal is too small to draw the workspace. */
 export function tooSmall(size: { readonly columns: number; readonly rows: number }): boolean {
   return size.columns < SMALLEST.columns || size.rows < SMALLEST.rows;

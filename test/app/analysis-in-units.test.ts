@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { analysisInUnits } from '../../src/app/analysis-in-units.ts';
+import { analysisInUnits, noticeInUnits } from '../../src/app/analysis-in-units.ts';
 import { findingsOf, placesOf } from '../../src/assess/find-findings.ts';
 import { makeEcho, makeEnd, makeLine, makeSolution } from '../assess/made-line.ts';
 import { makeAnalysis } from './made-analysis.ts';
@@ -34,5 +34,28 @@ describe('analysisInUnits', () => {
     expect(shown.findings.map(({ where, what, ...rest }) => rest)).toEqual(
       analysis.findings.map(({ where, what, ...rest }) => rest),
     );
+  });
+});
+
+describe('noticeInUnits', () => {
+  const notice = {
+    code: 'length-differs',
+    what: 'the line measures 46.99 m by its velocity factor but is described as 45.72 m (+2.8 %): distances follow it',
+  };
+
+  it('writes the lengths of a notice in feet, one decimal fewer, and nothing else', () => {
+    expect(noticeInUnits(notice, 'm')).toBe(notice);
+    expect(noticeInUnits(notice, 'ft').what).toBe(
+      'the line measures 154.2 ft by its velocity factor but is described as 150.0 ft (+2.8 %): distances follow it',
+    );
+    const band = { code: 'band-narrow', what: 'the band of 20 MHz parts only what is 6.61 m apart, on 5 mm' };
+    expect(noticeInUnits(band, 'ft').what).toBe(
+      'the band of 20 MHz parts only what is 21.7 ft apart, on 5 mm',
+    );
+  });
+
+  it('leaves a notice alone that holds the name of a file', () => {
+    const named = { code: 'line-beside', what: 'the line description is mast 45.72 m.line.json' };
+    expect(noticeInUnits(named, 'ft')).toBe(named);
   });
 });

@@ -71,6 +71,21 @@ describe('row 1: a file that cannot be read', () => {
     expectRefusal(await locateText(''), /bad\.s1p: the file is empty/u);
   });
 
+  it('that is standard input with nothing in it', async () => {
+    expectRefusal(
+      await runCli(['locate', '-', ...CABLE], { cwd: folder, input: '' }),
+      /^feedsonde: standard input: nothing came\n/u,
+    );
+  });
+
+  it('that is no sweep at all: says so even where the line is missing too', async () => {
+    await writeFile(join(folder, 'letter.s1p'), 'Dear crew,\n');
+    expectRefusal(
+      await runCli(['locate', 'letter.s1p'], { cwd: folder }),
+      /letter\.s1p, line 1: has data before any option line.*\n.*\n.*nothing says what line/u,
+    );
+  });
+
   it('that holds only comments', async () => {
     expectRefusal(await locateText('! nothing\n# Hz S RI R 50\n'), /bad\.s1p/u);
   });

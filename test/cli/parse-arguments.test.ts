@@ -22,6 +22,10 @@ describe('parseArguments', () => {
     expect(parse('--', 'locate')).toMatchObject({ verb: 'workspace', inputs: ['locate'] });
   });
 
+  it('points to --help when asked for help as a verb', () => {
+    expect(problemsOf('help')).toMatchObject([{ code: 'verb-unknown', mend: 'write feedsonde --help' }]);
+  });
+
   it('finds the verb wherever it stands between the flags', () => {
     for (const argv of [
       ['locate', 'a.s1p', '--cable', 'rg-213'],

@@ -77,6 +77,18 @@ describe('spreadRuns', () => {
 });
 
 describe('wrapText', () => {
+  it('wrapText keeps a figure with its unit and its uncertainty', () => {
+    expect(wrapText('toward the end, 48.3 m ±0.5', 22)).toEqual(['toward the end,', '48.3 m ±0.5']);
+    expect(wrapText('reads 9.0 ± 0.4 Ω; -22 dB at 2 GHz, 12 °C', 14)).toEqual([
+      'reads',
+      '9.0 ± 0.4 Ω;',
+      '-22 dB at',
+      '2 GHz, 12 °C',
+    ]);
+    expect(wrapText('joint 3 main run', 9)).toEqual(['joint 3', 'main run']);
+    expect(wrapText('48.3 m ±0.5', 6)).toEqual(['48.3 m', ' ±0.5']);
+  });
+
   it('wrapText breaks at blanks and never passes the width', () => {
     expect(wrapText('water or corrosion at the joint', 12)).toEqual([
       'water or',

@@ -4,11 +4,13 @@ import {
   fixedText,
   frequencySpanText,
   frequencyText,
+  lengthSpanText,
   lengthText,
   lengthWithSigmaText,
   levelText,
   ohmText,
   percentText,
+  sureText,
   temperatureText,
 } from '../../src/plot/quantity-text.ts';
 
@@ -37,6 +39,21 @@ describe('lengthText', () => {
     expect(lengthText(48.021, 'm')).toBe('48.02 m');
     expect(lengthText(48.021, 'ft')).toBe('157.5 ft'); // 48.021 / 0.3048 = 157.55
     expect(lengthText(46, 'm', 1)).toBe('46.0 m');
+  });
+});
+
+describe('lengthSpanText', () => {
+  it('lengthSpanText gives two uncertainties to either side, no finer than they are', () => {
+    expect(lengthSpanText(48.0213, 0.07, 'm')).toBe('47.88 m and 48.16 m');
+    expect(lengthSpanText(48.0213, 0.07, 'ft')).toBe('157.1 ft and 158.0 ft');
+    expect(lengthSpanText(0, 0.002, 'm')).toBe('−0.004 m and 0.004 m');
+  });
+});
+
+describe('sureText', () => {
+  it('sureText never says more than 99 %', () => {
+    expect([0.5, 0.973, 0.99999, 1].map(sureText)).toEqual(['50 %', '97 %', '99 %', '99 %']);
+    expect(sureText(Number.NaN)).toBe('–');
   });
 });
 

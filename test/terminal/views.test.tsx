@@ -153,6 +153,15 @@ describe('views', () => {
     expect(text).toContain('× x.s1p, line 7: this is no number (found: abc) save it anew');
     expect(text).toContain('× and another mend that');
     expect(text).toContain('not solved');
+    const problem = { code: 'c', what: `${'very '.repeat(40)}long`, mend: 'shorten it' };
+    expect(
+      words(play(startedState(SIZE), { type: 'solved', id: 1, outcome: fail(problem) }).state),
+    ).toContain(`× ${'very '.repeat(40)}long shorten it`);
+    const many = fail(...Array.from({ length: 30 }, (_, i) => ({ ...problem, what: `no ${i}` })));
+    const cut = plain(play(startedState(SIZE), { type: 'solved', id: 1, outcome: many }).state);
+    expect(cut.some((row) => row.includes('r reads the sweep again'))).toBe(true);
+    expect(cut.some((row) => row.trim() === '…')).toBe(true);
+    expect(cut).toHaveLength(SIZE.rows - 1);
   });
 
   it('says a sound line is sound, and that nothing stands out where nothing does', () => {

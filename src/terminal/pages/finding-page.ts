@@ -1,7 +1,7 @@
 /** All that is known of the chosen one. */
 
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
-import { lengthText, lengthWithSigmaText, levelText, percentText } from '../../plot/quantity-text.ts';
+import { lengthSpanText, lengthWithSigmaText, levelText, sureText } from '../../plot/quantity-text.ts';
 import { chosenOf } from '../derived.ts';
 import type { Found } from '../found.ts';
 import { type Paragraph, paragraphRows } from '../parts/paragraph.ts';
@@ -23,19 +23,16 @@ export function findingPage(state: State, width: number): Page {
   const rowsOf = (paragraph: Paragraph) => paragraphRows(paragraph, width, LABEL);
   const { units } = state;
   const sigmaM = found.distanceSigmaM;
-  const likelyBetween =
-    `${lengthText(found.distanceM - 2 * sigmaM, units, 3)} to ${lengthText(found.distanceM + 2 * sigmaM, units, 3)}, ` +
-    '95 times in 100';
   const facts: readonly Paragraph[] = [
     {
       label: 'verdict',
       text: `${SEVERITY_GLYPHS[found.severity]} ${SEVERITY_WORDS[found.severity]}`,
       role: found.severity,
     },
-    { label: 'what', text: `${found.what}, ${percentText(found.confidence)} sure`, role: 'strong' },
+    { label: 'what', text: `${found.what}, ${sureText(found.confidence)} sure`, role: 'strong' },
     { label: 'where', text: found.where },
     { label: 'distance', text: lengthWithSigmaText(found.distanceM, sigmaM, units) },
-    { label: 'between', text: likelyBetween },
+    { label: 'between', text: `${lengthSpanText(found.distanceM, sigmaM, units)}, 95 times in 100` },
     ...levels(found),
   ];
   return {

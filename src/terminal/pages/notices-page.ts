@@ -1,5 +1,6 @@
 /** What the answer rests on: the sweep, what it can do, how well the line explains it, and every doubt. */
 import type { Analysis } from '../../app/analysis.ts';
+import { noticeInUnits } from '../../app/analysis-in-units.ts';
 import { describedLengthM } from '../../line/line.ts';
 import {
   decibelText,
@@ -22,7 +23,9 @@ const LABEL = 14;
 export function noticesPage(state: State, width: number): Page {
   const analysis = analysisOf(state);
   if (!analysis || state.solve.phase !== 'ready') return { title: 'what the answer rests on', lines: [] };
-  const notices = state.solve.notices.map(({ what }): Paragraph => ({ label: 'notice', text: what }));
+  const notices = state.solve.notices.map(
+    (notice): Paragraph => ({ label: 'notice', text: noticeInUnits(notice, state.units).what }),
+  );
   const none: Paragraph = { label: 'notices', text: 'none' };
   return {
     title: 'what the answer rests on',

@@ -2,7 +2,7 @@
 import type { Analysis } from '../../app/analysis.ts';
 import { fitRuns, fitText } from '../../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
-import { fixedText, lengthWithSigmaText, percentText, type Units } from '../../plot/quantity-text.ts';
+import { fixedText, lengthWithSigmaText, sureText, type Units } from '../../plot/quantity-text.ts';
 import { type Run, run } from '../../plot/run.ts';
 import { type Found, foundIn } from '../found.ts';
 import type { State } from '../state.ts';
@@ -68,7 +68,7 @@ function foundRow(row: Found, chosen: boolean, units: Units, width: number): rea
     seen: levelOf(row.returnLossDb),
     corrected: levelOf(row.correctedReturnLossDb),
     words: row.short,
-    sure: percentText(row.confidence),
+    sure: sureText(row.confidence),
     place: width >= WHOLE_PLACE_FROM ? row.where.replace(/^at /u, '') : row.place,
   });
   const glyph = SEVERITY_GLYPHS[row.severity];

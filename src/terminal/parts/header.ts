@@ -1,5 +1,6 @@
 /** The top row: which line, which sweep, and the verdict. */
 import type { Analysis } from '../../app/analysis.ts';
+import { STANDARD_INPUT } from '../../app/standard-input.ts';
 import { cellWidth, fitRuns, spreadRuns } from '../../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
 import { frequencySpanText, temperatureText } from '../../plot/quantity-text.ts';
@@ -28,7 +29,7 @@ export function cautionRow(state: State, width: number): readonly Run[] {
 function titleOf(state: State): string {
   if (!state.request) return 'feedsonde';
   const { line, sweepFile } = state.request;
-  return line.name || (sweepFile === '-' ? 'sweep from standard input' : baseName(sweepFile));
+  return line.name || (sweepFile === STANDARD_INPUT ? 'sweep from standard input' : baseName(sweepFile));
 }
 
 function temperatureRuns(state: State): readonly Run[] {
@@ -43,7 +44,7 @@ function sweepTexts(state: State): readonly string[] {
   if (!analysis) return name === '' ? [] : [name];
   const span = spanText(analysis);
   const points = `${span} · ${analysis.sweep.frequencyHz.length} points`;
-  return [...(name === '' || name === '-' ? [] : [`${name} · ${points}`]), points, span];
+  return [...(name === '' || name === STANDARD_INPUT ? [] : [`${name} · ${points}`]), points, span];
 }
 
 function spanText({ sweep }: Analysis): string {

@@ -1,7 +1,7 @@
 /** The plot with its axes, or words in its place. */
 import { cellWidth, fitRuns, fitText, wrapText } from '../../plot/cells.ts';
 import { axisText, type ChartSpec, drawChart } from '../../plot/chart.ts';
-import { type Run, run } from '../../plot/run.ts';
+import { type Role, type Run, run } from '../../plot/run.ts';
 import { GUTTER, type Layout } from '../layout.ts';
 
 /** Cells of a label beside the plot. */
@@ -22,16 +22,23 @@ export function plotRows(chart: ChartSpec, layout: Layout): readonly (readonly R
   return [...rows, fitRuns([run(axis, 'axis')], columns)];
 }
 
-/** Paragraphs in the place of the plot, as many rows as it and its axis. */
+/** Words in the place of the plot: a text is broken into lines, runs are a line as they are. */
+export type Words = string | { readonly text: string; readonly role: Role } | readonly Run[];
+
+/** Paragraphs in the place of the plot, centred in `height` rows; by default as many as it and its axis have. */
 export function wordsInPlaceOfPlot(
-  paragraphs: readonly (string | readonly Run[])[],
+  paragraphs: readonly Words[],
   layout: Layout,
+  height = layout.plotRows + 1,
 ): readonly (readonly Run[])[] {
   const width = Math.min(MEASURE, layout.columns - GUTTER - 1);
-  const lines = paragraphs.flatMap((paragraph): readonly (readonly Run[])[] =>
-    typeof paragraph === 'string' ? wrapText(paragraph, width).map((line) => [run(line)]) : [paragraph],
-  );
-  const height = layout.plotRows + 1;
+  const lines = paragraphs.flatMap((paragraph): readonly (readonly Run[])[] => {
+    if (typeof paragraph === 'string') return wrapText(paragraph, width).map((line) => [run(line)]);
+    if ('role' in paragraph)
+      return wrapText(paragraph.text, width).map((line) => [run(line, paragraph.role)]);
+    return [paragraph];
+  });
+  if (lines.length > height) lines.splice(height - 1, lines.length, [run('…')]);
   const above = Math.max(0, Math.floor((height - lines.length) / 2));
   return Array.from({ length: height }, (_, i) =>
     fitRuns([run(' '.repeat(GUTTER)), ...(lines[i - above] ?? [])], layout.columns),

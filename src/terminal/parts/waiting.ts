@@ -2,10 +2,10 @@
 import type { Problem } from '../../outcome.ts';
 import { cutText, fitRuns } from '../../plot/cells.ts';
 import { type Run, run } from '../../plot/run.ts';
-import type { Layout } from '../layout.ts';
+import { type Layout, lowerHeight } from '../layout.ts';
 import { lookChart } from '../pictures/trace-picture.ts';
 import type { Solve, State } from '../state.ts';
-import { plotRows, progressRuns, wordsInPlaceOfPlot } from './plot.ts';
+import { plotRows, progressRuns, type Words, wordsInPlaceOfPlot } from './plot.ts';
 
 const BAR_WIDTH = 46;
 
@@ -15,14 +15,7 @@ export function waitingRows(state: State, layout: Layout): readonly (readonly Ru
     case 'running':
       return runningRows(state, state.solve, layout);
     case 'failed':
-      return wordsAlone(
-        [
-          ...state.solve.problems.flatMap(problemTexts),
-          '',
-          'r reads the sweep again once it is mended, c takes another cable, q quits.',
-        ],
-        layout,
-      );
+      return wordsAlone(failureWords(state.solve.problems), layout);
     case 'idle':
       return wordsAlone(
         ['Nothing is open. Start with a sweep: feedsonde SWEEP --line FILE', 'feedsonde --help says more.'],
@@ -31,6 +24,20 @@ export function waitingRows(state: State, layout: Layout): readonly (readonly Ru
     case 'ready':
       return wordsAlone([], layout);
   }
+}
+
+/** The problems alone, over all that lies between strip and footer. */
+export function failedRows(problems: readonly Problem[], layout: Layout): readonly (readonly Run[])[] {
+  const height = layout.plotRows + 2 + lowerHeight(layout);
+  return wordsInPlaceOfPlot(failureWords(problems), layout, height);
+}
+
+function failureWords(problems: readonly Problem[]): readonly Words[] {
+  return [
+    'r reads the sweep again once it is mended, c takes another cable, q quits.',
+    '',
+    ...problems.flatMap(problemTexts),
+  ];
 }
 
 /** The first look with the progress under it; without one the progress alone. */
@@ -46,16 +53,13 @@ function runningRows(
   return [...plotRows(lookChart(state, solve.look), layout), fitRuns(row, layout.columns)];
 }
 
-function wordsAlone(
-  paragraphs: readonly (string | readonly Run[])[],
-  layout: Layout,
-): readonly (readonly Run[])[] {
+function wordsAlone(paragraphs: readonly Words[], layout: Layout): readonly (readonly Run[])[] {
   return [...wordsInPlaceOfPlot(paragraphs, layout), fitRuns([], layout.columns)];
 }
 
 /** Where, what and what was found there; then how to mend it. */
-function problemTexts({ file, line, what, found, mend }: Problem): readonly (string | readonly Run[])[] {
+function problemTexts({ file, line, what, found, mend }: Problem): readonly Words[] {
   const place = file === undefined ? '' : `${file}${line === undefined ? '' : `, line ${line}`}: `;
   const seen = found === undefined ? '' : ` (found: ${found})`;
-  return [[run(`× ${place}${what}${seen}`, 'fault')], `  ${mend}`];
+  return [{ text: `× ${place}${what}${seen}`, role: 'fault' }, mend];
 }

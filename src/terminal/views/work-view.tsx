@@ -2,7 +2,7 @@
 import type { ReactElement } from 'react';
 import { fitRuns, spreadRuns } from '../../plot/cells.ts';
 import { type Run, run } from '../../plot/run.ts';
-import { type Layout, layoutOf } from '../layout.ts';
+import { type Layout, layoutOf, lowerHeight } from '../layout.ts';
 import { detailRows } from '../parts/details.ts';
 import { footerRow } from '../parts/footer.ts';
 import { foundHeading, foundRows } from '../parts/found-list.ts';
@@ -12,7 +12,7 @@ import { plotRows, wordsInPlaceOfPlot } from '../parts/plot.ts';
 import { readoutRow } from '../parts/readout.ts';
 import { Rows } from '../parts/rows.tsx';
 import { stripRows } from '../parts/strip.ts';
-import { waitingRows } from '../parts/waiting.ts';
+import { failedRows, waitingRows } from '../parts/waiting.ts';
 import { pictureOf } from '../pictures/pictures.ts';
 import { analysisOf, type State } from '../state.ts';
 import type { Theme } from '../theme.ts';
@@ -25,8 +25,12 @@ export function WorkView({ state, theme }: { readonly state: State; readonly the
     headerRow(state, columns),
     ...(cautionRows === 1 ? [cautionRow(state, columns)] : []),
     ...stripRows(state, layout),
-    ...middleRows(state, layout),
-    ...(state.panel?.type === 'pick' ? pickerRows(state, layout) : lowerRows(state, layout)),
+    ...(state.panel === null && state.solve.phase === 'failed'
+      ? failedRows(state.solve.problems, layout)
+      : [
+          ...middleRows(state, layout),
+          ...(state.panel?.type === 'pick' ? pickerRows(state, layout) : lowerRows(state, layout)),
+        ]),
     footerRow(state, columns),
   ];
   return <Rows rows={rows} theme={theme} />;
@@ -47,10 +51,7 @@ function middleRows(state: State, layout: Layout): readonly (readonly Run[])[] {
 function lowerRows(state: State, layout: Layout): readonly (readonly Run[])[] {
   const { columns, sideBySide, listWidth, listRows, detailWidth } = layout;
   const analysis = analysisOf(state);
-  if (!analysis) {
-    const rows = 1 + listRows + (sideBySide ? 0 : layout.detailRows);
-    return Array.from({ length: rows }, () => fitRuns([], columns));
-  }
+  if (!analysis) return Array.from({ length: lowerHeight(layout) }, () => fitRuns([], columns));
   const list = foundRows(state, analysis, listWidth, listRows);
   const details = detailRows(state, detailWidth, layout.detailRows);
   const heading = headingRow(foundHeading(listWidth), noticeRuns(state), columns);
