@@ -5,6 +5,7 @@ import { type CableTable, isGuide, type TableEntry } from '../line/cable-table.t
 import { TABLE_TEMPERATURE_C } from '../line/constants.ts';
 import { aboveHighestFrequency, attenuationDbPer100m } from '../line/loss.ts';
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import { cutText, wrapText } from '../plot/cells.ts';
 import { digitsText, fixedText, frequencyText, lengthPerMetre, type Units } from '../plot/quantity-text.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
 import { parseFrequencyHz, parseLengthM, parseTemperatureC } from '../sweep/number-text.ts';
@@ -43,7 +44,7 @@ export async function runCables(invocation: Invocation, io: Io): Promise<ExitSta
     ? jsonText(chosen.value ? [chosen.value] : [...cables.entries, ...cables.guides], question.value)
     : chosen.value
       ? pageText(chosen.value, question.value, settings.units, textColumns(io))
-      : tableText(cables, settings.units);
+      : tableText(cables, settings.units, io);
   await write(io.stdout, text);
   return 0;
 }
@@ -120,7 +121,8 @@ function jsonCable(entry: CableEntry, question: Question): Record<string, unknow
   };
 }
 
-function tableText(cables: CableTable, units: Units): string {
+/** Lines are cut to a terminal's width; in a pipe they stay whole. */
+function tableText(cables: CableTable, units: Units, io: Io): string {
   const head = ['id', 'Ω', 'vf', ...TABLE_FREQUENCIES_HZ.map(frequencyText), 'name'];
   const lines = tableLines(
     head,
@@ -135,11 +137,15 @@ function tableText(cables: CableTable, units: Units): string {
   const per = units === 'ft' ? '100 ft' : '100 m';
   const foot = [
     '',
-    `Loss in dB per ${per} at 20 °C; of a cable blank above its highest frequency of use, of a guide at the`,
-    'lower and upper end of its band.',
-    '"feedsonde cables ID" shows one with its sources.',
+    ...wrapText(
+      `Loss in dB per ${per} at 20 °C; of a cable blank above its highest frequency of use, of a guide at the lower ` +
+        'and upper end of its band. "feedsonde cables ID" shows one with its sources.',
+      textColumns(io),
+    ),
   ];
-  return `${[...lines, '', ...guideTableLines(cables.guides, units), ...foot].join('\n')}\n`;
+  const rows = [...lines, '', ...guideTableLines(cables.guides, units)];
+  const shown = io.stdout.isTTY ? rows.map((row) => cutText(row, textColumns(io))) : rows;
+  return `${[...shown, ...foot].join('\n')}\n`;
 }
 
 /** Blank above the highest frequency that the cable is meant for. */

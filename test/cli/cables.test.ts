@@ -2,7 +2,9 @@ import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
+import { cellWidth } from '../../src/plot/cells.ts';
 import { runCli } from './run-cli.ts';
+import { runInTerminal } from './run-in-terminal.ts';
 
 type Entry = { readonly id: string; readonly [key: string]: unknown };
 
@@ -23,6 +25,16 @@ describe('feedsonde cables', () => {
       expect(ids).toContain(id);
     const listed = stdout.split('\n').map((line) => line.split(/\s/u)[0]);
     for (const id of ids) expect(listed).toContain(id);
+  });
+
+  it('fits its table into a terminal, and leaves it whole in a pipe', async () => {
+    const { output } = await runInTerminal(['cables'], { NO_COLOR: '1' });
+    const lines = output.trimEnd().split(/\r?\n/u);
+    expect(Math.max(...lines.map(cellWidth))).toBeLessThanOrEqual(100);
+    const { stdout } = await runCli(['cables']);
+    expect(stdout).toContain('1/2 in extra-flexible corrugated foam\n');
+    const foot = stdout.trimEnd().split('\n').slice(-4);
+    expect(Math.max(...foot.map(cellWidth))).toBeLessThanOrEqual(80);
   });
 
   it('gives of each entry what a script needs', async () => {
