@@ -3,7 +3,7 @@ import { guideCutoffHz } from '../line/guide.ts';
 import { describedLengthM, type GuideSection, type Line, type Section } from '../line/line.ts';
 import type { Problem } from '../outcome.ts';
 import { type Fault, type FaultPlace, isLump, NORMALISED_FORMS } from './fault-text.ts';
-import type { SimulateRequest } from './simulate.ts';
+import type { SimulateRequest } from './simulate-request.ts';
 
 /** A sweep that stops below was meant in MHz, Hz. */
 const LOWEST_STOP_HZ = 10e3;

@@ -7,7 +7,7 @@
 import { createCascade, type Stage } from '../line/cascade.ts';
 import { strengthOf, strengthOfNormalised } from '../line/discontinuity.ts';
 import type { EndModel } from '../line/end.ts';
-import { type EndKind, type Line, referenceOhm } from '../line/line.ts';
+import { type EndKind, referenceOhm } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { gammaOfReturnLoss } from '../line/reflection.ts';
 import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
@@ -15,26 +15,9 @@ import { createRandom } from '../numerics/random.ts';
 import { assertNever, fail, type Outcome, succeed } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { type AsBuilt, asDrawn, drawAsBuilt } from './as-built.ts';
-import type { Fault } from './fault-text.ts';
 import { linePartsOf, type Material, type Part } from './line-parts.ts';
 import { refuse } from './refuse-simulation.ts';
-
-export type SimulateRequest = {
-  /** Every length known, end known. */
-  readonly line: Line;
-  readonly faults: readonly Fault[];
-  /** Start above 0. */
-  readonly range: { readonly startHz: number; readonly stopHz: number; readonly points: number };
-  readonly portOhm: number;
-  /** Seed of the line as built; null for the ideal line, exactly its description. */
-  readonly asBuilt: number | null;
-  /** Complex RMS of the noise per point, dB; null for none. */
-  readonly noiseDb: number | null;
-  /** RMS of the residual directivity, dB; null for none. */
-  readonly residueDb: number | null;
-  /** Seed of noise and residue. */
-  readonly seed: number;
-};
+import type { SimulateRequest } from './simulate-request.ts';
 
 /** Γ is kept to so many decimals, −180 dB: below any instrument, and the same digits on every machine. */
 const GAMMA_DECIMALS = 9;

@@ -4,7 +4,7 @@
  * Every row is common practice of feedline work: it names what crews most often find for such a reading, and no
  * document stands behind the order. Whatever has to be true before hands or test gear touch the line comes first.
  */
-import type { Advice, FindingKind, PlaceKind } from './advice.ts';
+import type { Advice, FindingKind, PlaceKind } from './advice-kinds.ts';
 
 type Rows = Readonly<Record<PlaceKind, Advice>>;
 

@@ -2,7 +2,8 @@
 import type { Line } from '../line/line.ts';
 import type { Echo, Severity, Stretch, StretchKind } from '../locate/echo.ts';
 import type { Solution } from '../locate/solution.ts';
-import { adviceFor, type PlaceKind } from './advice.ts';
+import { adviceFor } from './advice.ts';
+import type { PlaceKind } from './advice-kinds.ts';
 import type { Finding } from './finding.ts';
 import { inMetres, type LengthWords, placeText, startsM, stretchPlaceText } from './place-text.ts';
 import { sizeText, stretchText } from './size-text.ts';

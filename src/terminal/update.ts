@@ -5,7 +5,7 @@ import { chosenOf, traceWish } from './derived.ts';
 import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 import { choose, cursorTo, moveCursor, pan, zoom } from './looking.ts';
-import { mostScroll } from './pages/page.ts';
+import { mostScroll } from './pages/pages.ts';
 import { openPicker, pickFilter, pickMove, pickTake } from './picking.ts';
 import { analysisOf, type Panel, type State } from './state.ts';
 import type { Step } from './step.ts';

@@ -2,7 +2,8 @@
 import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { parseFault } from '../../src/app/fault-text.ts';
-import { type SimulateRequest, simulate } from '../../src/app/simulate.ts';
+import { simulate } from '../../src/app/simulate.ts';
+import type { SimulateRequest } from '../../src/app/simulate-request.ts';
 import { createCableTable } from '../../src/line/cable-table.ts';
 import { guideLossDbPer100m, guidePhaseRadPerM } from '../../src/line/guide.ts';
 import type { Line } from '../../src/line/line.ts';

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { parseFault } from '../../src/app/fault-text.ts';
-import { type SimulateRequest, simulate } from '../../src/app/simulate.ts';
+import { simulate } from '../../src/app/simulate.ts';
+import type { SimulateRequest } from '../../src/app/simulate-request.ts';
 import type { Cable } from '../../src/line/cable.ts';
 import { type EndKind, type Line, NO_LIMITS, PLAIN_JOINT } from '../../src/line/line.ts';
 import { complexRms, complexSubtract } from '../../src/numerics/complex.ts';

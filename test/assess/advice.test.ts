@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { adviceFor, type FindingKind, type PlaceKind } from '../../src/assess/advice.ts';
+import { adviceFor } from '../../src/assess/advice.ts';
+import type { FindingKind, PlaceKind } from '../../src/assess/advice-kinds.ts';
 import { ADVICE_TABLE } from '../../src/assess/advice-table.ts';
 
 const PLACES: readonly PlaceKind[] = ['port', 'joint', 'cable', 'end'];

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { fail, succeed } from '../../src/outcome.ts';
 import { chosenOf, outerSpan, spanOf, traceWish, wholeSpan } from '../../src/terminal/derived.ts';
 import { layoutOf } from '../../src/terminal/layout.ts';
-import { mostScroll } from '../../src/terminal/pages/page.ts';
+import { mostScroll } from '../../src/terminal/pages/pages.ts';
 import { picksOf } from '../../src/terminal/picks.ts';
 import { analysisOf } from '../../src/terminal/state.ts';
 import { update } from '../../src/terminal/update.ts';

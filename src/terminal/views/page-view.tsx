@@ -3,7 +3,7 @@ import type { ReactElement } from 'react';
 import { fitRuns, spreadRuns } from '../../plot/cells.ts';
 import { type Run, run } from '../../plot/run.ts';
 import { layoutOf } from '../layout.ts';
-import { mostScroll, pageOf, pageRows } from '../pages/page.ts';
+import { mostScroll, pageOf, pageRows } from '../pages/pages.ts';
 import { footerRow } from '../parts/footer.ts';
 import { Rows } from '../parts/rows.tsx';
 import type { Panel, State } from '../state.ts';
