@@ -51,7 +51,7 @@ const settingsFile = closedObject({
 });
 
 /** The platform's folder for this program's settings. */
-export function configFolder(): string {
+function configFolder(): string {
   return envPaths('feedsonde', { suffix: '' }).config;
 }
 

@@ -12,7 +12,7 @@ export type Io = {
 export type ExitStatus = 0 | 1 | 2;
 
 /** Columns of text where standard output is not a terminal. */
-export const PLAIN_COLUMNS = 80;
+const PLAIN_COLUMNS = 80;
 const FEWEST_COLUMNS = 60;
 const MOST_COLUMNS = 120;
 

@@ -5,7 +5,7 @@ import type { ExitStatus, Io } from './io.ts';
 import { write } from './io.ts';
 
 /** One problem: `FILE, line 4: what is wrong: what was found`, and under it how to mend it. */
-export function problemText({ file, line, what, found, mend }: Problem): string {
+function problemText({ file, line, what, found, mend }: Problem): string {
   const where = [
     file === undefined ? undefined : spokenFile(file),
     line === undefined ? undefined : `line ${line}`,

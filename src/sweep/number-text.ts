@@ -12,7 +12,7 @@ import { readNumber } from './number-scan.ts';
 const LONGEST_QUANTITY = 60;
 
 /** Most points that a sweep range may ask for. */
-export const MOST_SWEEP_POINTS = 1_000_000;
+const MOST_SWEEP_POINTS = 1_000_000;
 
 /** A sweep that an instrument could be set to. */
 export type SweepRange = { readonly startHz: number; readonly stopHz: number; readonly points: number };

@@ -3,7 +3,7 @@ import type { Problem } from '../outcome.ts';
 import { cleanForDisplay } from './clean-text.ts';
 
 /** Most problems that are listed for one file. */
-export const PROBLEM_LIMIT = 20;
+const PROBLEM_LIMIT = 20;
 
 /** Longest piece of a file quoted in a problem, characters. */
 const FOUND_LENGTH = 60;

@@ -9,7 +9,7 @@ import type { FileProblem, ProblemList } from './problem-list.ts';
 import { formatFrequency } from './quantity-format.ts';
 
 /** Highest frequency taken, Hz. Above it a unit is wrong: Hz read as the default GHz lands far higher. */
-export const HIGHEST_FREQUENCY_HZ = 1e13;
+const HIGHEST_FREQUENCY_HZ = 1e13;
 
 /** Largest |Γ| taken: 180 dB. Beyond it the columns are not what the header says, and squares would overflow. */
 export const LARGEST_GAMMA = 1e9;

@@ -1,3 +1,4 @@
+/** A sweep as every reader gives it. */
 import type { ComplexArray } from '../numerics/complex.ts';
 
 /** What the instrument saved: complex reflection against frequency at the reference plane. */

@@ -17,7 +17,7 @@ export type TouchstoneOptions = {
 };
 
 /** What a lone `#` means. @source references.md section 7: GHz S MA R 50. */
-export const DEFAULT_OPTIONS: TouchstoneOptions = {
+const DEFAULT_OPTIONS: TouchstoneOptions = {
   frequencyExponent: 9,
   parameter: 's',
   format: 'ma',

@@ -14,7 +14,7 @@ const MAGENTA = 35;
 const CYAN = 36;
 
 /** Weight and reversal only. */
-export const MONOCHROME: Theme = {
+const MONOCHROME: Theme = {
   name: 'monochrome',
   styles: {
     plain: [],
@@ -37,7 +37,7 @@ export const MONOCHROME: Theme = {
 };
 
 /** The usual set. */
-export const COLOURS: Theme = {
+const COLOURS: Theme = {
   name: 'colours',
   styles: {
     ...MONOCHROME.styles,
