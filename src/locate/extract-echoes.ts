@@ -24,7 +24,7 @@ import { expectBoundary, placeJoints } from './place-joints.ts';
 import { lumpedTypeOf, lumpReturnLossDb, pureTypeOf } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
-import { MOST_UNEQUAL_DB, resolvePair } from './resolve-pair.ts';
+import { resolvePair } from './resolve-pair.ts';
 
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
@@ -309,6 +309,10 @@ function localEnergy({ re, im, weight }: LocalEcho): number {
   return sum;
 }
 
+/** How near, in 6 dB widths, and how much weaker, dB, a lump is the companion of a stronger one. */
+const COMPANION = 1.4;
+const COMPANION_DB = 15;
+
 /** Drops what stands within a cell of something far stronger: that one's own imperfection. */
 function dropCompanions(context: FitContext, model: LineModel, settings: SearchSettings): void {
   const free = model.lumps
@@ -317,9 +321,9 @@ function dropCompanions(context: FitContext, model: LineModel, settings: SearchS
   for (const { lump, levelDb } of free) {
     const overshadowed = free.some(
       (other) =>
-        levelDb - other.levelDb > MOST_UNEQUAL_DB &&
+        levelDb - other.levelDb > COMPANION_DB &&
         Math.abs(lumpDistanceM(model, other.lump) - lumpDistanceM(model, lump)) <
-          MERGING * settings.resolutionM,
+          COMPANION * settings.resolutionM,
     );
     if (overshadowed) removeLump(model, lump.id);
   }

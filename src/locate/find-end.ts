@@ -51,6 +51,8 @@ export type EndSearch = {
   /** Farthest distance the sweep can tell apart, m. */
   readonly unambiguousM: number;
   readonly lossSigma: number;
+  /** True when the joints are known already and only the end may move. */
+  readonly jointsKnown?: boolean;
 };
 
 /** A corrected level that only an open, a short or a cut can reach. */
@@ -137,7 +139,7 @@ export function reviseEnd(
   if (kinds.size === 1) return found;
   const atM = model.boundaryM[model.boundaryM.length - 1]!;
   const before = cloneModel(model);
-  const best = bestEnd(context, model, search, [...kinds], [atM]);
+  const best = bestEnd(context, model, { ...search, jointsKnown: true }, [...kinds], [atM]);
   if (best.kind === found.kind) restoreModel(model, before);
   return { kind: best.kind, lead: best.lead };
 }
@@ -330,10 +332,10 @@ function tryKind(
     kind === 'antenna'
       ? antennaStarts(base, search, startsM).map((distanceM) => ({ distanceM, value: 0 }))
       : phaseStarts(context, base, search, kind, startsM);
-  if (kind === 'antenna') return [bestAntenna(context, base, freedom, starts)];
+  if (kind === 'antenna') return [bestAntenna(context, base, search, freedom, starts)];
   return starts.map((start): Trial => {
     const model = cloneModel(base);
-    moveEnd(model, start.distanceM);
+    placeEnd(model, start.distanceM, search);
     model.end = startingEnd(kind, start.value);
     evaluateCost(context, model, freedom, 1);
     refine(context, model, freedom, { variance: residualVariance(context), maxIterations: 10 });
@@ -353,6 +355,11 @@ function expectedEnd(base: LineModel): { readonly meanM: number; readonly sigmaM
 /** Standard deviations of the description within which the end is looked for. */
 const END_SIGMAS = 3.5;
 
+function placeEnd(model: LineModel, distanceM: number, search: EndSearch): void {
+  if (search.jointsKnown) model.boundaryM[model.boundaryM.length - 1] = distanceM;
+  else moveEnd(model, distanceM);
+}
+
 /** Resonances that a first look at a starting distance fits. */
 const FIRST_RESONANCES = 2;
 
@@ -360,13 +367,14 @@ const FIRST_RESONANCES = 2;
 function bestAntenna(
   context: FitContext,
   base: LineModel,
+  search: EndSearch,
   freedom: Freedom,
   starts: readonly { readonly distanceM: number }[],
 ): Trial {
   let best: Trial | null = null;
   for (const { distanceM } of starts) {
     const model = cloneModel(base);
-    moveEnd(model, distanceM);
+    placeEnd(model, distanceM, search);
     model.end = startingEnd('antenna', 0);
     fitAntenna(context, model, freedom, FIRST_RESONANCES);
     const energy = residualEnergy(context);
@@ -393,13 +401,22 @@ function antennaStarts(base: LineModel, search: EndSearch, startsM: readonly num
     .filter((m, i, all) => i === 0 || m - all[i - 1]! > 0.1 * search.resolutionM);
 }
 
-/** Moves the end, and with it the joints before it as far as their errors go together. */
+/**
+ * Moves the end, and with it the joints before it as far as their errors go together.
+ *
+ * @param distanceM As the trace shows it, with every joint where it was: moving joints between fast and slow cable must
+ *   not change the delay to the end.
+ */
 export function moveEnd(model: LineModel, distanceM: number): void {
   const n = model.boundaryM.length;
   const { boundaryMeanM: mean, boundaryCovariance: c } = model.priors;
-  const off = distanceM - mean[n - 1]!;
-  const own = c[n * n - 1]!;
-  for (let i = 0; i < n; i++) model.boundaryM[i] = mean[i]! + (c[i * n + n - 1]! / own) * off;
+  const centre = model.frequencyHz.length >> 1;
+  const beta = model.media.map((medium) => medium.gamma.im[centre]!);
+  const share = (i: number): number => (i < 0 ? 0 : c[i * n + n - 1]! / c[n * n - 1]!);
+  let perMove = 0;
+  for (let i = 0; i < n; i++) perMove += (share(i) - share(i - 1)) * beta[i]!;
+  const off = ((distanceM - mean[n - 1]!) * beta[n - 1]!) / perMove;
+  for (let i = 0; i < n; i++) model.boundaryM[i] = mean[i]! + share(i) * off;
   // A line cut short moves its end alone when the rest would run backward.
   for (let i = n - 2; i >= 0; i--)
     model.boundaryM[i] = Math.min(model.boundaryM[i]!, model.boundaryM[i + 1]!);

@@ -17,6 +17,9 @@ const DOUBT_SHARE = 0.038;
 /** What grows with frequency counts this much more: it is water's own mark, though no sweep tells it well. */
 const OWN_MARK = 0.25;
 
+/** A fault takes its own share of what comes back, and its kind being wrong would look like loss. */
+const FAULTY_DOUBT = 2.5;
+
 /** A section whose impedance is this much under its description, ln, is wet as a whole: water slows and loads it. */
 const WET_IMPEDANCE = -0.02;
 
@@ -27,9 +30,9 @@ const DB_PER_NEPER = 20 / Math.LN10;
  *
  * Where in a section the water stands is not looked for: the stretch is the section that it is most likely in.
  *
- * @param model Solved; its end an open or a short.
+ * @param model Solved; its end an open or a short. @param faulty True when something else on the line is bad.
  */
-export function findWater(line: Line, model: LineModel, scale: DistanceScale): Stretch[] {
+export function findWater(line: Line, model: LineModel, scale: DistanceScale, faulty: boolean): Stretch[] {
   const full = model.end.type === 'open' || model.end.type === 'short';
   if (!full || describedLengthM(line) === null) return [];
   const centre = model.frequencyHz.length >> 1;
@@ -44,7 +47,8 @@ export function findWater(line: Line, model: LineModel, scale: DistanceScale): S
     excessDb += conductor * model.conductor + dielectric * model.dielectric;
     dielectricDb += dielectric * (model.dielectric - model.conductor);
   });
-  if (excessDb + OWN_MARK * dielectricDb < DOUBT_DB + DOUBT_SHARE * describedDb) return [];
+  const doubtDb = (DOUBT_DB + DOUBT_SHARE * describedDb) * (faulty ? FAULTY_DOUBT : 1);
+  if (excessDb + OWN_MARK * dielectricDb < doubtDb) return [];
   const section = likeliestSection(model);
   return [
     {

@@ -94,7 +94,8 @@ export function putBackEnd(context: FitContext, stages: number): void {
   addEcho(context, context.cascade.behind(stages), stages);
 }
 
-function addEcho(context: FitContext, own: ComplexArray, stage: number): void {
+/** Adds what reflects at a stage to the residual, as it arrives at the port. */
+export function addEcho(context: FitContext, own: ComplexArray, stage: number): void {
   const through = context.cascade.sensitivity(stage);
   const { residual, weight } = context;
   for (let i = 0; i < weight.length; i++) {

@@ -20,7 +20,7 @@ const NEAREST = 0.12;
 const MARGIN = 25;
 
 /** A neighbour this much weaker, dB, is what a strong echo's own imperfection looks like. */
-export const MOST_UNEQUAL_DB = 17;
+const MOST_UNEQUAL_DB = 15;
 
 /**
  * Tries two lumps in place of what stands around a distance.

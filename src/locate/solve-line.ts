@@ -12,6 +12,7 @@ import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
+import { findGhosts } from './find-ghosts.ts';
 import { findWater } from './find-water.ts';
 import {
   createFitContext,
@@ -24,7 +25,7 @@ import {
 } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
-import { addSoundJoints, judgeJoints, residualDb } from './judge-joints.ts';
+import { addSoundJoints, type JointVerdict, judgeJoints, residualDb } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, LOSS_PARAMETERS, lumpDistanceM } from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
 import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
@@ -116,10 +117,15 @@ export function solveLine(
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
   const endEcho = echoes[echoes.length - 1]!;
+  const modelGamma = complexCopy(context.modelled);
+  const explained = 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
+  const leftDb = residualDb(context);
+  const loss = fittedLoss(context, model, variance);
   return {
     echoes,
-    ghosts: [],
-    stretches: request.lineDescribed && !end.cut ? findWater(line, model, scale) : [],
+    ghosts: findGhosts(context, model, settings, echoes, scale.factor),
+    stretches:
+      request.lineDescribed && !end.cut ? findWater(line, model, scale, isFaulty(joints, lumps)) : [],
     lengthM: endEcho.distanceM,
     lengthSigmaM: endEcho.distanceSigmaM,
     distanceScale: scale.factor,
@@ -128,11 +134,11 @@ export function solveLine(
     endsEarly: end.cut,
     scaledTo: scale.to,
     lossFactor: 1 + model.conductor,
-    loss: fittedLoss(context, model, variance),
+    loss,
     impedanceRatios: model.impedanceRatio.slice(),
-    modelGamma: complexCopy(context.modelled),
-    residualDb: residualDb(context),
-    explained: 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300),
+    modelGamma,
+    residualDb: leftDb,
+    explained,
     elements: modelSize(model).elements,
     notices: [...scale.notices, ...interferenceNotices(sweep.frequencyHz, interfered)],
   };
@@ -154,6 +160,10 @@ function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]):
         `interference (${shown}${more}); the model stands in for ${hit.length === 1 ? 'it' : 'them'}`,
     },
   ];
+}
+
+function isFaulty(joints: readonly JointVerdict[], lumps: readonly LumpVerdict[]): boolean {
+  return lumps.length > 0 || joints.some((joint) => joint.state !== 'sound');
 }
 
 /** Loss parameters and their covariance; the fit's own are the common change and what the dielectric has beyond it. */
