@@ -7,6 +7,7 @@ import type { Notice } from '../outcome.ts';
 import { spacingOf } from '../sweep/spacing.ts';
 
 import type { Analysis } from './analysis.ts';
+import { analysisNotices } from './analysis-notices.ts';
 
 /** Version of the documents' form; rises when a reader of the old form would misread the new one. */
 export const SCHEMA_VERSION = 1;
@@ -154,7 +155,7 @@ export function locateDocument(
       checks: finding.checks,
       bring: finding.bring,
     })),
-    notices: [...notices, ...analysis.notices].map(({ code, what }) => ({ code, what })),
+    notices: [...notices, ...analysisNotices(analysis)].map(({ code, what }) => ({ code, what })),
   };
 }
 

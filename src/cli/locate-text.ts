@@ -1,10 +1,12 @@
 /** An analysis as text for a terminal or a pipe: the verdict first, then what it rests on. */
 import type { Analysis } from '../app/analysis.ts';
 import { analysisInUnits } from '../app/analysis-in-units.ts';
+import { analysisNotices } from '../app/analysis-notices.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import type { Finding } from '../assess/finding.ts';
+import { fitDoubt } from '../assess/fit-doubt.ts';
 import { describedLengthM } from '../line/line.ts';
 import type { Echo, Severity } from '../locate/echo.ts';
 import type { Ghost } from '../locate/solution.ts';
@@ -44,7 +46,7 @@ export function locateText(inMetres: Analysis, options: TextOptions): string {
   const analysis = analysisInUnits(inMetres, units);
   const findings = analysis.findings.flatMap((finding) => ['', ...findingLines(finding, options)]);
   const ghosts = analysis.solution.ghosts.flatMap((ghost) => ghostLines(ghost, options));
-  const notices = [...options.notices, ...analysis.notices].flatMap(({ what }) =>
+  const notices = [...options.notices, ...analysisNotices(analysis)].flatMap(({ what }) =>
     hanging('note  ', what, columns),
   );
   return [
@@ -66,10 +68,12 @@ function verdictLines(analysis: Analysis, { paint, columns }: TextOptions): stri
     analysis.findings.filter((finding) => finding.severity === severity).length;
   const faults = count('fault');
   const watches = count('watch');
-  const worst: Severity = faults > 0 ? 'fault' : watches > 0 ? 'watch' : 'sound';
+  const doubt = fitDoubt(analysis.solution) !== null;
+  const worst: Severity = faults > 0 ? 'fault' : watches > 0 || doubt ? 'watch' : 'sound';
   const words = [
     ...(faults > 0 ? [`${faults} fault${faults === 1 ? '' : 's'}`] : []),
     ...(watches > 0 ? [`${watches} to watch`] : []),
+    ...(doubt ? ['this line does not explain the sweep'] : []),
   ];
   const verdict = words.length > 0 ? words.join(', ') : 'no fault found';
   const name = cutText(analysis.line.name || spokenFile(analysis.sweep.file), columns - verdict.length - 4);

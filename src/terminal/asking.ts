@@ -1,4 +1,5 @@
 /** Questions to the solver, and its answers. */
+import { analysisNotices } from '../app/analysis-notices.ts';
 import type { AnalyseRequest } from '../app/solver.ts';
 import { STANDARD_INPUT } from '../app/standard-input.ts';
 import type { Notice } from '../outcome.ts';
@@ -30,7 +31,11 @@ export function solved(state: State, event: Extract<Event, { type: 'solved' }>):
   if (!event.outcome.ok)
     return { ...state, solve: { phase: 'failed', id: event.id, problems: event.outcome.problems } };
   const analysis = event.outcome.value;
-  const notices = uniqueNotices([...state.openingNotices, ...event.outcome.notices, ...analysis.notices]);
+  const notices = uniqueNotices([
+    ...state.openingNotices,
+    ...event.outcome.notices,
+    ...analysisNotices(analysis),
+  ]);
   const first = foundIn(analysis)[0];
   const ready: State = {
     ...state,

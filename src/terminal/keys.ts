@@ -58,7 +58,7 @@ const WORK: readonly KeyRow[] = [
     group: 'what was found',
     shown: 'Enter',
     does: 'all that is known of the chosen one',
-    hint: { keys: 'Enter', word: 'more', rank: 4 },
+    hint: { keys: 'Enter', word: 'more', rank: 2 },
     needsAnswer: true,
     strokes: { enter: { type: 'openPage', page: 'finding' } },
   },
@@ -73,7 +73,7 @@ const WORK: readonly KeyRow[] = [
     group: 'looking',
     shown: '← →',
     does: 'move the cursor; with Shift ten cells at once',
-    hint: { keys: '←→', word: 'cursor', rank: 2 },
+    hint: { keys: '←→', word: 'cursor', rank: 3 },
     needsAnswer: true,
     strokes: {
       left: { type: 'moveCursor', cells: -1 },
@@ -93,7 +93,7 @@ const WORK: readonly KeyRow[] = [
     group: 'looking',
     shown: '+ −',
     does: 'closer, farther, about the cursor',
-    hint: { keys: '+−', word: 'zoom', rank: 3 },
+    hint: { keys: '+−', word: 'zoom', rank: 4 },
     needsAnswer: true,
     strokes: {
       '+': { type: 'zoom', factor: 1.6 },

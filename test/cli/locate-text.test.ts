@@ -21,6 +21,10 @@ describe('locateText', () => {
     expect(text.split('\n')[0]).toBe('× Made line: 1 fault');
     const sound = makeAnalysis({ findings: [], severities: ['sound', 'sound'] });
     expect(locateText(sound, options).split('\n')[0]).toBe('● Made line: no fault found');
+    const other = { ...sound, solution: { ...sound.solution, explained: 0.04, residualDb: -9 } };
+    const doubted = locateText(other, options);
+    expect(doubted.split('\n')[0]).toBe('▲ Made line: this line does not explain the sweep');
+    expect(doubted).toMatch(/\nnote {2}the line as described explains only 4 %/u);
   });
 
   it('holds no escape code without colour, and the same words with it', () => {

@@ -168,6 +168,8 @@ describe('views', () => {
     const { solution } = makeAnalysis();
     const sound: Analysis = makeAnalysis({ findings: [], severities: ['sound', 'sound'] });
     expect(words(readyState(SIZE, sound))).toMatch(/● no fault found.*as it should be/);
+    const other = { ...sound, solution: { ...solution, explained: 0.04, residualDb: -9 } };
+    expect(words(readyState(SIZE, other))).toMatch(/▲ not this line .*n 2 notices/);
     const nothing = makeAnalysis({
       findings: [],
       severities: [],
