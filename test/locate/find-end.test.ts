@@ -189,6 +189,23 @@ describe('moveEnd', () => {
     expect(model.boundaryM[0]).toBeCloseTo(4 + (c[1]! / c[3]!) * 0.3, 12);
   });
 
+  it('keeps the delay to the end when joints between fast and slow cable move along', () => {
+    const mixed: DrawnRun = {
+      sections: [
+        { cable: SOLID, lengthM: 4 },
+        { cable: FOAM, lengthM: 20 },
+      ],
+      end: ENDS.open,
+    };
+    const model = modelOf(mixed, WIDE);
+    const delay = (joint: number, end: number) => joint / 0.66 + (end - joint) / 0.89;
+    moveEnd(model, 24.3);
+    const [joint, end] = model.boundaryM;
+    expect(joint).toBeGreaterThan(4);
+    // The trace has the end at 24.3 m with the joint where it was; velocities here leave dispersion out, 1 % of 0.3 m.
+    expect(delay(joint!, end!)).toBeCloseTo(delay(4, 24.3), 2);
+  });
+
   it('comes back by the way it went', () => {
     const model = modelOf(RUN, WIDE);
     moveEnd(model, 22);
