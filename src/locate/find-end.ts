@@ -136,11 +136,11 @@ export function reviseEnd(
 ): Pick<EndFound, 'kind' | 'lead'> {
   const level = endLevel(context, model);
   const kinds = new Set<FoundEnd>([found.kind, ...likelyKinds(search.line.end, level)]);
-  if (kinds.size === 1) return found;
+  if (kinds.size === 1 && found.kind !== 'antenna') return found;
   const atM = model.boundaryM[model.boundaryM.length - 1]!;
   const before = cloneModel(model);
   const best = bestEnd(context, model, { ...search, jointsKnown: true }, [...kinds], [atM]);
-  if (best.kind === found.kind) restoreModel(model, before);
+  if (best.kind === found.kind && found.kind !== 'antenna') restoreModel(model, before);
   return { kind: best.kind, lead: best.lead };
 }
 
@@ -360,6 +360,9 @@ function placeEnd(model: LineModel, distanceM: number, search: EndSearch): void 
   else moveEnd(model, distanceM);
 }
 
+/** What another place must be better by than the described one, while what stands before the end is not explained yet. */
+const DESCRIBED_LEAD = 40;
+
 /** Resonances that a first look at a starting distance fits. */
 const FIRST_RESONANCES = 2;
 
@@ -371,14 +374,21 @@ function bestAntenna(
   freedom: Freedom,
   starts: readonly { readonly distanceM: number }[],
 ): Trial {
-  let best: Trial | null = null;
+  const { meanM } = expectedEnd(base);
+  let best: { readonly model: LineModel; readonly score: number } | null = null;
+  const points = context.weight.reduce((sum, w) => sum + w, 0);
   for (const { distanceM } of starts) {
     const model = cloneModel(base);
     placeEnd(model, distanceM, search);
     model.end = startingEnd('antenna', 0);
     fitAntenna(context, model, freedom, FIRST_RESONANCES);
-    const energy = residualEnergy(context);
-    if (best === null || energy < best.energy) best = { model, kind: 'antenna', energy };
+    // What is left over, in −2 ln likelihood of its own variance, and what the priors think of it.
+    const energy = Math.max(residualEnergy(context), 1e-14);
+    const priors = evaluateCost(context, model, ALL_FREE, energy) - 1;
+    const score = 2 * points * Math.log(energy) + priors + model.end.parameters.length * Math.log(2 * points);
+    const described = Math.abs(distanceM - meanM) < 1e-6;
+    const lead = described && !search.jointsKnown ? DESCRIBED_LEAD : 0;
+    if (best === null || score - lead < best.score) best = { model, score: score - lead };
   }
   const { model } = best!;
   fitAntenna(context, model, freedom);

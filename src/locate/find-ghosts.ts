@@ -85,6 +85,7 @@ export function findGhosts(
         betweenM: bouncesOf(distanceM, echoes, settings.resolutionM * scale),
       };
     })
+    .filter((ghost) => ghost.betweenM.length > 0)
     .sort((a, b) => a.distanceM - b.distanceM);
 }
 
