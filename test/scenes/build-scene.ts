@@ -3,6 +3,7 @@ import { CABLE_FIGURES } from './cable-figures.ts';
 import {
   type CableFigures,
   coaxMedium,
+  DB_IN_NEPER,
   fourierResolutionM,
   tableLossDb,
   unambiguousM,
@@ -12,7 +13,7 @@ import { apparentReturnLossDb, FAULT_UNITS, lossUpTo } from './fault.ts';
 import { addCarriers, addNoise, addResidue } from './instrument.ts';
 import { chainToPort, reflectionAtPort, type Spectrum } from './ladder.ts';
 import type { Recipe } from './recipe.ts';
-import { jointDistances, layRun, type TrueRun } from './run.ts';
+import { jointDistances, type LaidRun, layRun, type TrueRun } from './run.ts';
 import type { Scene, TrueFault, TrueStretch } from './scene.ts';
 import { terminate } from './termination.ts';
 
@@ -24,16 +25,31 @@ export type SceneName = { readonly suite: string; readonly seed: number; readonl
 /** Noise-free, residue-free reflection of a recipe's run at the port. */
 export function trueReflection(recipe: Recipe, draws: Draws): Spectrum {
   const { frequencyHz } = recipe.plan;
-  const laid = layRun(recipe.run, frequencyHz, recipe.ripple, draws);
+  return reflectionOf(layRun(recipe.run, frequencyHz, recipe.ripple, draws), frequencyHz);
+}
+
+function reflectionOf(laid: LaidRun, frequencyHz: Float64Array): Spectrum {
   const port = chainToPort(laid.elements, terminate(laid.end, frequencyHz), frequencyHz);
   return reflectionAtPort(port, PORT_OHM);
+}
+
+/** One-way loss at each frequency of all the cable that was laid, each piece matched, dB; connectors have none. */
+function cableLossDb(laid: LaidRun, points: number): Float64Array {
+  const lossDb = new Float64Array(points);
+  for (const element of laid.elements) {
+    if (element.type !== 'slab') continue;
+    for (let k = 0; k < points; k++)
+      lossDb[k]! += DB_IN_NEPER * element.medium.gammaRe[k]! * element.lengthM;
+  }
+  return lossDb;
 }
 
 /** The whole scene; `draws` feeds the ripple, the noise and the carriers. */
 export function buildScene(recipe: Recipe, name: SceneName, draws: Draws): Scene {
   const { frequencyHz } = recipe.plan;
   const { sections } = recipe.run;
-  const measured = addResidue(trueReflection(recipe, draws), recipe.residue, frequencyHz);
+  const laid = layRun(recipe.run, frequencyHz, recipe.ripple, draws);
+  const measured = addResidue(reflectionOf(laid, frequencyHz), recipe.residue, frequencyHz);
   const interfered = recipe.carriers ? addCarriers(measured, draws) : [];
   addNoise(measured, recipe.noiseDb, draws);
   const longest = sections.reduce((a, b) => (a.lengthM >= b.lengthM ? a : b));
@@ -59,6 +75,7 @@ export function buildScene(recipe: Recipe, name: SceneName, draws: Draws): Scene
       noiseDb: recipe.noiseDb,
       structuralReturnLossDb: recipe.ripple?.returnLossDb ?? null,
       temperatureC: recipe.run.temperatureC,
+      cableLossDb: cableLossDb(laid, frequencyHz.length),
       interfered,
     },
   };

@@ -2,7 +2,7 @@
 
 const SPEED_OF_LIGHT_M_S = 299_792_458;
 /** 20/ln 10, decibels in a neper. */
-const DB_IN_NEPER = 8.685_889_638;
+export const DB_IN_NEPER = 8.685_889_638;
 /** The permittivity of the described velocity factor is that at this frequency (design section 4). */
 const REFERENCE_HZ = 1e9;
 

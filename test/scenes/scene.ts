@@ -50,6 +50,8 @@ export type SceneTruth = {
   readonly noiseDb: number;
   readonly structuralReturnLossDb: number | null;
   readonly temperatureC: number;
+  /** One-way loss of the cable as built at each point, connectors not included, dB; up to where it is cut. */
+  readonly cableLossDb: Float64Array;
   /** Points hit by carriers. */
   readonly interfered: readonly number[];
 };

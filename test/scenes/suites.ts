@@ -24,6 +24,7 @@ export const SUITES = {
   healthy: drawHealthy,
   'unknown-length': unknownLength,
   wet: wetOrDry,
+  loss,
   'wrong-cable': wrongCable,
   'off-length': offLength,
   'lone-echo': loneEcho,
@@ -151,6 +152,11 @@ function wetOrDry(draws: Draws, options: RecipeOptions): Recipe | null {
   const recipe = drawHealthy(draws, { ...options, ends: ['open', 'short'], shortestMainM: 10 });
   if (draws.chance(0.5)) return recipe;
   return drawStretch(recipe, 'wet', draws);
+}
+
+/** A healthy line with an open or a short at its end, for the loss check. */
+function loss(draws: Draws, options: RecipeOptions): Recipe {
+  return drawHealthy(draws, { ...options, ends: ['open', 'short'] });
 }
 
 /** A piece of 75 Ω cable in the run. */
