@@ -44,7 +44,7 @@ export type WarpPlan = {
 export type Warp = (change: LineChange) => ComplexArray;
 
 /** Neighbours that a value is estimated from. */
-const NEIGHBOURS = 48;
+const NEIGHBOURS = 32;
 
 /** Noise over signal, in power, that the estimate reckons with. */
 const NOISE_SHARE = 1e-7;

@@ -5,6 +5,7 @@ import type { Solution } from '../locate/solution.ts';
 import { adviceFor } from './advice.ts';
 import type { PlaceKind } from './advice-kinds.ts';
 import type { Finding } from './finding.ts';
+import { guideAdviceFor } from './guide-advice.ts';
 import { inMetres, type LengthWords, placeText, startsM, stretchPlaceText } from './place-text.ts';
 import { sizeText, stretchText } from './size-text.ts';
 
@@ -54,7 +55,9 @@ export function findingsOf(
         where: places[i]!,
         what: echoWhat(line, solution, i),
         confidence,
-        ...adviceFor(kind, placeKind(line, solution, i)),
+        ...(isInGuide(line, solution, i)
+          ? guideAdviceFor(placeKind(line, solution, i))
+          : adviceFor(kind, placeKind(line, solution, i))),
       },
     ];
   });
@@ -115,6 +118,14 @@ function placeKind(line: Line, solution: Solution, index: number): PlaceKind {
   if (isLast && !solution.endsEarly) return 'end';
   if (jointIndex === null) return 'cable';
   return jointIndex === line.sections.length + 1 ? 'end' : 'joint';
+}
+
+/** Whether a place has guide on both sides: at the port and at the end, on the one side it has. */
+function isInGuide(line: Line, solution: Solution, index: number): boolean {
+  const jointIndex = jointIndexOf(line, solution, index);
+  const { section } = solution.echoes[index]!;
+  const around = jointIndex === null ? [section] : [jointIndex - 2, jointIndex - 1];
+  return around.every((side) => line.sections[side]?.type === 'guide' || line.sections[side] === undefined);
 }
 
 /** How near a joint a line that stops early must stop to have come apart there, m: the length of a connector. */

@@ -1,0 +1,221 @@
+/** What the reading of an open or shorted end depends on: the terms of its fit, with their derivatives. */
+import type { ComplexArray } from '../numerics/complex.ts';
+import { complexZeros } from '../numerics/complex.ts';
+
+/** The run to the end; arrays of length n over the sweep's frequencies, one way unless said. */
+export type EndPath = {
+  readonly frequencyHz: Float64Array;
+  /** What was measured at the port. */
+  readonly measured: ComplexArray;
+  /** Γ of the end itself: 1 for an open, −1 for a short. */
+  readonly sign: 1 | -1;
+  /** Loss and phase of the run as described: Np and rad. */
+  readonly path: ComplexArray;
+  /** What a relative change of the conductor's and of the dielectric's loss adds to it. */
+  readonly perConductor: ComplexArray;
+  readonly perDielectric: ComplexArray;
+  /** What discontinuities on the way take off, both ways together, Np. */
+  readonly passedNp: Float64Array;
+  /** What reflects before the end: the path to each and its |Γ|. */
+  readonly neighbours: readonly { readonly path: ComplexArray; readonly gamma: number }[];
+};
+
+export type EndTerms = {
+  readonly count: number;
+  readonly points: number;
+  /** 1/σ² of each term around 0; those of the losses are set by their own prior. */
+  readonly precision: Float64Array;
+  /** Values from which a few steps reach the answer. */
+  start(): Float64Array;
+  /** Writes the derivatives of the reading by each term, and what is left over of the measured. */
+  linearise(values: Float64Array, columns: readonly ComplexArray[], residual: ComplexArray): void;
+};
+
+/** Conductor and dielectric loss come first; then delay, what grows as f³, and the stretch of the run's own phase. */
+export const FIXED_TERMS = { loss: 2, delay: 2, cubic: 3, stretch: 4, count: 5 } as const;
+
+/** Round-trip delays within which the residue's reflections lie, s. Common practice: test lead and adaptor. */
+const RESIDUE_SPAN_S = 1.2e-9;
+
+/** RMS of the tracking residue: −42 dB. Common practice for a correction made in the field. */
+const TRACKING = 0.0075;
+
+/** How far the end may stand off its place, as a round-trip delay, s: tape, fringe and what the fit left in doubt. */
+const DELAY_SIGMA_S = 0.3e-9;
+/** Phase that the last connector adds beyond a delay at the top of the band, rad. */
+const CUBIC_SIGMA_RAD = 0.3;
+/** The same of the run's own law of phase: what a guide's width leaves in doubt after its length is fitted, rad. */
+const STRETCH_SIGMA_RAD = 0.3;
+
+/** Neighbours within this many resolutions mix with the end; those farther off average out over the band. */
+const NEAR_RESOLUTIONS = 25;
+/** Two halves of a connector, and what its place is off by, as round-trip delays either way, s. */
+const NEIGHBOUR_SPAN_S = 0.2e-9;
+
+/** A term that adds to the reading whatever the others are. */
+type Addition = { readonly value: ComplexArray; readonly precision: number };
+
+/** Terms of a reading. */
+export function createEndTerms(given: EndPath): EndTerms {
+  const { frequencyHz: f, path, perConductor: gc, perDielectric: gd } = given;
+  const n = f.length;
+  const bandHz = f[n - 1]! - f[0]!;
+  const echo = describedEcho(given);
+  const residue = delayGrid(0, RESIDUE_SPAN_S, bandHz).map((delayS) => phasor(f, delayS));
+  const additions = neighbourTerms(given, bandHz);
+  const firstAddition = FIXED_TERMS.count + 2 * residue.length;
+  const count = firstAddition + additions.length;
+  const top = 2 * Math.PI * f[n - 1]!;
+  const turn = f.map((_, i) => path.im[i]! / path.im[n - 1]!);
+
+  const precision = new Float64Array(count);
+  precision[FIXED_TERMS.delay] = 1 / DELAY_SIGMA_S ** 2;
+  precision[FIXED_TERMS.cubic] = 1 / CUBIC_SIGMA_RAD ** 2;
+  precision[FIXED_TERMS.stretch] = 1 / STRETCH_SIGMA_RAD ** 2;
+  precision.fill((2 * residue.length) / TRACKING ** 2, FIXED_TERMS.count, firstAddition);
+  additions.forEach((addition, k) => {
+    precision[firstAddition + k] = addition.precision;
+  });
+
+  return {
+    count,
+    points: n,
+    precision,
+    start() {
+      const values = new Float64Array(count);
+      values[FIXED_TERMS.delay] = startingDelayS(given, echo);
+      return values;
+    },
+    linearise(values, columns, residual) {
+      const [c, d, delayS, cubicRad, stretchRad] = values as unknown as readonly number[];
+      for (let i = 0; i < n; i++) {
+        const omega = 2 * Math.PI * f[i]!;
+        const cubic = (omega / top) ** 3;
+        const size = Math.exp(-2 * (gc.re[i]! * c! + gd.re[i]! * d!));
+        const angle =
+          -2 * (gc.im[i]! * c! + gd.im[i]! * d!) -
+          omega * delayS! -
+          cubic * cubicRad! -
+          turn[i]! * stretchRad!;
+        const pRe = size * Math.cos(angle);
+        const pIm = size * Math.sin(angle);
+        const eRe = echo.re[i]! * pRe - echo.im[i]! * pIm;
+        const eIm = echo.re[i]! * pIm + echo.im[i]! * pRe;
+        let tRe = 1;
+        let tIm = 0;
+        for (let k = 0; k < residue.length; k++) {
+          const cos = residue[k]!.re[i]!;
+          const sin = residue[k]!.im[i]!;
+          const at = FIXED_TERMS.count + 2 * k;
+          const re = eRe * cos - eIm * sin;
+          const im = eRe * sin + eIm * cos;
+          put(columns[at]!, i, re, im);
+          put(columns[at + 1]!, i, -im, re);
+          tRe += values[at]! * cos - values[at + 1]! * sin;
+          tIm += values[at]! * sin + values[at + 1]! * cos;
+        }
+        const mRe = eRe * tRe - eIm * tIm;
+        const mIm = eRe * tIm + eIm * tRe;
+        put(columns[0]!, i, -2 * (mRe * gc.re[i]! - mIm * gc.im[i]!), -2 * (mRe * gc.im[i]! + mIm * gc.re[i]!));
+        put(columns[1]!, i, -2 * (mRe * gd.re[i]! - mIm * gd.im[i]!), -2 * (mRe * gd.im[i]! + mIm * gd.re[i]!));
+        put(columns[FIXED_TERMS.delay]!, i, omega * mIm, -omega * mRe);
+        put(columns[FIXED_TERMS.cubic]!, i, cubic * mIm, -cubic * mRe);
+        put(columns[FIXED_TERMS.stretch]!, i, turn[i]! * mIm, -turn[i]! * mRe);
+        let rRe = given.measured.re[i]! - mRe;
+        let rIm = given.measured.im[i]! - mIm;
+        for (let k = 0; k < additions.length; k++) {
+          const { value } = additions[k]!;
+          put(columns[firstAddition + k]!, i, value.re[i]!, value.im[i]!);
+          rRe -= values[firstAddition + k]! * value.re[i]!;
+          rIm -= values[firstAddition + k]! * value.im[i]!;
+        }
+        put(residual, i, rRe, rIm);
+      }
+    },
+  };
+}
+
+function put(to: ComplexArray, i: number, re: number, im: number): void {
+  to.re[i] = re;
+  to.im[i] = im;
+}
+
+/** What the end would send back were the run as described: ±e^{−2γℓ} less what is lost on the way. */
+function describedEcho({ path, sign, passedNp }: EndPath): ComplexArray {
+  const echo = complexZeros(passedNp.length);
+  for (let i = 0; i < passedNp.length; i++) {
+    const size = sign * Math.exp(-2 * path.re[i]! - passedNp[i]!);
+    put(echo, i, size * Math.cos(2 * path.im[i]!), -size * Math.sin(2 * path.im[i]!));
+  }
+  return echo;
+}
+
+function phasor(frequencyHz: Float64Array, delayS: number): ComplexArray {
+  const angles = frequencyHz.map((f) => -2 * Math.PI * f * delayS);
+  return { re: angles.map(Math.cos), im: angles.map(Math.sin) };
+}
+
+/** Delays that stand for any between two, no farther apart than the band can tell. */
+function delayGrid(fromS: number, toS: number, bandHz: number): number[] {
+  const count = Math.max(2, 2 + Math.floor((toS - fromS) * bandHz));
+  return Array.from({ length: count }, (_, k) => fromS + ((toS - fromS) * k) / (count - 1));
+}
+
+/** Where the end stands, as a round-trip delay beyond its place: the strongest of a fine grid. */
+function startingDelayS({ frequencyHz: f, measured }: EndPath, echo: ComplexArray): number {
+  const stepS = 1 / (16 * f[f.length - 1]!);
+  let best = 0;
+  let strongest = Number.NEGATIVE_INFINITY;
+  const most = Math.ceil((3 * DELAY_SIGMA_S) / stepS);
+  // The product of each point is turned on by one step of delay at a time.
+  const product = f.map((_, i) => echo.re[i]! * measured.re[i]! + echo.im[i]! * measured.im[i]!);
+  const across = f.map((_, i) => echo.re[i]! * measured.im[i]! - echo.im[i]! * measured.re[i]!);
+  for (let k = -most; k <= most; k++) {
+    let sum = 0;
+    for (let i = 0; i < f.length; i++) {
+      const angle = 2 * Math.PI * f[i]! * k * stepS;
+      // Re measured·conj(echo·e^{−jωτ})
+      sum += product[i]! * Math.cos(angle) - across[i]! * Math.sin(angle);
+    }
+    if (sum > strongest) {
+      strongest = sum;
+      best = k * stepS;
+    }
+  }
+  return best;
+}
+
+/** What stands within a few resolutions before the end, and the bounces between it and the end, seen behind it. */
+function neighbourTerms({ frequencyHz: f, path, neighbours }: EndPath, bandHz: number): Addition[] {
+  const last = f.length - 1;
+  return neighbours.flatMap(({ path: own, gamma }): Addition[] => {
+    const resolutions = Math.abs(path.im[last]! - own.im[last]! - path.im[0]! + own.im[0]!) / Math.PI;
+    if (resolutions > NEAR_RESOLUTIONS) return [];
+    const shifts = delayGrid(-NEIGHBOUR_SPAN_S, NEIGHBOUR_SPAN_S, bandHz);
+    const precision = (2 * shifts.length) / gamma ** 2;
+    return shifts.flatMap((shiftS) =>
+      [own, mirrored(own, path)].flatMap((to) => {
+        const value = complexZeros(f.length);
+        const turned = complexZeros(f.length);
+        for (let i = 0; i < f.length; i++) {
+          const size = Math.exp(-2 * to.re[i]!);
+          const angle = -2 * to.im[i]! - 2 * Math.PI * f[i]! * shiftS;
+          put(value, i, size * Math.cos(angle), size * Math.sin(angle));
+          put(turned, i, -value.im[i]!, value.re[i]!);
+        }
+        return [
+          { value, precision },
+          { value: turned, precision },
+        ];
+      }),
+    );
+  });
+}
+
+/** The path of a bounce: as far behind the end as its place lies before it. */
+function mirrored(own: ComplexArray, path: ComplexArray): ComplexArray {
+  return {
+    re: own.re.map((np, i) => 2 * path.re[i]! - np),
+    im: own.im.map((rad, i) => 2 * path.im[i]! - rad),
+  };
+}

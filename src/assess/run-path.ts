@@ -1,0 +1,98 @@
+/** The run from the port to its end as the loss check needs it: loss and phase of the cable, and what is lost between. */
+import { DB_PER_NEPER } from '../line/constants.ts';
+import { type Line, referenceOhm } from '../line/line.ts';
+import { sectionMedium } from '../line/medium.ts';
+import { gammaOfReturnLoss } from '../line/reflection.ts';
+import type { Echo } from '../locate/echo.ts';
+import type { Solution } from '../locate/solution.ts';
+import { type ComplexArray, complexCopy, complexZeros } from '../numerics/complex.ts';
+
+/** Arrays of length n over the frequencies asked for; Np and rad, one way. */
+export type RunPath = {
+  /** Of cables, guides and devices as described, at the line's temperature. */
+  readonly path: ComplexArray;
+  /** What a relative change of the conductor's and of the dielectric's loss adds; devices have none. */
+  readonly perConductor: ComplexArray;
+  readonly perDielectric: ComplexArray;
+  /** Loss of cables and guides alone, by the table at the line's temperature, dB. */
+  readonly tableLossDb: Float64Array;
+  /** Path to the start of each section. */
+  readonly startsAt: readonly ComplexArray[];
+  /** Length of the run, m. */
+  readonly lengthM: number;
+};
+
+/**
+ * Builds the run up to the end that was found.
+ *
+ * Loss goes with the length of the cable as laid, phase with the distance of the model, which an error of velocity
+ * stretches.
+ */
+export function runPath(
+  line: Line,
+  solution: Pick<Solution, 'lengthM' | 'distanceScale' | 'scaledTo'>,
+  frequencyHz: Float64Array,
+  portOhm: number,
+): RunPath {
+  const n = frequencyHz.length;
+  const lengths = lengthsM(line, solution);
+  const lengthM = lengths.reduce((sum, m) => sum + m, 0);
+  const stretch = solution.lengthM / solution.distanceScale / lengthM;
+  const path = complexZeros(n);
+  const perConductor = complexZeros(n);
+  const perDielectric = complexZeros(n);
+  const tableLossDb = new Float64Array(n);
+  const z0Ohm = referenceOhm(line, portOhm);
+  const startsAt = line.sections.map((section, s) => {
+    const start = complexCopy(path);
+    const medium = sectionMedium(section, frequencyHz, { temperatureC: line.temperatureC, z0Ohm });
+    const ownM = lengths[s]!;
+    const ownDevice = section.type === 'device';
+    for (let i = 0; i < n; i++) {
+      path.re[i] = path.re[i]! + medium.gamma.re[i]! * ownM;
+      path.im[i] = path.im[i]! + medium.gamma.im[i]! * ownM * stretch;
+      if (ownDevice) continue;
+      tableLossDb[i] = tableLossDb[i]! + medium.gamma.re[i]! * ownM * DB_PER_NEPER;
+      add(perConductor, medium.gammaPerConductorLoss, i, ownM);
+      add(perDielectric, medium.gammaPerDielectricLoss, i, ownM);
+    }
+    return start;
+  });
+  return { path, perConductor, perDielectric, tableLossDb, startsAt, lengthM };
+}
+
+/** Lengths of the sections as laid, m: described where the description gives them, the rest up to the end. */
+function lengthsM(line: Line, solution: Pick<Solution, 'lengthM' | 'scaledTo'>): number[] {
+  let beforeM = 0;
+  return line.sections.map(({ lengthM }) => {
+    const own = lengthM ?? Math.max(SHORTEST_M, solution.lengthM - beforeM);
+    beforeM += own;
+    return own;
+  });
+}
+
+/** Length of a last section that the end leaves no room for, m. */
+const SHORTEST_M = 0.01;
+
+function add(to: ComplexArray, per: ComplexArray, i: number, lengthM: number): void {
+  to.re[i] = to.re[i]! + per.re[i]! * lengthM;
+  to.im[i] = to.im[i]! + per.im[i]! * lengthM;
+}
+
+/** Loss on passing one discontinuity once, Np at each frequency. */
+export function passingNp(echo: Echo, frequencyHz: Float64Array): Float64Array {
+  const size = Math.min(0.95, gammaOfReturnLoss(echo.correctedReturnLossDb));
+  switch (echo.kind) {
+    case 'series-resistance':
+    case 'shunt-leakage':
+      // S21 = 1 − |Γ|
+      return new Float64Array(frequencyHz.length).fill(-Math.log(1 - size));
+    case 'impedance-step':
+      return new Float64Array(frequencyHz.length).fill(-Math.log(1 - size * size) / 2);
+    default: {
+      // Lossless and reactive: |S21|² = 1 − |Γ|², with |Γ| in proportion to frequency about its RMS over the band.
+      const square = frequencyHz.reduce((sum, f) => sum + f * f, 0) / frequencyHz.length;
+      return frequencyHz.map((f) => -Math.log(Math.max(0.1, 1 - (size * size * f * f) / square)) / 2);
+    }
+  }
+}
