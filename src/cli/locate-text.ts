@@ -5,13 +5,14 @@ import { analysisNotices } from '../app/analysis-notices.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
 import { spokenFile } from '../app/standard-input.ts';
+import { verdictOf, verdictWords, worstOf } from '../app/verdict.ts';
 import type { Finding } from '../assess/finding.ts';
-import { fitDoubt } from '../assess/fit-doubt.ts';
 import { describedLengthM } from '../line/line.ts';
-import type { Echo, Severity } from '../locate/echo.ts';
+import type { Echo } from '../locate/echo.ts';
 import type { Ghost } from '../locate/solution.ts';
 import type { Notice } from '../outcome.ts';
 import { cellWidth, cutText, fitText, wrapText } from '../plot/cells.ts';
+import { SEVERITY_GLYPHS } from '../plot/line-strip.ts';
 import {
   decibelText,
   fixedText,
@@ -32,8 +33,6 @@ export type TextOptions = {
   /** What the reading of files had to say. */
   readonly notices: readonly Notice[];
 };
-
-const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
 
 /** Columns of the table of echoes; the last one takes what is left. */
 const TABLE_HEAD = ['', 'distance', 'seen dB', 'corrected', 'what', 'sure', 'place'] as const;
@@ -64,20 +63,11 @@ export function locateText(inMetres: Analysis, options: TextOptions): string {
 }
 
 function verdictLines(analysis: Analysis, { paint, columns }: TextOptions): string[] {
-  const count = (severity: Severity): number =>
-    analysis.findings.filter((finding) => finding.severity === severity).length;
-  const faults = count('fault');
-  const watches = count('watch');
-  const doubt = fitDoubt(analysis.solution) !== null;
-  const worst: Severity = faults > 0 ? 'fault' : watches > 0 || doubt ? 'watch' : 'sound';
-  const words = [
-    ...(faults > 0 ? [`${faults} fault${faults === 1 ? '' : 's'}`] : []),
-    ...(watches > 0 ? [`${watches} to watch`] : []),
-    ...(doubt ? ['this line does not explain the sweep'] : []),
-  ];
-  const verdict = words.length > 0 ? words.join(', ') : 'no fault found';
-  const name = cutText(analysis.line.name || spokenFile(analysis.sweep.file), columns - verdict.length - 4);
-  return [`${paint(worst, `${MARKS[worst]} ${name}: ${verdict}`)}`];
+  const verdict = verdictOf(analysis);
+  const worst = worstOf(verdict);
+  const words = verdictWords(verdict);
+  const name = cutText(analysis.line.name || spokenFile(analysis.sweep.file), columns - words.length - 4);
+  return [`${paint(worst, `${SEVERITY_GLYPHS[worst]} ${name}: ${words}`)}`];
 }
 
 function summaryLines(analysis: Analysis, { units, columns }: TextOptions): string[] {
@@ -117,7 +107,7 @@ function summaryLines(analysis: Analysis, { units, columns }: TextOptions): stri
 
 function echoTable(analysis: Analysis, { columns, units, paint }: TextOptions): string[] {
   const rows = analysis.solution.echoes.map((echo, i) => [
-    MARKS[analysis.severities[i] ?? 'sound'],
+    SEVERITY_GLYPHS[analysis.severities[i] ?? 'sound'],
     lengthWithSigmaText(echo.distanceM, echo.distanceSigmaM, units),
     fixedText(-echo.returnLossDb, 1),
     fixedText(-echo.correctedReturnLossDb, 1),
@@ -151,7 +141,7 @@ function shortPlace(analysis: Analysis, echo: Echo): string {
 
 function findingLines(finding: Finding, { columns, units, paint }: TextOptions): string[] {
   const head =
-    `${MARKS[finding.severity]} ${finding.severity} ${finding.where}, ` +
+    `${SEVERITY_GLYPHS[finding.severity]} ${finding.severity} ${finding.where}, ` +
     `${lengthWithSigmaText(finding.distanceM, finding.distanceSigmaM, units)}`;
   return [
     ...wrapText(head, columns).map((line) => paint(finding.severity, line)),

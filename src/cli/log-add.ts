@@ -7,15 +7,17 @@ import { readLineFile } from '../app/line-request.ts';
 import { keepLine, knownLine, newEntry } from '../app/log-add.ts';
 import { logHead, summaryDocument } from '../app/log-documents.ts';
 import { STANDARD_INPUT } from '../app/standard-input.ts';
+import { verdictWords, worstOf } from '../app/verdict.ts';
 import type { Added } from '../logbook/add-entry.ts';
 import { type EntrySummary, type LineName, shortKey } from '../logbook/entry.ts';
 import type { Logbook } from '../logbook/logbook.ts';
 import { fullName } from '../logbook/stored-lines.ts';
 import { type Notice, type Outcome, type Problem, succeed } from '../outcome.ts';
 import { wrapText } from '../plot/cells.ts';
+import { SEVERITY_GLYPHS } from '../plot/line-strip.ts';
 import { type ExitStatus, type Io, write } from './io.ts';
 import { parseWallTime, wallTimeOf } from './log-dates.ts';
-import { type LogTextOptions, MARKS, verdictWords, whenText, worstOf } from './log-text.ts';
+import { type LogTextOptions, whenText } from './log-text.ts';
 import type { Invocation } from './parse-arguments.ts';
 import { printProblems } from './print-problems.ts';
 import { lineFlags, prepareRequest, prepareTables } from './request.ts';
@@ -156,7 +158,7 @@ function savedText(saved: Saved, notices: readonly Notice[], { columns, paint }:
   const severity = worstOf(entry);
   const how = { new: 'logged as', already: 'is there as', replaced: 'replaces' }[added.how];
   const head =
-    `${MARKS[severity]} ${fullName(entry.line)}, ${whenText(entry.takenAt)}: ${verdictWords(entry)}; ` +
+    `${SEVERITY_GLYPHS[severity]} ${fullName(entry.line)}, ${whenText(entry.takenAt)}: ${verdictWords(entry)}; ` +
     `${how} ${shortKey(entry.key)}${entry.baseline ? ', the baseline' : ''}`;
   return [
     ...wrapText(head, columns).map((line) => paint(severity, line)),

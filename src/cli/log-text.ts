@@ -1,10 +1,11 @@
 /** Entries of the logbook as text: the list, and one of them with what was concluded. */
 
-import type { Severity } from '../locate/echo.ts';
+import { verdictWords, worstOf } from '../app/verdict.ts';
 import { type EchoFigures, type Entry, type EntrySummary, shortKey } from '../logbook/entry.ts';
 import { fullName } from '../logbook/stored-lines.ts';
 import type { Verification } from '../logbook/verify.ts';
 import { cutText, wrapText } from '../plot/cells.ts';
+import { SEVERITY_GLYPHS } from '../plot/line-strip.ts';
 import {
   decibelText,
   fixedText,
@@ -19,22 +20,6 @@ import type { Paint } from './paint.ts';
 import { tableLines } from './table-lines.ts';
 
 export type LogTextOptions = { readonly columns: number; readonly units: Units; readonly paint: Paint };
-
-export const MARKS: Readonly<Record<Severity, string>> = { fault: '×', watch: '▲', sound: '●' };
-
-/** Severity of the worst that was found. */
-export function worstOf({ faults, watches }: Pick<EntrySummary, 'faults' | 'watches'>): Severity {
-  return faults > 0 ? 'fault' : watches > 0 ? 'watch' : 'sound';
-}
-
-/** "1 fault, 2 to watch"; "no fault found". */
-export function verdictWords({ faults, watches }: Pick<EntrySummary, 'faults' | 'watches'>): string {
-  const words = [
-    ...(faults > 0 ? [`${faults} fault${faults === 1 ? '' : 's'}`] : []),
-    ...(watches > 0 ? [`${watches} to watch`] : []),
-  ];
-  return words.length > 0 ? words.join(', ') : 'no fault found';
-}
 
 /** Wall time with a blank in place of the T. */
 export function whenText(takenAt: string): string {
@@ -70,7 +55,7 @@ export function listText(
     ...(entries.length > 0 ? [paint('dim', cutText(`  ${rows[0]}`, columns))] : []),
     ...entries.map((entry, i) => {
       const severity = worstOf(entry);
-      const line = cutText(`${MARKS[severity]} ${rows[i + 1]}`, columns);
+      const line = cutText(`${SEVERITY_GLYPHS[severity]} ${rows[i + 1]}`, columns);
       return severity === 'sound' ? line : paint(severity, line);
     }),
     paint('dim', cutText(`${count} in ${logbook}`, columns)),
@@ -98,7 +83,7 @@ export function entryText(entry: Entry, { columns, units, paint }: LogTextOption
       echoLabel(echo),
     ]),
   );
-  const head = `${MARKS[severity]} ${fullName(entry.line)}, ${whenText(entry.takenAt)}: ${verdictWords(entry)}`;
+  const head = `${SEVERITY_GLYPHS[severity]} ${fullName(entry.line)}, ${whenText(entry.takenAt)}: ${verdictWords(entry)}`;
   return [
     ...wrapText(head, columns).map((line) => paint(severity, line)),
     ...row('entry', `${shortKey(entry.key)}${entry.baseline ? ', the baseline of this line' : ''}`),
@@ -137,7 +122,7 @@ export function entryText(entry: Entry, { columns, units, paint }: LogTextOption
     '',
     paint('dim', cutText(`  ${echoes[0]}`, columns)),
     ...figures.echoes.map((echo, i) => {
-      const line = cutText(`${MARKS[echo.severity]} ${echoes[i + 1]}`, columns);
+      const line = cutText(`${SEVERITY_GLYPHS[echo.severity]} ${echoes[i + 1]}`, columns);
       return echo.severity === 'sound' ? line : paint(echo.severity, line);
     }),
     '',

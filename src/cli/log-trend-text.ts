@@ -4,9 +4,10 @@ import { fullName } from '../logbook/stored-lines.ts';
 import { type Course, dayOf, type EchoTrend, type LineTrend } from '../logbook/trend.ts';
 import { cutText, fitText, wrapText } from '../plot/cells.ts';
 import { drawChart } from '../plot/chart.ts';
+import { SEVERITY_GLYPHS } from '../plot/line-strip.ts';
 import { fixedText, frequencyText, lengthText } from '../plot/quantity-text.ts';
 import { runsText } from '../plot/run.ts';
-import { echoLabel, type LogTextOptions, MARKS, whenText } from './log-text.ts';
+import { echoLabel, type LogTextOptions, whenText } from './log-text.ts';
 import { tableLines } from './table-lines.ts';
 
 const CHART_ROWS = 10;
@@ -105,7 +106,7 @@ function echoLines(trend: LineTrend, { columns, units, paint }: LogTextOptions):
   return rows.map((row, i) => {
     if (i === 0) return paint('dim', cutText(`  ${row}`, columns));
     const severity = trend.echoes[i - 1]!.echoes.at(-1)!.echo.severity;
-    const text = cutText(`${MARKS[severity]} ${row}`, columns);
+    const text = cutText(`${SEVERITY_GLYPHS[severity]} ${row}`, columns);
     return severity === 'sound' ? text : paint(severity, text);
   });
 }

@@ -60,12 +60,6 @@ function rowsOf(analysis: Analysis): readonly Found[] {
   );
 }
 
-/** How many faults and watches there are. */
-export function verdictOf(analysis: Analysis): { readonly faults: number; readonly watches: number } {
-  const count = (severity: Severity) => analysis.findings.filter((f) => f.severity === severity).length;
-  return { faults: count('fault'), watches: count('watch') };
-}
-
 function foundOf(analysis: Analysis, finding: Finding): Found {
   const echo = finding.echo === null ? undefined : analysis.solution.echoes[finding.echo];
   return {

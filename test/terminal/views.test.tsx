@@ -1,6 +1,7 @@
 import { renderToString } from 'ink';
 import { describe, expect, it } from 'vitest';
 import type { Analysis } from '../../src/app/analysis.ts';
+import { PLAIN_JOINT } from '../../src/line/line.ts';
 import { fail } from '../../src/outcome.ts';
 import { cellWidth } from '../../src/plot/cells.ts';
 import { cellOf, cellScale } from '../../src/plot/scale.ts';
@@ -187,6 +188,13 @@ describe('views', () => {
     expect(words(press(readyState(SIZE, none), '2').state)).toContain(
       'Ohms need a sweep that begins near zero',
     );
+    const guide = {
+      ...{ id: 'made', name: 'made guide', aMm: 30, aToleranceMm: 0.1, bMm: 15, conductivitySPerM: 5.8e7 },
+      ...{ lossDbPer100m: null, bandMHz: null },
+    };
+    const tube = { type: 'guide' as const, guide, lengthM: 20, label: 'tube', jointAfter: PLAIN_JOINT };
+    const guided = makeAnalysis({ ...none, line: { ...none.line, sections: [tube] } });
+    expect(words(press(readyState(SIZE, guided), '2').state)).toContain('A waveguide has no ohms of its own');
   });
 
   it('marks a ghost by a letter and explains it under the cursor', () => {

@@ -1,12 +1,11 @@
 /** The top row: which line, which sweep, and the verdict. */
 import type { Analysis } from '../../app/analysis.ts';
 import { STANDARD_INPUT } from '../../app/standard-input.ts';
-import { fitDoubt } from '../../assess/fit-doubt.ts';
+import { verdictOf } from '../../app/verdict.ts';
 import { cellWidth, fitRuns, spreadRuns } from '../../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
 import { frequencySpanText, temperatureText } from '../../plot/quantity-text.ts';
 import { type Run, run, runsText } from '../../plot/run.ts';
-import { verdictOf } from '../found.ts';
 import { analysisOf, type State } from '../state.ts';
 
 /** Blanks between the sweep's facts and the texts beside them. */
@@ -66,17 +65,16 @@ function statusRuns(state: State): readonly Run[] {
 }
 
 function verdictRuns(analysis: Analysis): readonly Run[] {
-  const { faults, watches } = verdictOf(analysis);
-  const doubt = fitDoubt(analysis.solution) !== null;
-  if (faults + watches === 0 && !doubt) return [run(`${SEVERITY_GLYPHS.sound} no fault found`, 'sound')];
+  const { faults, watches, doubtful } = verdictOf(analysis);
+  if (faults + watches === 0 && !doubtful) return [run(`${SEVERITY_GLYPHS.sound} no fault found`, 'sound')];
   return [
     ...(faults > 0
       ? [run(`${SEVERITY_GLYPHS.fault} ${faults} fault${faults === 1 ? '' : 's'}`, 'fault')]
       : []),
     ...(faults > 0 && watches > 0 ? [run(' · ')] : []),
     ...(watches > 0 ? [run(`${SEVERITY_GLYPHS.watch} ${watches} to watch`, 'watch')] : []),
-    ...(doubt && faults + watches > 0 ? [run(' · ')] : []),
-    ...(doubt ? [run(`${SEVERITY_GLYPHS.watch} not this line`, 'watch')] : []),
+    ...(doubtful && faults + watches > 0 ? [run(' · ')] : []),
+    ...(doubtful ? [run(`${SEVERITY_GLYPHS.watch} not this line`, 'watch')] : []),
   ];
 }
 

@@ -1,5 +1,6 @@
 /** Ohms against distance. */
 import type { Analysis } from '../../app/analysis.ts';
+import { hasGuide } from '../../line/line.ts';
 import type { ImpedanceProfile } from '../../locate/impedance-profile.ts';
 import { fixedText, frequencyText, lengthPerMetre, ohmText } from '../../plot/quantity-text.ts';
 import { run } from '../../plot/run.ts';
@@ -69,7 +70,8 @@ function valueAt({ distanceM, impedanceOhm }: ImpedanceProfile, atM: number): nu
   return impedanceOhm[after - 1]! + share * (impedanceOhm[after]! - impedanceOhm[after - 1]!);
 }
 
-function whyNoOhms({ sweep, reach }: Analysis): readonly string[] {
+function whyNoOhms({ sweep, line, reach }: Analysis): readonly string[] {
+  if (hasGuide(line)) return ['A waveguide has no ohms of its own, so none can be drawn along this line.'];
   if (reach.impedanceProfile !== 'no') return ['This answer carries no ohms along the line.'];
   const startHz = sweep.frequencyHz[0]!;
   const stopHz = sweep.frequencyHz.at(-1)!;
