@@ -189,7 +189,7 @@ describe('views', () => {
       'Ohms need a sweep that begins near zero',
     );
     const guide = {
-      ...{ id: 'made', name: 'made guide', aMm: 30, aToleranceMm: 0.1, bMm: 15, conductivitySPerM: 5.8e7 },
+      ...{ id: 'made', name: 'made guide', aMm: 1e5, aToleranceMm: 0.1, bMm: 15, conductivitySPerM: 5.8e7 },
       ...{ lossDbPer100m: null, bandMHz: null },
     };
     const tube = { type: 'guide' as const, guide, lengthM: 20, label: 'tube', jointAfter: PLAIN_JOINT };
