@@ -27,6 +27,8 @@ export type EndLoss = {
   readonly dielectric: number;
   /** Covariance: conductor, both, dielectric. */
   readonly covariance: readonly [number, number, number];
+  /** Loss of the faults on the way, as a factor on what their sizes say. */
+  readonly faults: number;
   /** True where loss that grows with frequency is clearly more than sound cable has: water, as a rule. */
   readonly growing: boolean;
 };
@@ -35,14 +37,16 @@ export type EndLoss = {
 const WATER_DB = 1;
 
 /** Lead, −2 ln of the odds, that water must have over sound cable; most lines are dry. */
-const WATER_LEAD = 4.6;
+const WATER_LEAD = 9;
+/** Less than this is not called water, dB one way at the middle of the band. Chosen on seeded scenes, wet and dry. */
+const LEAST_WATER_DB = 0.2;
 
 const NEPER_PER_DB = Math.LN10 / 20;
 
 /** Steps of the fit, which is nearly linear. */
 const STEPS = 5;
 
-/** What two real sizes of loss are multiplied by for the standard deviation to hold what the model leaves out. */
+/** What the standard deviation is multiplied by, to hold what the terms leave out. Chosen on seeded scenes. */
 const DOUBT = 1.2;
 
 /**
@@ -54,14 +58,15 @@ const DOUBT = 1.2;
  */
 export function fitEndLoss(given: EndPath, priors: LossPriors): EndLoss | null {
   const terms = createEndTerms(given);
-  const sound = fit(terms, priors);
+  const sound = fitWith(terms, priors);
   const middle = given.frequencyHz.length >> 1;
   const perDielectric = given.perDielectric.re[middle]!;
   if (!(perDielectric > 0)) return sound && resultOf(sound, false);
   const water = (WATER_DB * NEPER_PER_DB) / perDielectric;
-  const wet = fit(terms, { ...priors, dielectric: water }, sound?.variance);
+  const wet = fitWith(terms, { ...priors, dielectric: water }, sound?.variance);
   if (sound === null || wet === null) return sound && resultOf(sound, false);
-  const growing = wet.values[1]! > wet.values[0]! && sound.evidence - wet.evidence > WATER_LEAD;
+  const beyondNp = (wet.values[1]! - wet.values[0]!) * perDielectric;
+  const growing = beyondNp > LEAST_WATER_DB * NEPER_PER_DB && sound.evidence - wet.evidence > WATER_LEAD;
   return resultOf(growing ? wet : sound, growing);
 }
 
@@ -79,13 +84,14 @@ function resultOf({ values, covariance }: Fitted, growing: boolean): EndLoss {
   return {
     conductor: values[0]!,
     dielectric: values[1]!,
+    faults: Math.max(0, 1 + values[FIXED_TERMS.faults]!),
     covariance: [cc * square, cd * square, dd * square],
     growing,
   };
 }
 
 /** @param variance Per real part of a point; what is left over, where it is not given. */
-function fit(terms: EndTerms, priors: LossPriors, variance?: number): Fitted | null {
+function fitWith(terms: EndTerms, priors: LossPriors, variance?: number): Fitted | null {
   const { count: p, points: n } = terms;
   const columns: ComplexArray[] = Array.from({ length: p }, () => complexZeros(n));
   const residual = complexZeros(n);
@@ -134,7 +140,7 @@ const QUIETEST = 1e-14;
 function priorPrecision(terms: EndTerms, { common, conductor, dielectric }: LossPriors): Float64Array {
   const p = terms.count;
   const precision = new Float64Array(p * p);
-  for (let k = FIXED_TERMS.loss; k < p; k++) precision[k * p + k] = terms.precision[k]!;
+  for (let k = FIXED_TERMS.faults; k < p; k++) precision[k * p + k] = terms.precision[k]!;
   const cc = common * common + conductor * conductor;
   const cd = common * common;
   const dd = common * common + dielectric * dielectric;

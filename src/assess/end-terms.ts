@@ -14,8 +14,10 @@ export type EndPath = {
   /** What a relative change of the conductor's and of the dielectric's loss adds to it. */
   readonly perConductor: ComplexArray;
   readonly perDielectric: ComplexArray;
-  /** What discontinuities on the way take off, both ways together, Np. */
+  /** What lossless discontinuities on the way take off, both ways together, Np. */
   readonly passedNp: Float64Array;
+  /** What resistances and leaks on the way take off, one way, Np. */
+  readonly faultsNp: Float64Array;
   /** What reflects before the end: the path to each and its |Γ|. */
   readonly neighbours: readonly { readonly path: ComplexArray; readonly gamma: number }[];
 };
@@ -31,8 +33,11 @@ export type EndTerms = {
   linearise(values: Float64Array, columns: readonly ComplexArray[], residual: ComplexArray): void;
 };
 
-/** Conductor and dielectric loss come first; then delay, what grows as f³, and the stretch of the run's own phase. */
-export const FIXED_TERMS = { loss: 2, delay: 2, cubic: 3, stretch: 4, count: 5 } as const;
+/**
+ * Conductor and dielectric loss come first, then the share of the faults' loss that is real, then laws of phase: the
+ * delay, what grows as f³, as √f and as f·ln f, and the run's own.
+ */
+export const FIXED_TERMS = { faults: 2, delay: 3, phases: 4, count: 8 } as const;
 
 /** Round-trip delays within which the residue's reflections lie, s. Common practice: test lead and adaptor. */
 const RESIDUE_SPAN_S = 1.2e-9;
@@ -42,10 +47,13 @@ const TRACKING = 0.0075;
 
 /** How far the end may stand off its place, as a round-trip delay, s: tape, fringe and what the fit left in doubt. */
 const DELAY_SIGMA_S = 0.3e-9;
-/** Phase that the last connector adds beyond a delay at the top of the band, rad. */
-const CUBIC_SIGMA_RAD = 0.3;
-/** The same of the run's own law of phase: what a guide's width leaves in doubt after its length is fitted, rad. */
-const STRETCH_SIGMA_RAD = 0.3;
+/**
+ * Phase that the laws beside the delay add at the top of the band, rad: the last connector, the sample's dispersion, a
+ * guide's width. Wide, so that only the size of the echo tells the loss: small errors of phase would tell it wrong.
+ */
+const PHASE_SIGMA_RAD = 0.3;
+/** How far the loss of faults on the way is trusted, as a share of it: a joint's halves can pass for a resistance. */
+const FAULTS_SIGMA = 0.5;
 
 /** Neighbours within this many resolutions mix with the end; those farther off average out over the band. */
 const NEAR_RESOLUTIONS = 25;
@@ -65,13 +73,18 @@ export function createEndTerms(given: EndPath): EndTerms {
   const additions = neighbourTerms(given, bandHz);
   const firstAddition = FIXED_TERMS.count + 2 * residue.length;
   const count = firstAddition + additions.length;
-  const top = 2 * Math.PI * f[n - 1]!;
-  const turn = f.map((_, i) => path.im[i]! / path.im[n - 1]!);
+  const phases = [
+    f.map((hz) => (hz / f[n - 1]!) ** 3),
+    f.map((hz) => Math.sqrt(hz / f[n - 1]!)),
+    f.map((hz) => (hz / f[n - 1]!) * Math.log(hz / f[n - 1]!)),
+    f.map((_, i) => path.im[i]! / path.im[n - 1]!),
+  ];
+  const { faultsNp } = given;
 
   const precision = new Float64Array(count);
   precision[FIXED_TERMS.delay] = 1 / DELAY_SIGMA_S ** 2;
-  precision[FIXED_TERMS.cubic] = 1 / CUBIC_SIGMA_RAD ** 2;
-  precision[FIXED_TERMS.stretch] = 1 / STRETCH_SIGMA_RAD ** 2;
+  precision[FIXED_TERMS.faults] = 1 / FAULTS_SIGMA ** 2;
+  precision.fill(1 / PHASE_SIGMA_RAD ** 2, FIXED_TERMS.phases, FIXED_TERMS.count);
   precision.fill((2 * residue.length) / TRACKING ** 2, FIXED_TERMS.count, firstAddition);
   additions.forEach((addition, k) => {
     precision[firstAddition + k] = addition.precision;
@@ -87,16 +100,15 @@ export function createEndTerms(given: EndPath): EndTerms {
       return values;
     },
     linearise(values, columns, residual) {
-      const [c, d, delayS, cubicRad, stretchRad] = values as unknown as readonly number[];
+      const c = values[0]!;
+      const d = values[1]!;
+      const faults = values[FIXED_TERMS.faults]!;
+      const delayS = values[FIXED_TERMS.delay]!;
       for (let i = 0; i < n; i++) {
         const omega = 2 * Math.PI * f[i]!;
-        const cubic = (omega / top) ** 3;
-        const size = Math.exp(-2 * (gc.re[i]! * c! + gd.re[i]! * d!));
-        const angle =
-          -2 * (gc.im[i]! * c! + gd.im[i]! * d!) -
-          omega * delayS! -
-          cubic * cubicRad! -
-          turn[i]! * stretchRad!;
+        const size = Math.exp(-2 * (gc.re[i]! * c + gd.re[i]! * d + faultsNp[i]! * faults));
+        let angle = -2 * (gc.im[i]! * c + gd.im[i]! * d) - omega * delayS;
+        for (let k = 0; k < phases.length; k++) angle -= phases[k]![i]! * values[FIXED_TERMS.phases + k]!;
         const pRe = size * Math.cos(angle);
         const pIm = size * Math.sin(angle);
         const eRe = echo.re[i]! * pRe - echo.im[i]! * pIm;
@@ -116,11 +128,24 @@ export function createEndTerms(given: EndPath): EndTerms {
         }
         const mRe = eRe * tRe - eIm * tIm;
         const mIm = eRe * tIm + eIm * tRe;
-        put(columns[0]!, i, -2 * (mRe * gc.re[i]! - mIm * gc.im[i]!), -2 * (mRe * gc.im[i]! + mIm * gc.re[i]!));
-        put(columns[1]!, i, -2 * (mRe * gd.re[i]! - mIm * gd.im[i]!), -2 * (mRe * gd.im[i]! + mIm * gd.re[i]!));
+        put(
+          columns[0]!,
+          i,
+          -2 * (mRe * gc.re[i]! - mIm * gc.im[i]!),
+          -2 * (mRe * gc.im[i]! + mIm * gc.re[i]!),
+        );
+        put(
+          columns[1]!,
+          i,
+          -2 * (mRe * gd.re[i]! - mIm * gd.im[i]!),
+          -2 * (mRe * gd.im[i]! + mIm * gd.re[i]!),
+        );
         put(columns[FIXED_TERMS.delay]!, i, omega * mIm, -omega * mRe);
-        put(columns[FIXED_TERMS.cubic]!, i, cubic * mIm, -cubic * mRe);
-        put(columns[FIXED_TERMS.stretch]!, i, turn[i]! * mIm, -turn[i]! * mRe);
+        put(columns[FIXED_TERMS.faults]!, i, -2 * faultsNp[i]! * mRe, -2 * faultsNp[i]! * mIm);
+        for (let k = 0; k < phases.length; k++) {
+          const law = phases[k]![i]!;
+          put(columns[FIXED_TERMS.phases + k]!, i, law * mIm, -law * mRe);
+        }
         let rRe = given.measured.re[i]! - mRe;
         let rIm = given.measured.im[i]! - mIm;
         for (let k = 0; k < additions.length; k++) {
@@ -141,10 +166,10 @@ function put(to: ComplexArray, i: number, re: number, im: number): void {
 }
 
 /** What the end would send back were the run as described: ±e^{−2γℓ} less what is lost on the way. */
-function describedEcho({ path, sign, passedNp }: EndPath): ComplexArray {
+function describedEcho({ path, sign, passedNp, faultsNp }: EndPath): ComplexArray {
   const echo = complexZeros(passedNp.length);
   for (let i = 0; i < passedNp.length; i++) {
-    const size = sign * Math.exp(-2 * path.re[i]! - passedNp[i]!);
+    const size = sign * Math.exp(-2 * (path.re[i]! + faultsNp[i]!) - passedNp[i]!);
     put(echo, i, size * Math.cos(2 * path.im[i]!), -size * Math.sin(2 * path.im[i]!));
   }
   return echo;

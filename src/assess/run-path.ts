@@ -79,20 +79,27 @@ function add(to: ComplexArray, per: ComplexArray, i: number, lengthM: number): v
   to.im[i] = to.im[i]! + per.im[i]! * lengthM;
 }
 
-/** Loss on passing one discontinuity once, Np at each frequency. */
-export function passingNp(echo: Echo, frequencyHz: Float64Array): Float64Array {
-  const size = Math.min(0.95, gammaOfReturnLoss(echo.correctedReturnLossDb));
-  switch (echo.kind) {
-    case 'series-resistance':
-    case 'shunt-leakage':
-      // S21 = 1 − |Γ|
-      return new Float64Array(frequencyHz.length).fill(-Math.log(1 - size));
-    case 'impedance-step':
-      return new Float64Array(frequencyHz.length).fill(-Math.log(1 - size * size) / 2);
-    default: {
-      // Lossless and reactive: |S21|² = 1 − |Γ|², with |Γ| in proportion to frequency about its RMS over the band.
-      const square = frequencyHz.reduce((sum, f) => sum + f * f, 0) / frequencyHz.length;
-      return frequencyHz.map((f) => -Math.log(Math.max(0.1, 1 - (size * size * f * f) / square)) / 2);
+/** True for what takes power on the way, not only sends it back. */
+export function isLossy(echo: Pick<Echo, 'kind'>): boolean {
+  return echo.kind === 'series-resistance' || echo.kind === 'shunt-leakage';
+}
+
+/** Loss on passing discontinuities once, Np at each frequency: |S21| = 1 − |Γ| of lossy ones, |S21|² = 1 − |Γ|² of others. */
+export function passingNp(echoes: readonly Echo[], frequencyHz: Float64Array): Float64Array {
+  const sum = new Float64Array(frequencyHz.length);
+  // A reactive one reflects in proportion to frequency, about its RMS over the band.
+  const square = frequencyHz.reduce((total, f) => total + f * f, 0) / frequencyHz.length;
+  for (const echo of echoes) {
+    const size = Math.min(LARGEST_GAMMA, gammaOfReturnLoss(echo.correctedReturnLossDb));
+    for (let i = 0; i < sum.length; i++) {
+      const law = echo.kind === 'impedance-step' ? 1 : frequencyHz[i]! ** 2 / square;
+      const left = isLossy(echo) ? 1 - size : Math.sqrt(Math.max(LEAST_PASSED, 1 - size * size * law));
+      sum[i] = sum[i]! - Math.log(left);
     }
   }
+  return sum;
 }
+
+/** A fault that passes less than these passes nothing that the end could be seen by. */
+const LARGEST_GAMMA = 0.95;
+const LEAST_PASSED = 0.1;

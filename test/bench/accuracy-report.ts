@@ -132,6 +132,8 @@ function numberText(value: number, unit: Figure['unit']): string {
       return value.toFixed(3);
     case 'm':
       return `${value.toFixed(4)} m`;
+    case 'dB':
+      return `${value.toFixed(4)} dB`;
     case 'ms':
       return `${value.toFixed(0)} ms`;
     case 'count':

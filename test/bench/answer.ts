@@ -20,6 +20,8 @@ export type Answer = {
   readonly lengthM: number | null;
   readonly lengthSigmaM: number | null;
   readonly end: string;
+  /** One-way loss of the cable at each point of the sweep, dB; null where the way gives none. */
+  readonly loss: { readonly lossDb: Float64Array; readonly sigmaDb: Float64Array | null } | null;
   readonly solveMs: number;
   /** Why there is no answer; null when there is one. */
   readonly failed: string | null;
@@ -33,6 +35,7 @@ export function failedAnswer(why: string, solveMs: number): Answer {
     lengthM: null,
     lengthSigmaM: null,
     end: 'unknown',
+    loss: null,
     solveMs,
     failed: why,
   };

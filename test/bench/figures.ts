@@ -1,11 +1,11 @@
 /** The figures of each suite, with the targets of design section 13. */
-import { median } from '../../src/numerics/statistics.ts';
+import { median, quantile } from '../../src/numerics/statistics.ts';
 import type { SuiteName } from '../scenes/suites.ts';
 import type { FaultScore, SceneScore, Strictness } from './score.ts';
 
 export type Figure = {
   readonly label: string;
-  readonly unit: 'percent' | 'a line' | 'm' | 'ms' | 'ratio' | 'count';
+  readonly unit: 'percent' | 'a line' | 'm' | 'ms' | 'ratio' | 'count' | 'dB';
   /** What is asked of it; null when it is only shown. */
   readonly target: { readonly atLeast?: number; readonly atMost?: number } | null;
   /** Null where the suite gives nothing to count. */
@@ -139,6 +139,18 @@ function lines(
   };
 }
 
+function lossError(label: string, at: number, atMost: number): Figure {
+  return {
+    label,
+    unit: 'dB',
+    target: { atMost },
+    value: (scores) => {
+      const errors = scores.flatMap((score) => (score.lossErrorDb === null ? [] : [score.lossErrorDb]));
+      return errors.length === 0 ? null : quantile(Float64Array.from(errors), at);
+    },
+  };
+}
+
 const FIGURES: Readonly<Record<SuiteName, readonly Figure[]>> = {
   single: [found(0.98), found(null, 'found, of those of 34–45 dB', weak), kindRight(0.96), ...COMMON],
   pairs: [
@@ -231,6 +243,28 @@ const FIGURES: Readonly<Record<SuiteName, readonly Figure[]>> = {
       (score) => score.answeredStretch !== null,
     ),
     falsePerLine(null),
+    solveTime,
+    noAnswer,
+  ],
+  loss: [
+    lossError('median loss error, one way', 0.5, 0.015),
+    lossError('90th percentile', 0.9, 0.04),
+    {
+      label: 'loss within 2σ',
+      unit: 'percent',
+      target: { atLeast: 0.9, atMost: 0.98 },
+      value: (scores) =>
+        share(
+          scores.filter((score) => score.lossErrorDb !== null && score.lossSigmaDb !== null),
+          (score) => score.lossErrorDb! <= 2 * score.lossSigmaDb!,
+        ),
+    },
+    lines(
+      'lines without a loss',
+      { atMost: 0 },
+      () => true,
+      (score) => score.lossErrorDb === null,
+    ),
     solveTime,
     noAnswer,
   ],

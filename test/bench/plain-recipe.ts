@@ -58,6 +58,7 @@ export function plainRecipe(scene: Scene): Answer {
     lengthM: end.distanceM,
     lengthSigmaM: null,
     end: endKind(end),
+    loss: plainLoss(re, im),
     solveMs: performance.now() - started,
     failed: null,
   };
@@ -231,4 +232,19 @@ function kindOfPhase(angle: number): string {
 
 function toFinding(peak: Peak, kind: string, joint: number | null): AnsweredFinding {
   return { severity: 'fault', kind, distanceM: peak.distanceM, sigmaM: null, joint, confidence: null };
+}
+
+/** Points on each side over which a careful reader averages the ripple of a return-loss curve: a twelfth of them. */
+const AVERAGED_SHARE = 1 / 12;
+
+/** Half the return loss, averaged over the ripple: one-way loss of a line that is open or shorted at its end. */
+function plainLoss(re: Float64Array, im: Float64Array): Answer['loss'] {
+  const reach = Math.max(1, Math.round(re.length * AVERAGED_SHARE));
+  const lossDb = re.map((_, k) => {
+    const [from, to] = [Math.max(0, k - reach), Math.min(re.length, k + reach + 1)];
+    let sum = 0;
+    for (let i = from; i < to; i++) sum += -10 * Math.log10(re[i]! ** 2 + im[i]! ** 2);
+    return sum / (to - from) / 2;
+  });
+  return { lossDb, sigmaDb: null };
 }

@@ -2,6 +2,7 @@
 import { analyse } from '../../src/app/analyse.ts';
 import type { Analysis } from '../../src/app/analysis.ts';
 import type { AnalyseRequest } from '../../src/app/solver.ts';
+import { checkLoss } from '../../src/assess/loss-check.ts';
 import type { CableTable } from '../../src/line/cable-table.ts';
 import { readLine } from '../../src/line/read-line.ts';
 import type { Outcome } from '../../src/outcome.ts';
@@ -63,9 +64,16 @@ function answerOf(analysis: Analysis, solveMs: number): Answer {
     lengthM: solution.lengthM,
     lengthSigmaM: solution.lengthSigmaM,
     end: solution.end,
+    loss: lossOf(analysis),
     solveMs,
     failed: notFinite(analysis),
   };
+}
+
+/** What the loss check says; apart from the solve's time. */
+function lossOf(analysis: Analysis): Answer['loss'] {
+  const { lossDb, sigmaDb } = checkLoss(analysis);
+  return lossDb && { lossDb, sigmaDb };
 }
 
 /** Names the first number of the results that is not finite: it would make nonsense of the JSON. */

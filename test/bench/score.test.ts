@@ -22,6 +22,7 @@ const TRUTH: SceneTruth = {
   noiseDb: -70,
   structuralReturnLossDb: 40,
   temperatureC: 20,
+  cableLossDb: Float64Array.of(1, 2, 3),
   interfered: [],
 };
 
@@ -168,5 +169,13 @@ describe('plainRecipe', () => {
     );
     expect(strong.length).toBeGreaterThan(4);
     expect(found.length / strong.length).toBeGreaterThan(0.6);
+  });
+
+  it('takes the error of the loss at the middle of the sweep', () => {
+    const loss = { lossDb: Float64Array.of(0, 2.03, 0), sigmaDb: Float64Array.of(9, 0.02, 9) };
+    const { lossErrorDb, lossSigmaDb } = score({}, { loss });
+    expect(lossErrorDb).toBeCloseTo(0.03, 12);
+    expect(lossSigmaDb).toBe(0.02);
+    expect(score({}, {}).lossErrorDb).toBeNull();
   });
 });

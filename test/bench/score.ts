@@ -52,6 +52,9 @@ export type SceneScore = {
   readonly answeredStretch: string | null;
   /** Distance error over the Cramér–Rao bound for free amplitude and phase; null where the bound doesn't apply. */
   readonly errorOverBound: number | null;
+  /** Error of the cable's one-way loss at the middle of the sweep, and its σ; null where there is none, or it was cut. */
+  readonly lossErrorDb: number | null;
+  readonly lossSigmaDb: number | null;
 };
 
 /** Scores one answer. */
@@ -82,6 +85,7 @@ export function scoreScene(scene: Scene, answer: Answer): SceneScore {
     trueStretch: truth.stretches[0]?.kind ?? null,
     answeredStretch: answeredStretch(truth, answer),
     errorOverBound: errorOverBound(scene, variants['fault-or-watch']),
+    ...scoreLoss(truth, answer),
   };
 }
 
@@ -188,6 +192,18 @@ function scoreEnd(truth: SceneTruth, answer: Answer): EndScore {
     lengthRight: errorM !== null && errorM <= Math.max(toleranceM(truth, answer.lengthSigmaM), 0.005 * trueM),
     lengthErrorM: errorM,
     lengthSigmaM: answer.lengthSigmaM,
+  };
+}
+
+function scoreLoss(
+  { cableLossDb }: SceneTruth,
+  { loss }: Answer,
+): Pick<SceneScore, 'lossErrorDb' | 'lossSigmaDb'> {
+  const middle = cableLossDb.length >> 1;
+  if (loss === null || cableLossDb.length === 0) return { lossErrorDb: null, lossSigmaDb: null };
+  return {
+    lossErrorDb: Math.abs(loss.lossDb[middle]! - cableLossDb[middle]!),
+    lossSigmaDb: loss.sigmaDb?.[middle] ?? null,
   };
 }
 
