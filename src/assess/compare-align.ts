@@ -9,7 +9,7 @@ import { type ComplexArray, complexZeros } from '../numerics/complex.ts';
 import { solveSymmetric } from '../numerics/linear-solve.ts';
 import { median } from '../numerics/statistics.ts';
 import { type SeenTracer, sizesOf } from './compare-trace.ts';
-import { type LineChange, planWarp, type Warp, type WarpPlan } from './compare-warp.ts';
+import { type LineChange, NO_LINE_CHANGE, planWarp, type Warp, type WarpPlan } from './compare-warp.ts';
 
 export type AlignRequest = {
   /** The later sweep, at the plan's target frequencies. */
@@ -44,6 +44,12 @@ const SETTLED = 0.02;
 /** Sizes below this share of the middle one are all alike: a sum of sizes has no curvature at 0. */
 const LEAST_SHARE = 0.5;
 
+/** What no alignment takes out of an echo, as a share of it: an end would else outweigh all the rest of the line. */
+const LEFT_SHARE = 0.01;
+
+/** Neighbouring points of the trace that say the same thing. */
+const ALIKE_POINTS = 4;
+
 /** Aligns the earlier sweep to the later one. */
 export function alignSweeps(request: AlignRequest): Alignment {
   const { tracer, weight, plan, after } = request;
@@ -52,13 +58,21 @@ export function alignSweeps(request: AlignRequest): Alignment {
   let change: LineChange = { stretch: request.stretch, loss: 0, offsetS: 0 };
   const columns = residueColumns(request, prepare, change);
   const traces = columns.map((column) => tracer.trace(masked(column, weight)));
+  const own = sizesOf(tracer.trace(masked(after, weight)));
   const amounts = new Float64Array(2 * columns.length);
   let sigmas = { stretch: STRETCH_SIGMA, loss: LOSS_SIGMA };
+  // Noise in the earlier sweep alone would make it seem too large, so slopes come from both.
+  const later = slopesOf(
+    planWarp({ ...plan, sourceHz: plan.targetHz })(withoutGaps(after, warp(change), weight)),
+    NO_LINE_CHANGE,
+    weight,
+    tracer,
+  );
   let plain = differenceOf(after, warp(change), weight);
   for (let round = 0; round < ROUNDS; round++) {
     const now = tracer.trace(plain);
-    const slopes = slopesOf(warp, change, weight, tracer);
-    const solved = solveRound(now, slopes, traces, amounts, change);
+    const slopes = slopesOf(warp, change, weight, tracer).map((slope, k) => meanOf(slope, later[k]!));
+    const solved = solveRound(now, slopes, traces, amounts, change, own);
     amounts.set(solved.amounts);
     const moved = solved.step;
     change = {
@@ -110,7 +124,7 @@ function residueColumns(
   ];
 }
 
-/** Derivatives of the seen difference by offset, stretch and loss, negative: what a growth takes off. */
+/** Derivatives of the seen trace by offset, stretch and loss. */
 function slopesOf(
   warp: Warp,
   change: LineChange,
@@ -142,10 +156,11 @@ type Round = {
 /** One step of weighted least squares whose weights are the inverse sizes that the last one left. */
 function solveRound(
   now: ComplexArray,
-  slopes: readonly [ComplexArray, ComplexArray, ComplexArray],
+  slopes: readonly ComplexArray[],
   residue: readonly ComplexArray[],
   amounts: Float64Array,
   change: LineChange,
+  own: Float64Array,
 ): Round {
   const points = now.re.length;
   const left = complexZeros(points);
@@ -161,7 +176,10 @@ function solveRound(
   });
   const sizes = sizesOf(left);
   const middle = Math.max(median(sizes), 1e-9);
-  const weights = sizes.map((size) => Math.sqrt(1 / Math.max(size, LEAST_SHARE * middle)));
+  const weights = sizes.map((size, k) => {
+    const expected = middle + LEFT_SHARE * own[k]!;
+    return Math.sqrt(1 / (expected * Math.max(size, LEAST_SHARE * expected)));
+  });
   const real = [
     ...slopes.map((slope) => interleave(slope, weights, 1)),
     ...residue.flatMap((column) => [interleave(column, weights, 1), interleave(column, weights, 1, true)]),
@@ -179,9 +197,8 @@ function solveRound(
       normal[a * p + b] = value;
       normal[b * p + a] = value;
     }
-    // A Gaussian prior beside a Laplace likelihood of scale `middle`.
-    normal[a * p + a] = normal[a * p + a]! + middle;
-    gradient[a] = dot(real[a]!, right) * scale[a]! - (a < 3 ? (middle * was[a]!) / scale[a]! : 0);
+    normal[a * p + a] = normal[a * p + a]! + ALIKE_POINTS;
+    gradient[a] = dot(real[a]!, right) * scale[a]! - (a < 3 ? (ALIKE_POINTS * was[a]!) / scale[a]! : 0);
   }
   const solved = solveSymmetric(normal.slice(), gradient.slice());
   if (solved === null)
@@ -228,6 +245,18 @@ function differenceOf(a: ComplexArray, b: ComplexArray, weight: Float64Array): C
     out.im[i] = weight[i]! * (a.im[i]! - b.im[i]!);
   }
   return out;
+}
+
+function meanOf(a: ComplexArray, b: ComplexArray): ComplexArray {
+  return { re: a.re.map((v, i) => (v + b.re[i]!) / 2), im: a.im.map((v, i) => (v + b.im[i]!) / 2) };
+}
+
+/** The sweep with another in place of the points that don't count. */
+function withoutGaps(values: ComplexArray, stand: ComplexArray, weight: Float64Array): ComplexArray {
+  return {
+    re: values.re.map((v, i) => (weight[i] === 0 ? stand.re[i]! : v)),
+    im: values.im.map((v, i) => (weight[i] === 0 ? stand.im[i]! : v)),
+  };
 }
 
 function masked(column: ComplexArray, weight: Float64Array): ComplexArray {
