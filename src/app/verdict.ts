@@ -7,7 +7,7 @@ import type { Analysis } from './analysis.ts';
 export type Verdict = {
   readonly faults: number;
   readonly watches: number;
-  /** True when the described line does not explain the sweep, so that all the rest means little. */
+  /** True when the described line explains the sweep badly, so that all the rest means little. */
   readonly doubtful?: boolean;
 };
 
@@ -27,7 +27,7 @@ export function verdictWords({ faults, watches, doubtful = false }: Verdict): st
   const words = [
     ...(faults > 0 ? [`${faults} fault${faults === 1 ? '' : 's'}`] : []),
     ...(watches > 0 ? [`${watches} to watch`] : []),
-    ...(doubtful ? ['this line does not explain the sweep'] : []),
+    ...(doubtful ? ['this line explains the sweep badly'] : []),
   ];
   return words.length > 0 ? words.join(', ') : 'no fault found';
 }

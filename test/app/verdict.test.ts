@@ -17,8 +17,8 @@ describe('verdictWords and worstOf', () => {
     [{ faults: 1, watches: 0 }, 'fault', '1 fault'],
     [{ faults: 2, watches: 3, doubtful: false }, 'fault', '2 faults, 3 to watch'],
     [{ faults: 0, watches: 1 }, 'watch', '1 to watch'],
-    [{ faults: 0, watches: 0, doubtful: true }, 'watch', 'this line does not explain the sweep'],
-    [{ faults: 1, watches: 0, doubtful: true }, 'fault', '1 fault, this line does not explain the sweep'],
+    [{ faults: 0, watches: 0, doubtful: true }, 'watch', 'this line explains the sweep badly'],
+    [{ faults: 1, watches: 0, doubtful: true }, 'fault', '1 fault, this line explains the sweep badly'],
   ] as const)('say of %j that it is a %s: %s', (verdict, severity, words) => {
     expect(worstOf(verdict)).toBe(severity);
     expect(verdictWords(verdict)).toBe(words);

@@ -23,7 +23,7 @@ describe('locateText', () => {
     expect(locateText(sound, options).split('\n')[0]).toBe('● Made line: no fault found');
     const other = { ...sound, solution: { ...sound.solution, explained: 0.04, residualDb: -9 } };
     const doubted = locateText(other, options);
-    expect(doubted.split('\n')[0]).toBe('▲ Made line: this line does not explain the sweep');
+    expect(doubted.split('\n')[0]).toBe('▲ Made line: this line explains the sweep badly');
     expect(doubted).toMatch(/\nnote {2}the line as described explains only 4 %/u);
   });
 

@@ -170,7 +170,7 @@ describe('views', () => {
     const sound: Analysis = makeAnalysis({ findings: [], severities: ['sound', 'sound'] });
     expect(words(readyState(SIZE, sound))).toMatch(/● no fault found.*as it should be/);
     const other = { ...sound, solution: { ...solution, explained: 0.04, residualDb: -9 } };
-    expect(words(readyState(SIZE, other))).toMatch(/▲ not this line .*n 2 notices/);
+    expect(words(readyState(SIZE, other))).toMatch(/▲ fits badly .*n 2 notices/);
     const nothing = makeAnalysis({
       findings: [],
       severities: [],
@@ -195,6 +195,17 @@ describe('views', () => {
     const tube = { type: 'guide' as const, guide, lengthM: 20, label: 'tube', jointAfter: PLAIN_JOINT };
     const guided = makeAnalysis({ ...none, line: { ...none.line, sections: [tube] } });
     expect(words(press(readyState(SIZE, guided), '2').state)).toContain('A waveguide has no ohms of its own');
+  });
+
+  it('keeps the axis of ohms to what lies before the end, whatever the end reads', () => {
+    const profile = {
+      distanceM: Float64Array.of(0, 10, 19, 20, 21),
+      impedanceOhm: Float64Array.of(50, 59, 51, 0.2, 0.1),
+      origin: 'measured' as const,
+    };
+    const ohms = words(press(readyState(SIZE, makeAnalysis({ impedance: profile })), '2').state);
+    expect(ohms).toMatch(/ 60 ┤/);
+    expect(ohms).not.toMatch(/ (?:[0-3]?\d) ┤/);
   });
 
   it('marks a ghost by a letter and explains it under the cursor', () => {

@@ -9,7 +9,7 @@ import type { State } from '../state.ts';
 
 /** Widths of the columns; the place takes what is left. */
 const POINTER = 3;
-const DISTANCE = 16;
+const DISTANCE = 17;
 const LEVEL = 8;
 const WORDS = 26;
 const SURE = 6;

@@ -74,7 +74,7 @@ function verdictRuns(analysis: Analysis): readonly Run[] {
     ...(faults > 0 && watches > 0 ? [run(' · ')] : []),
     ...(watches > 0 ? [run(`${SEVERITY_GLYPHS.watch} ${watches} to watch`, 'watch')] : []),
     ...(doubtful && faults + watches > 0 ? [run(' · ')] : []),
-    ...(doubtful ? [run(`${SEVERITY_GLYPHS.watch} not this line`, 'watch')] : []),
+    ...(doubtful ? [run(`${SEVERITY_GLYPHS.watch} fits badly`, 'watch')] : []),
   ];
 }
 

@@ -17,6 +17,8 @@ import type { Picture } from './picture.ts';
 const SMALLEST_SPAN_OHM = 8;
 /** An open reads as thousands of ohms; the axis ends here, at multiples of the port's. */
 const MOST_TIMES_PORT = 3;
+/** The end's own step begins so many resolutions before it. */
+const BEFORE_END_RESOLUTIONS = 2;
 
 /** The impedance profile with what was found on it. */
 export function ohmsPicture(state: State, analysis: Analysis): Picture {
@@ -27,7 +29,7 @@ export function ohmsPicture(state: State, analysis: Analysis): Picture {
   return {
     chart: {
       x: { domain: span, unit: state.units, perUnit: lengthPerMetre(state.units) },
-      y: { domain: ohmsInView(profile, span, sweep.portOhm), unit: 'Ω' },
+      y: { domain: ohmsInView(analysis, profile, span), unit: 'Ω' },
       series: [{ x: profile.distanceM, y: profile.impedanceOhm, role: 'ohms' }],
       levels: [{ y: sweep.portOhm, role: 'guide' }],
       marks: [
@@ -48,10 +50,13 @@ export function ohmsPicture(state: State, analysis: Analysis): Picture {
   };
 }
 
-function ohmsInView(profile: ImpedanceProfile, [from, to]: Domain, portOhm: number): Domain {
+/** The end may read as nothing or as thousands of ohms: the axis is for what lies before it. */
+function ohmsInView(analysis: Analysis, profile: ImpedanceProfile, [from, to]: Domain): Domain {
+  const { portOhm } = analysis.sweep;
+  const lastM = Math.min(to, analysis.solution.lengthM - BEFORE_END_RESOLUTIONS * analysis.reach.resolutionM);
   const inView = profile.impedanceOhm.filter(
     (ohm, i) =>
-      profile.distanceM[i]! >= from && profile.distanceM[i]! <= to && ohm < MOST_TIMES_PORT * portOhm,
+      profile.distanceM[i]! >= from && profile.distanceM[i]! <= lastM && ohm < MOST_TIMES_PORT * portOhm,
   );
   const [low, high] = paddedDomain([portOhm, ...inView], {
     fallback: [0, 2 * portOhm],
