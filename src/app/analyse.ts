@@ -9,7 +9,7 @@ import { sweepNotices } from '../assess/sweep-notices.ts';
 import { SPEED_OF_LIGHT } from '../line/constants.ts';
 import { hasGuide, type Line } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
-import { type MediumRun, runLengthM, runOfMedia } from '../line/medium-run.ts';
+import { type MediumRun, runLengthM, runOfMedia, slowestGroupDelaySPerM } from '../line/medium-run.ts';
 import { usableBand } from '../line/usable-band.ts';
 import { planCorrectedTrace } from '../locate/distance-trace.ts';
 import { type ImpedanceProfile, measuredProfile } from '../locate/impedance-profile.ts';
@@ -54,6 +54,7 @@ export function analyse(
       lineDescribed: request.lineDescribed,
       resolutionM: resolution.resolutionM,
       unambiguousM: resolution.unambiguousM,
+      delaySPerM: resolution.delaySPerM,
     },
     (stage, fraction) => onProgress({ stage, fraction: 0.1 + 0.8 * fraction }),
   );
@@ -218,11 +219,16 @@ function runOf(line: Line, sweep: Sweep, toM: number, scale = 1): MediumRun {
 const SHORTEST_UNKNOWN_M = 0.1;
 
 /** What the solver's own taper resolves, and where distances fold, on the line as described. */
-function firstResolutionM(line: Line, sweep: Sweep): { resolutionM: number; unambiguousM: number } {
+function firstResolutionM(
+  line: Line,
+  sweep: Sweep,
+): { resolutionM: number; unambiguousM: number; delaySPerM: number } {
+  const run = runOf(line, sweep, SHORTEST_UNKNOWN_M);
   const reach = reachOf({
     sweep,
-    run: runOf(line, sweep, SHORTEST_UNKNOWN_M),
+    run,
     window: { kind: 'kaiser', beta: 5 },
   });
-  return { resolutionM: reach.resolutionM, unambiguousM: reach.unambiguousM };
+  const delaySPerM = Math.max(...slowestGroupDelaySPerM(run, sweep.frequencyHz));
+  return { resolutionM: reach.resolutionM, unambiguousM: reach.unambiguousM, delaySPerM };
 }

@@ -3,12 +3,13 @@
  * sweep. In reading order: find the end, let the joints be ordinary, search what is left over, name every echo, decide
  * what the distances are scaled to, and say how sure all of it is.
  */
-import type { Line } from '../line/line.ts';
-import { complexCopy, complexEnergy } from '../numerics/complex.ts';
+import { describedLengthM, type Line } from '../line/line.ts';
+import { type ComplexArray, complexCopy, complexEnergy } from '../numerics/complex.ts';
 import { createWindow, parseWindow } from '../numerics/window.ts';
 import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
+import { decimateSweep } from './decimate-sweep.ts';
 import { createDistanceScale } from './distance-scale.ts';
 import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
@@ -26,7 +27,15 @@ import {
 import { leaveOutInterference } from './interference.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
 import { addSoundJoints, type JointVerdict, judgeJoints, residualDb } from './judge-joints.ts';
-import { ALL_FREE, boundaryAt, type LineModel, LOSS_PARAMETERS, lumpDistanceM } from './line-model.ts';
+import {
+  ALL_FREE,
+  boundaryAt,
+  createLineModel,
+  type LineModel,
+  LOSS_PARAMETERS,
+  lumpDistanceM,
+  restoreModel,
+} from './line-model.ts';
 import { placeJoints } from './place-joints.ts';
 import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
@@ -41,6 +50,8 @@ export type SolveRequest = {
   /** 6 dB width of an echo with the search taper, m. */
   readonly resolutionM: number;
   readonly unambiguousM: number;
+  /** Group delay of the slowest section, one way, s/m; without it no sweep is thinned. */
+  readonly delaySPerM?: number;
 };
 
 /** Taper of the search: side lobes under those of the weakest echoes looked for. */
@@ -53,11 +64,37 @@ const TYPE_ONLY_LOSS_SIGMA = 0.5;
 /** Lead in nats that counts as certain. */
 const KIND_LEAD = 2;
 
-/** Solves for the line. */
+/** Solves for the line; a sweep of far more points than it needs is thinned first. */
 export function solveLine(
   request: SolveRequest,
   onProgress: (stage: string, fraction: number) => void = () => {},
 ): Solution {
+  const { sweep, line } = request;
+  const describedM = describedLengthM(line);
+  // Light there and back in the slowest cable.
+  const { delaySPerM } = request;
+  const roundTripS = describedM === null || delaySPerM === undefined ? null : 2 * describedM * delaySPerM;
+  const thinned = roundTripS === null ? sweep : decimateSweep(sweep, roundTripS);
+  const { solution, model, foundLine } = solveThinned({ ...request, sweep: thinned }, onProgress);
+  if (thinned === sweep) return solution;
+  return { ...solution, modelGamma: modelOn(sweep, foundLine, model) };
+}
+
+/** The reading of a solved model at the frequencies of a sweep. */
+function modelOn(sweep: Sweep, line: Line, solved: LineModel): ComplexArray {
+  const lengths = solved.boundaryM.map((m, i) => m - (solved.boundaryM[i - 1] ?? 0));
+  const trust = { lossSigma: solved.priors.lossSigma };
+  const model = createLineModel(line, sweep.frequencyHz, sweep.portOhm, lengths, trust);
+  restoreModel(model, solved);
+  const weight = new Float64Array(sweep.frequencyHz.length).fill(1);
+  const context = createFitContext(sweep.frequencyHz, sweep.gamma, weight);
+  evaluateCost(context, model, ALL_FREE, 1);
+  return context.modelled;
+}
+
+type Solved = { readonly solution: Solution; readonly model: LineModel; readonly foundLine: Line };
+
+function solveThinned(request: SolveRequest, onProgress: (stage: string, fraction: number) => void): Solved {
   const { sweep, line } = request;
   const n = sweep.frequencyHz.length;
   const spec = parseWindow(SEARCH_WINDOW);
@@ -121,7 +158,7 @@ export function solveLine(
   const explained = 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
   const leftDb = residualDb(context);
   const loss = fittedLoss(context, model, variance);
-  return {
+  const solution: Solution = {
     echoes,
     ghosts: findGhosts(context, model, settings, echoes, scale.factor),
     stretches:
@@ -140,8 +177,9 @@ export function solveLine(
     residualDb: leftDb,
     explained,
     elements: modelSize(model).elements,
-    notices: [...scale.notices, ...interferenceNotices(sweep.frequencyHz, interfered)],
+    notices: [...scale.notices, ...interferenceNotices(model.frequencyHz, interfered)],
   };
+  return { solution, model, foundLine: end.line };
 }
 
 function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]): Notice[] {
