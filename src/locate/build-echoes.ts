@@ -54,7 +54,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
   const inflationAt = (distanceM: number): number => Math.max(1, parts.varianceAt(distanceM) / meanVariance);
   /** Standard deviation of a sum of parameters, given as factors by column. */
   const sigmaOf = (factors: ReadonlyMap<number, number>, distanceM: number): number => {
-    if (!covariance) return 0;
+    if (!covariance) return Number.POSITIVE_INFINITY;
     const p = parameters.length;
     let variance = 0;
     for (const [k, a] of factors) for (const [j, b] of factors) variance += a * b * covariance[k * p + j]!;

@@ -329,6 +329,22 @@ function dropCompanions(context: FitContext, model: LineModel, settings: SearchS
   }
 }
 
+/**
+ * Drops what the last fit has shown to be nothing: companions of stronger lumps, lumps without evidence, and lumps that
+ * have shrunk to what cable as sold may show.
+ *
+ * @returns True when something was dropped.
+ */
+export function dropNothings(context: FitContext, model: LineModel, settings: SearchSettings): boolean {
+  const before = model.lumps.length;
+  for (const lump of model.lumps.filter((l) => l.boundary === null))
+    if (lumpReturnLossDb(context.frequencyHz, lump) > WEAKEST_FLAW_DB + 1) removeLump(model, lump.id);
+  dropCompanions(context, model, settings);
+  if (model.lumps.length < before) evaluateCost(context, model, ALL_FREE, 1);
+  pruneLumps(context, model, settings);
+  return model.lumps.length < before;
+}
+
 /** Number of stages and parameters, for reports. */
 export function modelSize(model: LineModel): { readonly elements: number; readonly parameters: number } {
   const translation = translate(model, ALL_FREE);

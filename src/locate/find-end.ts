@@ -28,6 +28,7 @@ import {
   NOTHING_FREE,
   restoreModel,
 } from './line-model.ts';
+import { expectBoundary } from './place-joints.ts';
 import { type ResidualTrace, residualTrace } from './residual-trace.ts';
 
 export type EndFound = {
@@ -142,6 +143,35 @@ export function reviseEnd(
   const best = bestEnd(context, model, { ...search, jointsKnown: true }, [...kinds], [atM]);
   if (best.kind === found.kind && found.kind !== 'antenna') restoreModel(model, before);
   return { kind: best.kind, lead: best.lead };
+}
+
+/** Evidence for the end's own echo, in −2 ln likelihood, under which it is noise. */
+const UNSEEN = 40;
+
+/**
+ * A load that reflects too little to be seen is taken as matched and left where the description puts it, instead of
+ * drawing every distance to where noise would have it.
+ *
+ * @param variance Of the residual per real component. @returns True when the end is not seen.
+ */
+export function leaveUnseenEnd(context: FitContext, model: LineModel, variance: number): boolean {
+  if (model.end.type !== 'load') return false;
+  const { stages } = linearise(context, model, NOTHING_FREE, 1).translation;
+  const through = context.cascade.sensitivity(stages.length);
+  const own = context.cascade.behind(stages.length);
+  let energy = 0;
+  for (let i = 0; i < context.weight.length; i++)
+    energy +=
+      context.weight[i]! * (through.re[i]! ** 2 + through.im[i]! ** 2) * (own.re[i]! ** 2 + own.im[i]! ** 2);
+  if (energy > UNSEEN * variance) return false;
+  model.end = { type: 'load', parameters: [1, 0] };
+  const last = model.boundaryM.length - 1;
+  const others = new Set([...model.boundaryM.keys()].filter((i) => i !== last));
+  model.boundaryM[last] = Math.max(
+    expectBoundary(model, others, last).meanM,
+    (model.boundaryM[last - 1] ?? 0) + 0.01,
+  );
+  return true;
 }
 
 /** RMS size of the end's own reflection as modelled, weighed by what comes back from it. */
@@ -299,15 +329,20 @@ function bestEnd(
   };
 }
 
-/** An antenna that nowhere in the band takes power is an open or a short. */
+/** An antenna that nowhere in the band takes power is an open or a short; one that is alike all over it is a load. */
 function takesPower(model: LineModel): boolean {
   const gamma = complexZeros(model.frequencyHz.length);
   writeEnd(model.end, model.frequencyHz, gamma, null);
-  return gamma.re.some((re, i) => Math.hypot(re, gamma.im[i]!) < LEAST_ANTENNA_DIP);
+  const sizes = gamma.re.map((re, i) => Math.hypot(re, gamma.im[i]!));
+  const least = Math.min(...sizes);
+  return least < LEAST_ANTENNA_DIP && Math.max(...sizes) - least > LEAST_ANTENNA_SWING;
 }
 
 /** Common practice: an antenna in its band returns a fifth or less; one that is off frequency still dips below this. */
 const LEAST_ANTENNA_DIP = 0.6;
+
+/** Change of |Γ| over the band that an antenna shows at least. Choice of this program. */
+const LEAST_ANTENNA_SWING = 0.12;
 
 type FoundEnd = Exclude<EndKind, 'unknown'>;
 type Trial = { readonly model: LineModel; readonly kind: FoundEnd; readonly energy: number };

@@ -148,7 +148,8 @@ export function judgeJoint(
     .filter(keepsItsKind)
     .sort((a, b) => a.cost - b.cost);
   const sound = bestTrial(place, 'sound', variance, [BARE, ...faults.map(soundStart)])!;
-  const best = faults.find(isBeyondSound);
+  const likeliest = faults[0]?.cost ?? 0;
+  const best = faults.find((trial) => isBeyondSound(trial) && trial.cost < likeliest + 2 * KIND_ODDS);
   const advantage = best ? (sound.cost - best.cost) / 2 : 0;
   // A fit by the name of sound that needs more reactance than a sound joint has is none.
   const odds = sound.ownDb < REACTIVE_FAULT_RETURN_LOSS_DB ? Math.max(advantage, FAULT_ODDS) : advantage;
@@ -163,6 +164,27 @@ export function judgeJoint(
   const lead = rival ? Math.abs(rival.cost - best.cost) / 2 : Number.POSITIVE_INFINITY;
   return { boundary, state: best.state, clear: lead >= KIND_ODDS, odds, lead };
 }
+
+/**
+ * Takes back the verdicts that the last fit has not borne out: a resistance that has shrunk to what sound joints show.
+ *
+ * @param model Its lumps at those joints are removed.
+ */
+export function confirmJoints(model: LineModel, verdicts: readonly JointVerdict[]): JointVerdict[] {
+  return verdicts.map((verdict) => {
+    const { boundary, state } = verdict;
+    if (state === 'sound' || lumpedTypeOf(state) !== 'resistive') return verdict;
+    const strength = resistiveStrength(model, boundary);
+    if (Math.abs(strength) >= STILL_A_FAULT * MIMIC_STRENGTH && pureTypeOf('resistive', strength) === state)
+      return verdict;
+    for (const lump of model.lumps.filter((l) => l.boundary === boundary && l.strengthSigma === null))
+      removeLump(model, lump.id);
+    return quietJoint(boundary);
+  });
+}
+
+/** Share of what sound joints can mimic to which the last fit may shrink a fault. */
+const STILL_A_FAULT = 0.8;
 
 /** Lets the line behind a joint follow what was decided about it. */
 function settle(context: FitContext, model: LineModel, settings: SearchSettings, atM: number): void {
@@ -229,7 +251,7 @@ type Trial = {
   /** What samples add to the described step, ln. */
   readonly step: number;
   readonly fault: { readonly strength: number; readonly offsetM: number } | null;
-  /** Return loss over the band of everything at the joint, dB. */
+  /** Return loss over the band of the joint's reactance and of what samples add to its step, dB. */
   readonly ownDb: number;
 };
 
@@ -366,8 +388,15 @@ function fitState(place: JointPlace, state: JointState, start: Start, variance: 
     facesM: [facesM[0] - widerM, facesM[1] + widerM],
     step: samples,
     fault: faulty ? { strength, offsetM: faultOffsetM } : null,
-    ownDb: reflectionDb(echo, partsOf(fit.parameters)),
+    ownDb: reflectionDb(echo, reactivePartsOf(partsOf(fit.parameters), step)),
   };
+}
+
+/** What reflects at a joint beside its described step and its resistance: that is judged by itself. */
+function reactivePartsOf(parts: readonly LocalPart[], step: number): LocalPart[] {
+  return parts
+    .filter((part) => part.type !== 'resistive')
+    .map((part) => (part.type === 'step' ? { ...part, strength: part.strength - step } : part));
 }
 
 /** Row of a prior that stiffens beyond two standard deviations, as the cascade's own. */

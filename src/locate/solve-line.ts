@@ -11,8 +11,9 @@ import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { decimateSweep } from './decimate-sweep.ts';
 import { createDistanceScale } from './distance-scale.ts';
-import { extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
-import { type EndSearch, findEnd, reviseEnd } from './find-end.ts';
+import type { Echo } from './echo.ts';
+import { dropNothings, extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
+import { type EndSearch, findEnd, leaveUnseenEnd, reviseEnd } from './find-end.ts';
 import { findGhosts } from './find-ghosts.ts';
 import { findWater } from './find-water.ts';
 import {
@@ -26,7 +27,7 @@ import {
 } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
-import { addSoundJoints, type JointVerdict, judgeJoints, residualDb } from './judge-joints.ts';
+import { addSoundJoints, confirmJoints, type JointVerdict, judgeJoints, residualDb } from './judge-joints.ts';
 import {
   ALL_FREE,
   boundaryAt,
@@ -132,9 +133,17 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
   // Carriers that stronger things on the line had hidden.
   interfered.push(...leaveOutInterference(context));
   onProgress('judging joints', 0.8);
-  const joints = judgeJoints(context, model, settings, verdicts);
-  evaluateCost(context, model, ALL_FREE, 1);
-  refine(context, model, ALL_FREE, { variance: residualVariance(context), maxIterations: 10 });
+  const judged = judgeJoints(context, model, settings, verdicts);
+  const fitAll = (maxIterations: number): void => {
+    evaluateCost(context, model, ALL_FREE, 1);
+    const variance = residualVariance(context);
+    const freedom = leaveUnseenEnd(context, model, variance) ? { ...ALL_FREE, end: false } : ALL_FREE;
+    refine(context, model, freedom, { variance, maxIterations });
+  };
+  fitAll(10);
+  const joints = confirmJoints(model, judged);
+  const dropped = dropNothings(context, model, settings);
+  if (dropped || joints.some((joint, i) => joint !== judged[i])) fitAll(6);
   onProgress('weighing what is known', 0.95);
   const endJoint = judgeEndJoint(context, model, settings);
   const floor = traceResidual(context, settings);
@@ -156,10 +165,11 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
   const endEcho = echoes[echoes.length - 1]!;
   const modelGamma = complexCopy(context.modelled);
   const explained = 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
+  const poor = explained < WELL_EXPLAINED;
   const leftDb = residualDb(context);
   const loss = fittedLoss(context, model, variance);
   const solution: Solution = {
-    echoes,
+    echoes: poor ? echoes.map(doubted) : echoes,
     ghosts: findGhosts(context, model, settings, echoes, scale.factor),
     stretches:
       request.lineDescribed && !end.cut ? findWater(line, model, scale, isFaulty(joints, lumps)) : [],
@@ -177,9 +187,30 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
     residualDb: leftDb,
     explained,
     elements: modelSize(model).elements,
-    notices: [...scale.notices, ...interferenceNotices(model.frequencyHz, interfered)],
+    notices: [
+      ...scale.notices,
+      ...interferenceNotices(model.frequencyHz, interfered),
+      ...(poor ? [poorFit(explained)] : []),
+    ],
   };
   return { solution, model, foundLine: end.line };
+}
+
+/** Share of the sweep's energy that a line well understood leaves little over of. */
+const WELL_EXPLAINED = 0.97;
+
+/** An echo of a model that leaves much of the sweep unexplained. */
+function doubted(echo: Echo): Echo {
+  return { ...echo, confidence: echo.confidence / 2, distanceSigmaM: 2 * echo.distanceSigmaM };
+}
+
+function poorFit(explained: number): Notice {
+  return {
+    code: 'fit-poor',
+    what:
+      `the line as described explains only ${(100 * Math.max(0, explained)).toFixed(0)} % of the sweep: something on it ` +
+      'is not as described, or the sweep is of another line; every result is in doubt',
+  };
 }
 
 function interferenceNotices(frequencyHz: Float64Array, hit: readonly number[]): Notice[] {
