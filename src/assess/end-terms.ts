@@ -1,6 +1,7 @@
 /** What the reading of an open or shorted end depends on: the terms of its fit, with their derivatives. */
 import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
+import { delayedEcho, delayGrid, mirrored, quarterTurn } from './delay-grid.ts';
 
 /** The run to the end; arrays of length n over the sweep's frequencies, one way unless said. */
 export type EndPath = {
@@ -180,12 +181,6 @@ function phasor(frequencyHz: Float64Array, delayS: number): ComplexArray {
   return { re: angles.map(Math.cos), im: angles.map(Math.sin) };
 }
 
-/** Delays that stand for any between two, no farther apart than the band can tell. */
-function delayGrid(fromS: number, toS: number, bandHz: number): number[] {
-  const count = Math.max(2, 2 + Math.floor((toS - fromS) * bandHz));
-  return Array.from({ length: count }, (_, k) => fromS + ((toS - fromS) * k) / (count - 1));
-}
-
 /** Where the end stands, as a round-trip delay beyond its place: the strongest of a fine grid. */
 function startingDelayS({ frequencyHz: f, measured }: EndPath, echo: ComplexArray): number {
   const stepS = 1 / (16 * f[f.length - 1]!);
@@ -220,27 +215,12 @@ function neighbourTerms({ frequencyHz: f, path, neighbours }: EndPath, bandHz: n
     const precision = (2 * shifts.length) / gamma ** 2;
     return shifts.flatMap((shiftS) =>
       [own, mirrored(own, path)].flatMap((to) => {
-        const value = complexZeros(f.length);
-        const turned = complexZeros(f.length);
-        for (let i = 0; i < f.length; i++) {
-          const size = Math.exp(-2 * to.re[i]!);
-          const angle = -2 * to.im[i]! - 2 * Math.PI * f[i]! * shiftS;
-          put(value, i, size * Math.cos(angle), size * Math.sin(angle));
-          put(turned, i, -value.im[i]!, value.re[i]!);
-        }
+        const value = delayedEcho(f, to, shiftS);
         return [
           { value, precision },
-          { value: turned, precision },
+          { value: quarterTurn(value), precision },
         ];
       }),
     );
   });
-}
-
-/** The path of a bounce: as far behind the end as its place lies before it. */
-function mirrored(own: ComplexArray, path: ComplexArray): ComplexArray {
-  return {
-    re: own.re.map((np, i) => 2 * path.re[i]! - np),
-    im: own.im.map((rad, i) => 2 * path.im[i]! - rad),
-  };
 }

@@ -5,7 +5,7 @@
  * swallows what would tell, and an antenna shows no more than what the loss can be at most.
  */
 import { DB_PER_NEPER } from '../line/constants.ts';
-import type { Line } from '../line/line.ts';
+import { hasGuide, type Line } from '../line/line.ts';
 import type { Solution } from '../locate/solution.ts';
 import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
@@ -160,7 +160,8 @@ function readLoss(question: LossQuestion, run: RunPath): Reading {
   if (sweep.transmission) return readTransmission(sweep, run);
   if (solution.endsEarly) return NOTHING_READ;
   if (solution.end === 'open' || solution.end === 'short') return readEndEcho(question, run) ?? NOTHING_READ;
-  const atMostDb = lossAtMostDb(sweep, run.tableLossDb);
+  // The loss of a guide follows no such law.
+  const atMostDb = hasGuide(question.line) ? null : lossAtMostDb(sweep, run.tableLossDb);
   return atMostDb === null ? NOTHING_READ : { ...NOTHING_READ, method: 'bound', atMostDb };
 }
 

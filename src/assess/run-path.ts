@@ -20,6 +20,8 @@ export type RunPath = {
   readonly startsAt: readonly ComplexArray[];
   /** Length of the run, m. */
   readonly lengthM: number;
+  /** Where a section begins and ends, m. */
+  boundsM(section: number): readonly [number, number];
 };
 
 /**
@@ -38,6 +40,10 @@ export function runPath(
   const lengths = lengthsM(line, solution);
   const lengthM = lengths.reduce((sum, m) => sum + m, 0);
   const stretch = solution.lengthM / solution.distanceScale / lengthM;
+  const boundsM = (section: number): readonly [number, number] => {
+    const fromM = lengths.slice(0, section).reduce((sum, m) => sum + m, 0);
+    return [fromM, fromM + lengths[section]!];
+  };
   const path = complexZeros(n);
   const perConductor = complexZeros(n);
   const perDielectric = complexZeros(n);
@@ -58,7 +64,7 @@ export function runPath(
     }
     return start;
   });
-  return { path, perConductor, perDielectric, tableLossDb, startsAt, lengthM };
+  return { path, perConductor, perDielectric, tableLossDb, startsAt, lengthM, boundsM };
 }
 
 /** Lengths of the sections as laid, m: described where the description gives them, the rest up to the end. */
