@@ -161,10 +161,14 @@ const ZERO_FREQUENCY: Notice = {
 function pointsOf(sweep: Sweep, from: number, to: number): Sweep {
   if (from === 0 && to === sweep.frequencyHz.length) return sweep;
   const { re, im } = sweep.gamma;
+  const { transmission } = sweep;
   return {
     ...sweep,
     frequencyHz: sweep.frequencyHz.slice(from, to),
     gamma: { re: re.slice(from, to), im: im.slice(from, to) },
+    ...(transmission && {
+      transmission: { re: transmission.re.slice(from, to), im: transmission.im.slice(from, to) },
+    }),
   };
 }
 

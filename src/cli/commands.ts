@@ -131,6 +131,30 @@ export const VERBS = {
       },
     ],
   },
+  loss: {
+    arguments: 'SWEEP',
+    fewestArguments: 1,
+    mostArguments: 1,
+    summary: 'loss check',
+    description: [
+      'Says what the cable of a line loses, one way, against its table at the line’s temperature: from the echo of a far ' +
+        'end that is open or shorted, or from the transmission of a two-port file. The limit is the table, an allowance ' +
+        'for the joints and the lossMarginDb of the line file (0.5 dB where it gives none), at the line’s bands, or in the ' +
+        'middle of the sweep where it names none. Loss beyond it is placed where the sweep tells where it sits.',
+      'A load or an antenna at the far end hides the loss: what the sweep can tell is said, and how to get the rest.',
+      'Exit status 0: it passes, or cannot be judged by this end; 1: it fails, or the line is wet, faulty or cut; 2: ' +
+        'nothing could be told.',
+    ],
+    flags: [...ANALYSIS_FLAGS, 'json'],
+    examples: [
+      { command: 'feedsonde loss samples/south-1.s1p', shows: 'shorted at the top: passes' },
+      { command: 'feedsonde loss samples/south-2.s1p', shows: 'a wet jumper: fails, and says where' },
+      {
+        command: 'feedsonde loss samples/north-1.s1p',
+        shows: 'an antenna on: what can be told all the same',
+      },
+    ],
+  },
   cables: {
     arguments: '[ID]',
     fewestArguments: 0,

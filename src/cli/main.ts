@@ -53,6 +53,8 @@ async function runVerb(invocation: Invocation, argv: readonly string[]): Promise
       return (await import('./workspace.ts')).runWorkspace(invocation, io, loadWorkspace);
     case 'locate':
       return (await import('./locate.ts')).runLocate(invocation, io);
+    case 'loss':
+      return (await import('./loss.ts')).runLoss(invocation, io);
     case 'cables':
       return (await import('./cables.ts')).runCables(invocation, io);
     case 'simulate':
