@@ -3,9 +3,7 @@ import { medianStepHz } from '../locate/grid-weights.ts';
 import type { Reach } from '../locate/reach.ts';
 import type { Notice } from '../outcome.ts';
 import { formatFrequency, formatSweepRange } from '../sweep/quantity-format.ts';
-
-/** Unambiguous distance that a sweep should have over the length of its line. @source Common practice: 1.2 to 1.5. */
-const ROOM = 1.3;
+import { harmonicRange, roundStepHz, UNAMBIGUOUS_ROOM } from './sweep-steps.ts';
 
 /** Resolutions on a line below which a sweep is called narrow for it. Choice of this program. */
 const FEW_RESOLUTIONS = 10;
@@ -63,8 +61,7 @@ function ohmsNotice(given: SweepOnLine): Notice | null {
   const { frequencyHz, reach } = given;
   if (reach.impedanceProfile !== 'modelled') return null;
   const stepHz = wantedStepHz(given);
-  const points = Math.floor(frequencyHz[frequencyHz.length - 1]! / stepHz);
-  const range = formatSweepRange({ startHz: stepHz, stopHz: points * stepHz, points });
+  const range = formatSweepRange(harmonicRange(0, frequencyHz[frequencyHz.length - 1]!, stepHz));
   return {
     code: 'ohms-not-measured',
     what:
@@ -75,10 +72,8 @@ function ohmsNotice(given: SweepOnLine): Notice | null {
 
 /** A step of 1, 2 or 5 times a power of ten with which the whole line is told apart, and some room beyond, Hz. */
 function wantedStepHz({ frequencyHz, reach, lengthM }: SweepOnLine): number {
-  const largestHz = (medianStepHz(frequencyHz) * reach.unambiguousM) / (ROOM * lengthM);
-  const decade = 10 ** Math.floor(Math.log10(largestHz));
-  const factor = [5, 2, 1].find((one) => one * decade <= largestHz * (1 + 1e-9)) ?? 1;
-  return Math.min(frequencyHz[frequencyHz.length - 1]! / 2, factor * decade);
+  const largestHz = (medianStepHz(frequencyHz) * reach.unambiguousM) / (UNAMBIGUOUS_ROOM * lengthM);
+  return Math.min(frequencyHz[frequencyHz.length - 1]! / 2, roundStepHz(largestHz));
 }
 
 function bandOf(frequencyHz: Float64Array): number {

@@ -4,6 +4,7 @@ import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { analysisNotices } from '../app/analysis-notices.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
+import { limitsVerdictOf } from '../app/limits-entry.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import { verdictOf, verdictWords, worstOf } from '../app/verdict.ts';
 import type { Finding } from '../assess/finding.ts';
@@ -24,6 +25,7 @@ import {
   temperatureText,
   type Units,
 } from '../plot/quantity-text.ts';
+import { limitsLines } from './limits-text.ts';
 import type { Paint } from './paint.ts';
 
 export type TextOptions = {
@@ -48,12 +50,14 @@ export function locateText(inMetres: Analysis, options: TextOptions): string {
   const notices = [...options.notices, ...analysisNotices(analysis)].flatMap(({ what }) =>
     hanging('note  ', what, columns),
   );
+  const limits = limitsLines(limitsVerdictOf(analysis), columns, paint);
   return [
     ...verdictLines(analysis, options),
     ...summaryLines(analysis, options),
     '',
     ...echoTable(analysis, options),
     ...findings,
+    ...(limits.length > 0 ? ['', ...limits] : []),
     ...(ghosts.length > 0 ? ['', ...ghosts] : []),
     ...(notices.length > 0 ? ['', ...notices] : []),
     '',
