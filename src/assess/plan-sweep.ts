@@ -57,7 +57,7 @@ export type PlanQuestion = {
 /** Resolution that a plan aims at where nothing limits the band, m: two connectors a hand apart. Common practice. */
 const WANTED_RESOLUTION_M = 0.1;
 /** Loss, one way, that a plan stays below at its stop: beyond, the end hardly shows. Common practice. */
-const MOST_LOSS_DB = 15;
+const MOST_LOSS_DB = 20;
 /** Noise of one point that the weakest echo is given for, dB. Common practice for a field instrument. */
 const USUAL_NOISE_DB = -70;
 /** An echo counts as visible this far above the noise of the trace, dB; as in the reach of a sweep. */
@@ -66,6 +66,8 @@ const VISIBLE_DB = 12;
 const GUIDE_BAND = [1.25, 1.9] as const;
 /** Highest frequency of a line of which nothing says one, Hz. */
 const USUAL_TOP_HZ = 6e9;
+/** Points at which a run is looked at before a sweep is chosen. */
+const PROBE_POINTS = 65;
 /** More points than this take an instrument long, or are not offered. Common practice. */
 const MANY_POINTS = 4001;
 
@@ -85,7 +87,12 @@ export function planSweep(question: PlanQuestion): Outcome<SweepPlan> {
       what: `the line carries nothing of this band: it allows ${formatFrequency(lowHz)} to ${formatFrequency(highHz)}`,
       mend: 'give a band within what its cables, guides and devices carry',
     });
-  const probe = Float64Array.of(Math.max(lowHz, highHz * 1e-3), highHz);
+  // Fine enough for a guide's slowest wave.
+  const probeFromHz = Math.max(lowHz, highHz * 1e-3);
+  const probe = Float64Array.from(
+    { length: PROBE_POINTS },
+    (_, i) => probeFromHz + ((highHz - probeFromHz) * i) / (PROBE_POINTS - 1),
+  );
   const probeRun = runAt(line, probe);
   const lengthM = runLengthM(probeRun);
   const turnsPerM = slowestGroupDelaySPerM(probeRun, probe);
@@ -137,7 +144,8 @@ function bandLimits({ line, bandHz }: PlanQuestion): readonly [number, number] {
     } else if (bandHz === null)
       highHz = Math.min(highHz, (section.cable.highestFrequencyMHz ?? Infinity) * 1e6);
   }
-  return [lowHz, Math.min(highHz, bandHz === null ? USUAL_TOP_HZ : Number.POSITIVE_INFINITY)];
+  const isOpenEnded = bandHz === null && !hasGuide(line);
+  return [lowHz, Math.min(highHz, isOpenEnded ? USUAL_TOP_HZ : Number.POSITIVE_INFINITY)];
 }
 
 /** So far above a cut-off a wave still travels well enough. */
@@ -154,10 +162,24 @@ function usefulStopHz(line: Line, highHz: number, window: WindowSpec): number {
   const widths = createWindow(window, 1001).width6DbBins;
   const fineHz = widths / (2 * WANTED_RESOLUTION_M * meanDelay);
   const bandsHz = Math.max(0, ...line.limits.bands.map((band) => band.toHz * 1.05));
-  const lossDb = pathTo(run, lengthM).attenuation[1]! * DB_PER_NEPER;
-  // Loss grows about as the root of frequency.
-  const seenHz = highHz * Math.min(1, (MOST_LOSS_DB / Math.max(lossDb, 1e-9)) ** 2);
+  const seenHz = whereLossIs(line, MOST_LOSS_DB, highHz);
   return Math.min(highHz, Math.max(bandsHz, Math.min(fineHz, seenHz)));
+}
+
+/** Highest frequency at which the line loses no more than this, one way, Hz; `highHz` where it never does. */
+function whereLossIs(line: Line, mostDb: number, highHz: number): number {
+  const lossAt = (hz: number): number => {
+    const run = runAt(line, Float64Array.of(hz));
+    return pathTo(run, runLengthM(run)).attenuation[0]! * DB_PER_NEPER;
+  };
+  if (lossAt(highHz) <= mostDb) return highHz;
+  let [low, high] = [0, highHz];
+  for (let i = 0; i < 40; i++) {
+    const middle = (low + high) / 2;
+    if (lossAt(middle) > mostDb) high = middle;
+    else low = middle;
+  }
+  return Math.max(low, highHz * 1e-4);
 }
 
 function runAt(line: Line, frequencyHz: Float64Array): MediumRun {

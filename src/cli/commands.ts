@@ -36,6 +36,7 @@ export const FLAGS = {
   json: { value: null, help: 'one JSON document instead of text' },
   trace: { value: 'FILE', help: 'also write trace and impedance profile as CSV' },
   at: { value: 'FREQUENCY', help: 'frequency for loss and delay, like 900MHz' },
+  band: { value: 'BAND', help: 'band that may be swept, like 1.7GHz-2.2GHz' },
   fault: { value: 'FAULT', repeatable: true, help: 'KIND:SIZE@PLACE, like series-resistance:9ohm@joint3' },
   sweep: { value: 'RANGE', help: 'start, stop and points: 2MHz-2700MHz:1350' },
   noise: { value: 'DB', help: 'noise, complex RMS per point, like -70; none by default' },
@@ -50,7 +51,10 @@ export const FLAGS = {
   note: { value: 'TEXT', help: 'anything worth knowing later' },
   name: { value: 'NAME', help: 'name of the line where its description gives none' },
   site: { value: 'SITE', help: 'its site; with list and export: only of this site' },
-  baseline: { value: null, help: 'later sweeps of the line are compared with this one' },
+  baseline: {
+    value: null,
+    help: 'with log: later sweeps of the line are compared with this one; with compare: BEFORE names a logged line',
+  },
   replace: { value: null, help: 'a sweep that is there already gets the new line, results and remarks' },
   since: { value: 'DATE', help: 'only sweeps taken on this day or later' },
   until: { value: 'DATE', help: 'only sweeps taken on this day or before' },
@@ -152,6 +156,76 @@ export const VERBS = {
       {
         command: 'feedsonde loss samples/north-1.s1p',
         shows: 'an antenna on: what can be told all the same',
+      },
+    ],
+  },
+  plan: {
+    arguments: '--line FILE | --cable ID --length LENGTH',
+    fewestArguments: 0,
+    mostArguments: 0,
+    summary: 'choose a sweep',
+    description: [
+      'What to set the instrument to before the line is swept: start, stop and points, what resolution and reach that ' +
+        'gives, whether ohms against distance can be measured, and with what at the far end to sweep. --band limits it to ' +
+        'what instrument or antenna allow.',
+    ],
+    flags: [
+      'line',
+      'cable',
+      'length',
+      'band',
+      'temperature',
+      'velocity-factor',
+      'window',
+      'cables',
+      'logbook',
+      'units',
+      'json',
+    ],
+    examples: [
+      { command: 'feedsonde plan --line samples/north-1.line.json', shows: 'for a described line' },
+      {
+        command: 'feedsonde plan --cable foam-half --length 46m --band 1.7GHz-2.2GHz',
+        shows: 'within the band of an antenna that stays on',
+      },
+    ],
+  },
+  'check-standards': {
+    arguments: 'OPEN SHORT LOAD',
+    fewestArguments: 3,
+    mostArguments: 3,
+    summary: 'are these good standards?',
+    description: [
+      'Judges sweeps of an open, a short and a load before anyone climbs: open and short opposite and near 0 dB, no ' +
+        'length between them, the load quiet, all three swept alike. What is wrong is said with how to mend it.',
+      'Exit status 0: good; 1: something is wrong; 2: a file could not be read.',
+    ],
+    flags: ['json'],
+    examples: [],
+  },
+  compare: {
+    arguments: 'BEFORE AFTER',
+    fewestArguments: 2,
+    mostArguments: 2,
+    summary: 'what has changed between two sweeps of a line',
+    description: [
+      'Takes out what the weather and the instrument do, subtracts the two sweeps, and places and names what is left: ' +
+        'where the line has changed, how large that looks from the port, and of what kind it is. Also how much longer ' +
+        'and lossier the line has become, and its match over the bands of its limits.',
+      'Both sweeps are read by the line of BEFORE; standards, when given, correct both. With --baseline, BEFORE is the ' +
+        'name of a line in the logbook, and its baseline is compared with AFTER. Sweeps taken with other settings are ' +
+        'compared over what they share.',
+      'Exit status 0: unchanged; 1: changed; 2: it could not be done.',
+    ],
+    flags: [...ANALYSIS_FLAGS, 'baseline', 'json'],
+    examples: [
+      {
+        command: 'feedsonde compare samples/north-1.s1p samples/north-1-later.s1p',
+        shows: 'a joint that has corroded',
+      },
+      {
+        command: 'feedsonde compare --baseline ansel-ridge-north-1 samples/north-1-later.s1p',
+        shows: 'the same against the logbook',
       },
     ],
   },

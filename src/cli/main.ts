@@ -55,6 +55,12 @@ async function runVerb(invocation: Invocation, argv: readonly string[]): Promise
       return (await import('./locate.ts')).runLocate(invocation, io);
     case 'loss':
       return (await import('./loss.ts')).runLoss(invocation, io);
+    case 'plan':
+      return (await import('./plan.ts')).runPlan(invocation, io);
+    case 'check-standards':
+      return (await import('./check-standards.ts')).runCheckStandards(invocation, io);
+    case 'compare':
+      return (await import('./compare.ts')).runCompare(invocation, io);
     case 'cables':
       return (await import('./cables.ts')).runCables(invocation, io);
     case 'simulate':
