@@ -53,8 +53,8 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
   // The floor where an echo lies stands for the noise that its own parameters saw.
   const inflationAt = (distanceM: number): number => Math.max(1, parts.varianceAt(distanceM) / meanVariance);
   /** Standard deviation of a sum of parameters, given as factors by column. */
-  const sigmaOf = (factors: ReadonlyMap<number, number>, distanceM: number): number => {
-    if (!covariance) return Number.POSITIVE_INFINITY;
+  const sigmaOf = (factors: ReadonlyMap<number, number>, distanceM: number): number | null => {
+    if (!covariance) return null;
     const p = parameters.length;
     let variance = 0;
     for (const [k, a] of factors) for (const [j, b] of factors) variance += a * b * covariance[k * p + j]!;
@@ -63,6 +63,8 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
   const columnNamed = (name: string): number => parameters.findIndex((parameter) => parameter.name === name);
   const columnOfBoundary = (index: number): number =>
     parameters.findIndex((parameter) => parameter.boundary === index);
+  // What a fit does not determine may lie anywhere on the line.
+  const lineM = boundaryAt(model, model.boundaryM.length);
   /** @param lump Set for what stands free in its section. @param boundary Set for what stands at a joint. */
   const place = (
     distanceM: number,
@@ -77,12 +79,12 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     for (const [index, factor] of physical.perBoundary) add(columnOfBoundary(index), factor);
     return {
       distanceM: physical.distanceM,
-      distanceSigmaM: Math.hypot(sigmaOf(factors, distanceM), physical.sigmaM, LEAST_SIGMA_M),
+      distanceSigmaM: Math.hypot(sigmaOf(factors, distanceM) ?? lineM, physical.sigmaM, LEAST_SIGMA_M),
     };
   };
-  const strengthSigmaOf = (id: number, distanceM: number): number => {
+  const strengthSigmaOf = (id: number, distanceM: number): number | null => {
     const column = columnNamed(`strength of lump ${id}`);
-    return column < 0 ? 0 : sigmaOf(new Map([[column, 1]]), distanceM);
+    return column < 0 ? null : sigmaOf(new Map([[column, 1]]), distanceM);
   };
   const echoes: Echo[] = [];
   for (const lump of model.lumps.filter((l) => l.boundary === null)) {
@@ -129,7 +131,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     };
   }
 
-  function valueIn(section: number, kind: PureType, strength: number, sigma: number): EchoValue {
+  function valueIn(section: number, kind: PureType, strength: number, sigma: number | null): EchoValue {
     if (parts.line.sections[section]?.type !== 'guide')
       return lumpValue(kind, strength, sigma, model.media[section]!.z0Ohm);
     const f = context.frequencyHz;
@@ -138,7 +140,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     return {
       quantity: 'normalised',
       value: Math.abs(normalisedOf({ type, strength }, middleHz)),
-      sigma: normalisedOf({ type, strength: sigma }, middleHz),
+      sigma: sigma === null ? null : normalisedOf({ type, strength: sigma }, middleHz),
       unit: 'z0',
     };
   }
@@ -166,7 +168,7 @@ export function buildEchoes(context: FitContext, model: LineModel, parts: EchoPa
     const resistive = verdict.state === 'series-resistance' || verdict.state === 'shunt-leakage';
     const strength = resistive ? resistiveStrength(model, boundary) : reactiveStrength(model, boundary);
     const main = mine.find((lump) => lump.type === (resistive ? 'resistive' : 'reactive'));
-    const sigma = main ? strengthSigmaOf(main.id, distanceM) : 0;
+    const sigma = main ? strengthSigmaOf(main.id, distanceM) : null;
     return {
       ...base,
       kind: verdict.clear ? verdict.state : 'unresolved',
@@ -212,27 +214,28 @@ function returnLossValue(db: number): EchoValue {
 function lumpValue(
   kind: Exclude<EchoKind, 'open' | 'short' | 'termination' | 'joint' | 'unresolved' | 'impedance-step'>,
   strength: number,
-  sigma: number,
+  sigma: number | null,
   z0Ohm: number,
 ): EchoValue {
   const size = Math.abs(strength);
+  const times = (factor: number): number | null => (sigma === null ? null : sigma * factor);
   switch (kind) {
     case 'series-resistance':
-      return { quantity: 'resistance', value: size * z0Ohm, sigma: sigma * z0Ohm, unit: 'ohm' };
+      return { quantity: 'resistance', value: size * z0Ohm, sigma: times(z0Ohm), unit: 'ohm' };
     case 'shunt-leakage':
       return {
         quantity: 'resistance',
         value: z0Ohm / size,
-        sigma: (sigma * z0Ohm) / (size * size),
+        sigma: times(z0Ohm / (size * size)),
         unit: 'ohm',
       };
     case 'series-inductance':
-      return { quantity: 'inductance', value: size * z0Ohm * 1e9, sigma: sigma * z0Ohm * 1e9, unit: 'nH' };
+      return { quantity: 'inductance', value: size * z0Ohm * 1e9, sigma: times(z0Ohm * 1e9), unit: 'nH' };
     case 'shunt-capacitance':
       return {
         quantity: 'capacitance',
         value: (size / z0Ohm) * 1e12,
-        sigma: (sigma / z0Ohm) * 1e12,
+        sigma: times(1e12 / z0Ohm),
         unit: 'pF',
       };
   }

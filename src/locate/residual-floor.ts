@@ -87,6 +87,7 @@ export function localVariance(
   for (let i = Math.max(0, k - reach); i <= Math.min(trace.density.length - 1, k + reach); i++) {
     around.push(trace.density[i]!);
   }
+  if (around.length === 0) return meanVariance;
   around.sort((a, b) => a - b);
   // For Gaussian noise the density is exponential, whose 85 % quantile is 1.9 times its mean.
   const complexVariance = quantileOfSorted(around, FLOOR_QUANTILE) / 1.9;
