@@ -74,6 +74,12 @@ function levelsBetween(trace: ResidualTrace, k: number, guard: number, from: num
 /** The floor of a place is taken no lower than this share of the whole residual's, whose side lobes reach everywhere. */
 const LEAST_SHARE = 0.03;
 
+/**
+ * Nothing measured repeats better than −70 dB (common practice), whatever a simulated sweep may do: below that, evidence
+ * would come from rounding and from what the model leaves out on purpose.
+ */
+const LEAST_VARIANCE = 0.5e-7;
+
 /** Noise variance (per real component) that evidence at a distance is weighed with. */
 export function localVariance(
   trace: ResidualTrace,
@@ -91,5 +97,5 @@ export function localVariance(
   around.sort((a, b) => a - b);
   // For Gaussian noise the density is exponential, whose 85 % quantile is 1.9 times its mean.
   const complexVariance = quantileOfSorted(around, FLOOR_QUANTILE) / 1.9;
-  return Math.max(LEAST_SHARE * meanVariance, complexVariance / 2);
+  return Math.max(LEAST_SHARE * meanVariance, complexVariance / 2, LEAST_VARIANCE);
 }
