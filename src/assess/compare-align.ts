@@ -38,6 +38,7 @@ const LOSS_SIGMA = 0.15;
 const STRETCH_SIGMA = 600e-6;
 
 const ROUNDS = 9;
+const SLOPES_ANEW = 3;
 /** A round that moves stretch and loss by less than this of their doubt is the last. */
 const SETTLED = 0.02;
 
@@ -68,10 +69,13 @@ export function alignSweeps(request: AlignRequest): Alignment {
     weight,
     tracer,
   );
+  let slopes: readonly ComplexArray[] = later;
   let plain = differenceOf(after, warp(change), weight);
   for (let round = 0; round < ROUNDS; round++) {
     const now = tracer.trace(plain);
-    const slopes = slopesOf(warp, change, weight, tracer).map((slope, k) => meanOf(slope, later[k]!));
+    // Once it is nearly there the slopes no longer change.
+    if (round < SLOPES_ANEW)
+      slopes = slopesOf(warp, change, weight, tracer).map((slope, k) => meanOf(slope, later[k]!));
     const solved = solveRound(now, slopes, traces, amounts, change, own);
     amounts.set(solved.amounts);
     const moved = solved.step;

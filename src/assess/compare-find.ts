@@ -17,6 +17,8 @@ export type FoundChange = {
   readonly kind: PureType | 'unresolved';
   /** Joint it sits at, counted from 1; null inside a section. */
   readonly joint: number | null;
+  /** RMS reflection at its place. */
+  readonly reflection: number;
 };
 
 export type FindRequest = {
@@ -28,6 +30,8 @@ export type FindRequest = {
   readonly jointM: readonly number[];
   /** Sizes of the later sweep's own trace. */
   readonly ownSizes: Float64Array;
+  /** Distances at which the two sweeps fold, m. */
+  readonly reachM: readonly [number, number];
 };
 
 const MOST_CHANGES = 8;
@@ -35,6 +39,9 @@ const MOST_CHANGES = 8;
 /** Share of the neighbours under the floor, and how far a change stands over it. */
 const FLOOR_SHARE = 0.85;
 const OVER_FLOOR = 3.4;
+
+/** Smallest apparent size that is called a change, −64 dB: below that no one would climb for it. */
+const LEAST_SIZE = 10 ** (-64 / 20);
 
 /** What alignment leaves of an echo, as a share of it. */
 const LEFT_SHARE = 0.02;
@@ -48,8 +55,12 @@ const JOINT_SHARE = 0.5;
 const JOINT_REFLECTION = 0.012;
 
 /** Lead of a resistance at a joint over re-torquing, nats, and the reflection it must have. */
-const JOINT_LEAD = 12;
+const JOINT_LEAD = 9;
 const LEAST_JOINT_REFLECTION = 0.005;
+const RESISTIVE_SHARE = 0.1;
+
+/** What residues of two corrections leave of the end's own echo, as a share of it. */
+const END_SHARE = 0.06;
 
 /** Lead of a kind over the next, nats, below which it is a coin toss. */
 const KIND_LEAD = 1;
@@ -62,10 +73,13 @@ export function findChanges(request: FindRequest): FoundChange[] {
   while (found.length < MOST_CHANGES) {
     const sizes = sizesOf(tracer.trace(difference.gamma));
     const floor = floorOf(request, sizes);
-    const next = strongest(request, sizes, floor, { done, found });
+    // The end last: what stands before it changes it too.
+    const next =
+      strongest(request, sizes, floor, { done, found }, 'line') ??
+      strongest(request, sizes, floor, { done, found }, 'end');
     if (next === null) break;
     if (next.joint !== null) done.add(next.joint);
-    const change = settle(request, next, floor);
+    const change = settle(request, next, floor, found);
     if (change === null) {
       if (next.joint === null) break;
       continue;
@@ -82,10 +96,13 @@ function strongest(
   sizes: Float64Array,
   floor: Float64Array,
   { done, found }: { readonly done: ReadonlySet<number>; readonly found: readonly FoundChange[] },
+  where: 'line' | 'end',
 ): Candidate | null {
   const { tracer, ownSizes, resolutionM } = request;
   const endM = request.jointM[request.jointM.length - 1]!;
   const near = Math.ceil(resolutionM / tracer.stepM);
+  const folded = foldedPlacesM(request, found);
+  const endSize = ownSizes.reduce((most, size) => Math.max(most, size), 0);
   let best: Candidate | null = null;
   for (let k = 1; k + 1 < sizes.length; k++) {
     if (sizes[k]! < sizes[k - 1]! || sizes[k]! < sizes[k + 1]!) continue;
@@ -93,18 +110,46 @@ function strongest(
     if (distanceM > endM + zoneM(request)) break;
     if (distanceM < portM(request)) continue;
     const joint = jointNear(request, distanceM);
+    if ((joint === request.jointM.length) !== (where === 'end')) continue;
     if (joint === 1 || (joint !== null && done.has(joint))) continue;
     let own = 0;
     for (let i = Math.max(0, k - near); i <= Math.min(sizes.length - 1, k + near); i++)
       own = Math.max(own, ownSizes[i]!);
+    const fold = folded.some(
+      (m) => distanceM > m - 1.5 * resolutionM && distanceM < m + 1.5 * resolutionM + RINGING_M,
+    )
+      ? FOLDED_SHARE * endSize
+      : 0;
     const halo = found
       .filter((change) => Math.abs(change.distanceM - distanceM) < HALO_RESOLUTIONS * resolutionM)
       .reduce((sum, change) => sum + HALO_SHARE * 10 ** (change.levelDb / 20), 0);
-    const over = sizes[k]! / Math.max(OVER_FLOOR * floor[k]!, LEFT_SHARE * own, halo);
+    const over = sizes[k]! / Math.max(OVER_FLOOR * floor[k]!, LEFT_SHARE * own, halo, fold, LEAST_SIZE);
     if (over > 1 && over > (best?.over ?? 0)) best = { at: k, joint, over };
   }
   return best;
 }
+
+/** Share of the end's echo that its bounces off joints have, and how far behind them an antenna rings, m. */
+const FOLDED_SHARE = 0.02;
+const RINGING_M = 0.3;
+
+/**
+ * Where bounces between the end and a joint fold back into the line: there the weather moves them the wrong way, and two
+ * grids fold them to two places.
+ */
+function foldedPlacesM({ jointM, reachM }: FindRequest, found: readonly FoundChange[]): number[] {
+  const endM = jointM[jointM.length - 1]!;
+  const places = [...jointM.slice(0, -1), ...found.map((change) => change.distanceM)];
+  return reachM.flatMap((reach) =>
+    places
+      .map((m) => 2 * endM - m)
+      .filter((m) => m > NEAR_REACH * reach)
+      .map((m) => Math.abs(m - reach * Math.round(m / reach))),
+  );
+}
+
+/** Share of the reach from which a sweep's own estimate of what is between its points is no longer good. */
+const NEAR_REACH = 0.9;
 
 /** Round trip within which residues of the correction lie, s. */
 const RESIDUE_S = 1.2e-9;
@@ -132,26 +177,38 @@ function jointNear(request: FindRequest, distanceM: number): number | null {
 }
 
 /** Names and places a candidate and takes it out; null where it is what a joint may show. */
-function settle(request: FindRequest, candidate: Candidate, floor: Float64Array): FoundChange | null {
+function settle(
+  request: FindRequest,
+  candidate: Candidate,
+  floor: Float64Array,
+  found: readonly FoundChange[],
+): FoundChange | null {
   const { difference, tracer, resolutionM } = request;
   const atM = candidate.at * tracer.stepM;
   // The floor is an upper quantile of a complex Gaussian's size; both parts of a point have half its power.
   const rms = floor[candidate.at]! / Math.sqrt(-Math.log(1 - FLOOR_SHARE)) / tracer.noiseGain;
   const variance = (rms * rms) / 2;
-  if (candidate.joint !== null) return settleJoint(request, candidate.joint, atM, variance);
+  if (candidate.joint !== null) return settleJoint(request, candidate.joint, atM, variance, found);
   const fit = fitChange(difference, atM, 0.6 * resolutionM, variance);
   if (fit === null) return null;
   const size = takeOut(difference, fit.lump);
   return {
     distanceM: fit.lump.distanceM,
     sigmaM: fit.sigmaM,
-    levelDb: 20 * Math.log10(size + 1e-12),
+    levelDb: levelOf(size),
     kind: fit.lead < KIND_LEAD ? 'unresolved' : fit.lump.type,
     joint: null,
+    reflection: size / throughputAt(request, atM),
   };
 }
 
-function settleJoint(request: FindRequest, joint: number, atM: number, variance: number): FoundChange | null {
+function settleJoint(
+  request: FindRequest,
+  joint: number,
+  atM: number,
+  variance: number,
+  found: readonly FoundChange[],
+): FoundChange | null {
   const { difference, tracer, ownSizes, resolutionM, jointM } = request;
   const through = throughputAt(request, atM);
   const k = Math.min(ownSizes.length - 1, Math.round(atM / tracer.stepM));
@@ -159,24 +216,25 @@ function settleJoint(request: FindRequest, joint: number, atM: number, variance:
   let own = 0;
   for (let i = Math.max(0, k - near); i <= Math.min(ownSizes.length - 1, k + near); i++)
     own = Math.max(own, ownSizes[i]! / through);
+  const place = { distanceM: jointM[joint - 1]!, sigmaM: 0, joint };
   const isEnd = joint === jointM.length;
+  // A lump before the end weakens it by twice its own reflection.
+  const weakened = found.reduce((sum, change) => sum + 2 * change.reflection, 0);
+  const allowed = isEnd ? (END_SHARE + weakened) * own : JOINT_SHARE * own;
   const resistive = fitJoint(difference, atM, 0.5 * resolutionM, variance, own);
+  const isResistive = resistive.lead > JOINT_LEAD;
   const reflection = Math.abs(resistive.strength) / 2;
-  if (
-    resistive.lead > JOINT_LEAD &&
-    reflection > Math.max(LEAST_JOINT_REFLECTION, (isEnd ? 0.15 : 0.1) * own)
-  ) {
+  if (isResistive && reflection > Math.max(LEAST_JOINT_REFLECTION, isEnd ? allowed : RESISTIVE_SHARE * own)) {
     const { type, strength, distanceM } = resistive;
     const size = takeOut(difference, { type, strength, distanceM });
-    return { distanceM: jointM[joint - 1]!, sigmaM: 0, levelDb: levelOf(size), kind: type, joint };
+    return { ...place, levelDb: levelOf(size), kind: type, reflection };
   }
-  if (isEnd) return null;
   const fit = fitChange(difference, atM, 0.5 * resolutionM, variance);
   if (fit === null) return null;
   const size = takeOut(difference, fit.lump);
-  if (size / through < Math.max(JOINT_REFLECTION, JOINT_SHARE * own)) return null;
+  if (size / through < Math.max(JOINT_REFLECTION, allowed)) return null;
   const kind = fit.lead < KIND_LEAD ? 'unresolved' : fit.lump.type;
-  return { distanceM: jointM[joint - 1]!, sigmaM: 0, levelDb: levelOf(size), kind, joint };
+  return { ...place, levelDb: levelOf(size), kind, reflection: size / through };
 }
 
 function levelOf(size: number): number {

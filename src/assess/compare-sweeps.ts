@@ -4,6 +4,7 @@
  */
 import { jointName, type Line } from '../line/line.ts';
 import { groupDelaySPerM, pathTo } from '../line/medium-run.ts';
+import { medianStepHz } from '../locate/grid-weights.ts';
 import type { Solution } from '../locate/solution.ts';
 import type { ComplexArray } from '../numerics/complex.ts';
 import { createWindow } from '../numerics/window.ts';
@@ -48,6 +49,7 @@ export function compareSweeps(
     resolutionM,
     jointM: [...solved.jointM.filter((m) => m < seenToM), seenToM],
     ownSizes: sizesOf(tracer.trace(common.value.after)),
+    reachM: [reachM(common.value.beforeStepHz, solved), reachM(medianStepHz(frequencyHz), solved)],
   });
   const placed = found.map((change) => placeChange(line, before.solution, change, resolutionM, lengthWords));
   const ended = endChange(request, common.value, solved, alignment, lengthWords);
@@ -57,9 +59,9 @@ export function compareSweeps(
     verdict: changes.length > 0 ? 'changed' : 'unchanged',
     changes,
     stretchPpm: 1e6 * alignment.change.stretch,
-    stretchSigmaPpm: 1e6 * alignment.stretchSigma,
+    stretchSigmaPpm: 1e6 * Math.hypot(alignment.stretchSigma, LEAST_STRETCH_SIGMA),
     lossChangeDb: perGrowthDb * alignment.change.loss,
-    lossChangeSigmaDb: perGrowthDb * alignment.lossSigma,
+    lossChangeSigmaDb: Math.hypot(perGrowthDb * alignment.lossSigma, LEAST_LOSS_SIGMA_DB),
     bands: line.limits.bands.map(
       (band): BandChange => ({
         name: band.name,
@@ -80,6 +82,10 @@ export function compareSweeps(
   });
 }
 
+/** Doubt that no noise tells of: sections that weather differently, corrections. Chosen by `test/bench/change.ts`. */
+const LEAST_STRETCH_SIGMA = 12e-6;
+const LEAST_LOSS_SIGMA_DB = 0.06;
+
 /** 6 dB width of an echo with the comparison's taper, m, mean over the run. */
 function resolutionOf(frequencyHz: Float64Array, { run, jointM, endS }: SolvedRun): number {
   const bandHz = frequencyHz[frequencyHz.length - 1]! - frequencyHz[0]!;
@@ -87,6 +93,11 @@ function resolutionOf(frequencyHz: Float64Array, { run, jointM, endS }: SolvedRu
   const lengthM = jointM[jointM.length - 1]!;
   const delaySPerM = lengthM > 0 ? endS / (2 * lengthM) : groupDelaySPerM(run, frequencyHz)[0]!;
   return width / (2 * bandHz * delaySPerM);
+}
+
+/** Distance at which a sweep folds, m, by the mean delay of the run. */
+function reachM(stepHz: number, { jointM, endS }: SolvedRun): number {
+  return jointM[jointM.length - 1]! / (stepHz * endS);
 }
 
 /** Shares of the earlier sweep's reach in delay that echoes may use, and of its end's delay that they do at least. */

@@ -63,7 +63,8 @@ export function planWarp(plan: WarpPlan): (values: ComplexArray) => Warp {
   const spanS = plan.longestS + BEFORE_PORT_S;
   const centreS = (plan.longestS - BEFORE_PORT_S) / 2;
   const first = Int32Array.from(targetHz, (f) => firstNeighbour(sourceHz, f, neighbours));
-  const factors = createFactors(sourceHz, neighbours, spanS);
+  const even = isEven(sourceHz, spanS);
+  const factors = createFactors(sourceHz, neighbours, spanS, even);
   return (values) => {
     const { re, im } = centred(sourceHz, values, centreS);
     const heldRe = new Float64Array(targetHz.length * neighbours);
@@ -83,8 +84,9 @@ export function planWarp(plan: WarpPlan): (values: ComplexArray) => Warp {
       const factor = factors(at);
       solveFactored(factor, neighbours, rowRe);
       solveFactored(factor, neighbours, rowIm);
+      for (let n = 0; n < neighbours; n++) turn(rowRe, rowIm, n, -2 * Math.PI * sourceHz[at + n]! * centreS);
     }
-    return (change) => estimate({ ...plan, neighbours, centreS, spanS, first, heldRe, heldIm }, change);
+    return (change) => estimate({ ...plan, neighbours, spanS, first, even, heldRe, heldIm }, change);
   };
 }
 
@@ -113,14 +115,26 @@ function centred(sourceHz: Float64Array, values: ComplexArray, centreS: number):
   return out;
 }
 
+/** Turns one value by an angle, in place. */
+function turn(re: Float64Array, im: Float64Array, at: number, angle: number): void {
+  const [cos, sin] = [Math.cos(angle), Math.sin(angle)];
+  const was = re[at]!;
+  re[at] = was * cos - im[at]! * sin;
+  im[at] = was * sin + im[at]! * cos;
+}
+
+function isEven(sourceHz: Float64Array, spanS: number): boolean {
+  const stepHz = (sourceHz[sourceHz.length - 1]! - sourceHz[0]!) / (sourceHz.length - 1);
+  return sourceHz.every((f, i) => Math.abs(f - sourceHz[0]! - i * stepHz) * spanS < 1e-6);
+}
+
 /** Factored likeness of neighbours, one for all on an even grid. */
 function createFactors(
   sourceHz: Float64Array,
   neighbours: number,
   spanS: number,
+  even: boolean,
 ): (at: number) => Float64Array {
-  const stepHz = (sourceHz[sourceHz.length - 1]! - sourceHz[0]!) / (sourceHz.length - 1);
-  const even = sourceHz.every((f, i) => Math.abs(f - sourceHz[0]! - i * stepHz) * spanS < 1e-6);
   const known = new Map<number, Float64Array>();
   return (at) => {
     const key = even ? 0 : at;
@@ -141,11 +155,21 @@ function createFactors(
   };
 }
 
+/** True when two targets see their neighbours alike, to 1e-7 of a turn over the whole run. */
+function sameOffsets(ready: Ready, a: number, b: number): boolean {
+  const { sourceHz, targetHz, first, neighbours, spanS, even } = ready;
+  const offset = (i: number, n: number): number => sourceHz[first[i]! + n]! - targetHz[i]!;
+  const last = neighbours - 1;
+  const alike = (n: number): boolean => Math.abs(offset(a, n) - offset(b, n)) * spanS < 1e-7;
+  return even && alike(0) && alike(last);
+}
+
 type Ready = WarpPlan & {
   readonly neighbours: number;
-  readonly centreS: number;
   readonly spanS: number;
   readonly first: Int32Array;
+  /** The earlier sweep's steps are all alike. */
+  readonly even: boolean;
   /** Per target, its neighbours' values by the inverse of their likeness. */
   readonly heldRe: Float64Array;
   readonly heldIm: Float64Array;
@@ -156,7 +180,7 @@ type Ready = WarpPlan & {
  * values: a sum over the pieces of integrals of exponentials.
  */
 function estimate(ready: Ready, change: LineChange): ComplexArray {
-  const { sourceHz, targetHz, pieces, longestS, neighbours, centreS, spanS, first, heldRe, heldIm } = ready;
+  const { sourceHz, targetHz, pieces, longestS, neighbours, spanS, first, heldRe, heldIm } = ready;
   const out = complexZeros(targetHz.length);
   const edges = pieces.length + 1;
   const edgeS = Float64Array.from({ length: edges }, (_, p) =>
@@ -167,6 +191,10 @@ function estimate(ready: Ready, change: LineChange): ComplexArray {
   // e^{−E} at the edges.
   const fadeRe = new Float64Array(edges);
   const fadeIm = new Float64Array(edges);
+  // e^{j·2π(f_i − f)·τ} at the edges, by neighbour: alike from point to point on even grids.
+  const edgeRe = new Float64Array(neighbours * edges);
+  const edgeIm = new Float64Array(neighbours * edges);
+  let offsetsOf = -1;
   for (let i = 0; i < targetHz.length; i++) {
     const f = targetHz[i]!;
     const omega = 2 * Math.PI * f;
@@ -190,6 +218,15 @@ function estimate(ready: Ready, change: LineChange): ComplexArray {
         exponentIm += kappaIm[e]! * (edgeS[e + 1]! - edgeS[e]!);
       }
     }
+    if (offsetsOf < 0 || !sameOffsets(ready, offsetsOf, i)) {
+      offsetsOf = i;
+      for (let n = 0; n < neighbours; n++)
+        for (let e = 0; e < edges; e++) {
+          const angle = 2 * Math.PI * (sourceHz[first[i]! + n]! - f) * edgeS[e]!;
+          edgeRe[n * edges + e] = Math.cos(angle);
+          edgeIm[n * edges + e] = Math.sin(angle);
+        }
+    }
     let sumRe = 0;
     let sumIm = 0;
     for (let n = 0; n < neighbours; n++) {
@@ -197,13 +234,12 @@ function estimate(ready: Ready, change: LineChange): ComplexArray {
       const rate = 2 * Math.PI * (source - f);
       let cRe = 0;
       let cIm = 0;
-      // e^{j·rate·τ} at the piece's near edge.
-      let nearRe = Math.cos(rate * edgeS[0]!);
-      let nearIm = Math.sin(rate * edgeS[0]!);
+      let nearRe = edgeRe[n * edges]!;
+      let nearIm = edgeIm[n * edges]!;
       for (let p = 0; p < pieces.length; p++) {
         const lengthS = edgeS[p + 1]! - edgeS[p]!;
-        const farRe = Math.cos(rate * edgeS[p + 1]!);
-        const farIm = Math.sin(rate * edgeS[p + 1]!);
+        const farRe = edgeRe[n * edges + p + 1]!;
+        const farIm = edgeIm[n * edges + p + 1]!;
         // λ = j·rate − κ; ∫ = (e^{…far} − e^{…near})/λ.
         const lRe = -kappaRe[p]!;
         const lIm = rate - kappaIm[p]!;
@@ -225,16 +261,10 @@ function estimate(ready: Ready, change: LineChange): ComplexArray {
         nearRe = farRe;
         nearIm = farIm;
       }
-      // e^{−j2πf_i·τc}
-      const turn = -2 * Math.PI * source * centreS;
-      const turnRe = Math.cos(turn);
-      const turnIm = Math.sin(turn);
-      const wRe = cRe * turnRe - cIm * turnIm;
-      const wIm = cRe * turnIm + cIm * turnRe;
       const hRe = heldRe[i * neighbours + n]!;
       const hIm = heldIm[i * neighbours + n]!;
-      sumRe += wRe * hRe - wIm * hIm;
-      sumIm += wRe * hIm + wIm * hRe;
+      sumRe += cRe * hRe - cIm * hIm;
+      sumIm += cRe * hIm + cIm * hRe;
     }
     out.re[i] = sumRe;
     out.im[i] = sumIm;

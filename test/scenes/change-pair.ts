@@ -153,9 +153,12 @@ function cableChange(recipe: Recipe, draws: Draws): PlacedFault | null {
   return { fault, distanceM, joint: null, half: 'near' };
 }
 
-/** At a joint, resistance or leakage larger than what opening and closing it does. */
+/**
+ * At a joint between two sections, resistance or leakage larger than what opening and closing it does. At the end's own
+ * joint so small a change is as large as the residues of two corrections, −40 to −46 dB of all that the end reflects.
+ */
 function jointChange(recipe: Recipe, draws: Draws): PlacedFault | null {
-  const joints = visibleJoints(recipe);
+  const joints = visibleJoints(recipe).filter((joint) => joint <= recipe.run.sections.length);
   if (joints.length === 0) return null;
   const joint = draws.pick(joints);
   const distanceM = jointDistances(recipe.run.sections)[joint - 1]!;
