@@ -223,10 +223,6 @@ export const VERBS = {
         command: 'feedsonde compare samples/north-1.s1p samples/north-1-later.s1p',
         shows: 'a joint that has corroded',
       },
-      {
-        command: 'feedsonde compare --baseline ansel-ridge-north-1 samples/north-1-later.s1p',
-        shows: 'the same against the logbook',
-      },
     ],
   },
   cables: {
@@ -321,6 +317,10 @@ export const VERBS = {
         shows: 'a sweep as the baseline of its line',
       },
       { command: 'feedsonde log add samples/north-1-later.s1p --when 2026-05-11', shows: 'two years later' },
+      {
+        command: 'feedsonde compare --baseline ansel-ridge-north-1 samples/north-1-later.s1p',
+        shows: 'what has changed since the baseline',
+      },
       { command: 'feedsonde log list', shows: 'all entries' },
       { command: 'feedsonde log trend ansel-ridge-north-1', shows: 'how the line has changed' },
       { command: 'feedsonde log show ansel-ridge-north-1', shows: 'its latest entry' },
