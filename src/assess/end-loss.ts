@@ -46,9 +46,6 @@ const NEPER_PER_DB = Math.LN10 / 20;
 /** Steps of the fit, which is nearly linear. */
 const STEPS = 5;
 
-/** What the standard deviation is multiplied by, to hold what the terms leave out. Chosen on seeded scenes. */
-const DOUBT = 1.2;
-
 /**
  * Fits the loss of the run to the echo of its end: Gauss–Newton with Gaussian priors on the complex reading.
  *
@@ -79,13 +76,11 @@ type Fitted = {
 };
 
 function resultOf({ values, covariance }: Fitted, growing: boolean): EndLoss {
-  const [cc, cd, dd] = covariance;
-  const square = DOUBT * DOUBT;
   return {
     conductor: values[0]!,
     dielectric: values[1]!,
     faults: Math.max(0, 1 + values[FIXED_TERMS.faults]!),
-    covariance: [cc * square, cd * square, dd * square],
+    covariance,
     growing,
   };
 }
@@ -133,8 +128,8 @@ function fitWith(terms: EndTerms, priors: LossPriors, variance?: number): Fitted
   }
 }
 
-/** Variance of a sweep without noise, per real part: that of rounding in its file. */
-const QUIETEST = 1e-14;
+/** Least variance of a point, per real part: −87 dB, below which no instrument reads; terms stay apart in it. */
+const QUIETEST = 1e-9;
 
 /** Inverse covariance of everything known beforehand; the two losses have a part in common. */
 function priorPrecision(terms: EndTerms, { common, conductor, dielectric }: LossPriors): Float64Array {

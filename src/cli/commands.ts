@@ -160,13 +160,14 @@ export const VERBS = {
     ],
   },
   plan: {
-    arguments: '--line FILE | --cable ID --length LENGTH',
+    arguments: '--line FILE',
     fewestArguments: 0,
     mostArguments: 0,
     summary: 'choose a sweep',
     description: [
       'What to set the instrument to before the line is swept: start, stop and points, what resolution and reach that ' +
-        'gives, whether ohms against distance can be measured, and with what at the far end to sweep. --band limits it to ' +
+        'gives, whether ohms against distance can be measured, and with what at the far end to sweep. Instead of --line, ' +
+        '--cable ID with --length describes a line of one cable; --band limits the sweep to ' +
         'what instrument or antenna allow.',
     ],
     flags: [
@@ -201,7 +202,12 @@ export const VERBS = {
       'Exit status 0: good; 1: something is wrong; 2: a file could not be read.',
     ],
     flags: ['json'],
-    examples: [],
+    examples: [
+      {
+        command: 'feedsonde check-standards samples/south-3.s1p samples/south-1.s1p samples/north-1.s1p',
+        shows: 'three lines, which are no standards',
+      },
+    ],
   },
   compare: {
     arguments: 'BEFORE AFTER',
