@@ -59,6 +59,9 @@ const JOINT_LEAD = 9;
 const LEAST_JOINT_REFLECTION = 0.005;
 const RESISTIVE_SHARE = 0.1;
 
+/** A lump takes twice its reflection off what is behind it; an end that rings shows half as much again beside its peak. */
+const WEAKENED = 3;
+
 /** What residues of two corrections leave of the end's own echo, as a share of it. */
 const END_SHARE = 0.06;
 
@@ -218,8 +221,7 @@ function settleJoint(
     own = Math.max(own, ownSizes[i]! / through);
   const place = { distanceM: jointM[joint - 1]!, sigmaM: 0, joint };
   const isEnd = joint === jointM.length;
-  // A lump before the end weakens it by twice its own reflection.
-  const weakened = found.reduce((sum, change) => sum + 2 * change.reflection, 0);
+  const weakened = found.reduce((sum, change) => sum + WEAKENED * change.reflection, 0);
   const allowed = isEnd ? (END_SHARE + weakened) * own : JOINT_SHARE * own;
   const resistive = fitJoint(difference, atM, 0.5 * resolutionM, variance, own);
   const isResistive = resistive.lead > JOINT_LEAD;

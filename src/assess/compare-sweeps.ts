@@ -53,7 +53,8 @@ export function compareSweeps(
   });
   const placed = found.map((change) => placeChange(line, before.solution, change, resolutionM, lengthWords));
   const ended = endChange(request, common.value, solved, alignment, lengthWords);
-  const changes = ended === null ? placed : [...placed.filter((c) => c.distanceM < ended.distanceM), ended];
+  const changes =
+    ended === null ? placed : [...placed.filter((c) => c.distanceM < ended.distanceM - resolutionM), ended];
   const perGrowthDb = lossPerGrowthDb(solved, frequencyHz);
   return succeed({
     verdict: changes.length > 0 ? 'changed' : 'unchanged',
@@ -78,13 +79,29 @@ export function compareSweeps(
       lengthAfterM: after.solution.lengthM,
     },
     common: { startHz: frequencyHz[0]!, stopHz: frequencyHz.at(-1)!, points: frequencyHz.length },
-    notices: [...common.notices, ...notices],
+    notices: [...common.notices, ...notices, ...strangers(changes, alignment)],
   });
 }
 
 /** Doubt that no noise tells of: sections that weather differently, corrections. Chosen by `test/bench/change.ts`. */
 const LEAST_STRETCH_SIGMA = 12e-6;
 const LEAST_LOSS_SIGMA_DB = 0.06;
+
+/** Changes, and growth of delay, from which two sweeps are hardly of one line. */
+const MANY_CHANGES = 5;
+const FAR_STRETCH = 1200e-6;
+
+function strangers(changes: readonly Change[], { change }: Alignment): Notice[] {
+  if (changes.length < MANY_CHANGES && Math.abs(change.stretch) < FAR_STRETCH) return [];
+  return [
+    {
+      code: 'not-alike',
+      what:
+        'the two sweeps differ nearly everywhere: either much was changed on this line, or they are not of the same ' +
+        'line, or not taken at the same reference plane',
+    },
+  ];
+}
 
 /** 6 dB width of an echo with the comparison's taper, m, mean over the run. */
 function resolutionOf(frequencyHz: Float64Array, { run, jointM, endS }: SolvedRun): number {
