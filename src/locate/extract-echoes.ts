@@ -6,6 +6,7 @@
 
 import { evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
 import { fitOneLump, type LumpFit } from './fit-lumps.ts';
+import { joinStretches } from './join-stretches.ts';
 import { type JointVerdict, judgeJoint } from './judge-joints.ts';
 import {
   ALL_FREE,
@@ -17,7 +18,6 @@ import {
   type Lump,
   lumpDistanceM,
   removeLump,
-  translate,
 } from './line-model.ts';
 import { type LocalEcho, localEcho } from './local-echo.ts';
 import { expectBoundary, placeJoints } from './place-joints.ts';
@@ -25,6 +25,7 @@ import { lumpedTypeOf, lumpReturnLossDb, pureTypeOf } from './probe.ts';
 import { floorAt, localVariance, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 import { resolvePair } from './resolve-pair.ts';
+import { translate } from './translate-model.ts';
 
 /** Most lumps that the search inserts beside the described joints. */
 export const MOST_FREE_LUMPS = 12;
@@ -98,6 +99,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
         refused.push(peak.distanceM);
         continue;
       }
+      joinStretches(context, model, settings);
     }
     if (calm) refine(context, model, NO_RESIDUE, { variance: residualVariance(context), maxIterations: 5 });
     else evaluateCost(context, model, ALL_FREE, 1);
@@ -105,6 +107,7 @@ export function extractEchoes(context: FitContext, model: LineModel, settings: S
   }
   if (!calm) refineAll(context, model);
   mergeIntoJoints(context, model, settings, verdicts);
+  joinStretches(context, model, settings);
   retestTypes(context, model, settings);
   dropCompanions(context, model, settings);
   pruneLumps(context, model, settings);

@@ -4,7 +4,8 @@ import type { ComplexArray } from '../numerics/complex.ts';
 import { complexZeros } from '../numerics/complex.ts';
 import { invertSymmetric, solveSymmetric } from '../numerics/linear-solve.ts';
 import { createResidueModel, type ResidueModel } from './instrument-residue.ts';
-import { type Freedom, type LineModel, type Parameter, type Translation, translate } from './line-model.ts';
+import type { Freedom, LineModel } from './line-model.ts';
+import { type Parameter, type Translation, translate } from './translate-model.ts';
 
 /** The sweep as the solver sees it, with buffers that every fit reuses. */
 export type FitContext = {

@@ -1,15 +1,27 @@
 /**
- * The solver's picture of a line: the described run plus the discontinuities found so far, and the translation of
- * both into stages of the cascade and a flat vector of parameters.
+ * The solver's picture of a line: the described run, how far it is trusted, and the discontinuities found so far.
  */
-import type { Slot, Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
 import type { EndModel } from '../line/end.ts';
 import type { Line } from '../line/line.ts';
 import { type Medium, portMedium, sectionMedium } from '../line/medium.ts';
 import { invertSymmetric } from '../numerics/linear-solve.ts';
 import { assertNever } from '../outcome.ts';
-import { RESIDUE_SIGMA, type ResidueTerm, residueTerms } from './instrument-residue.ts';
+import { type ResidueTerm, residueTerms } from './instrument-residue.ts';
+
+/** A stretch inside a section that differs from it: water in the dielectric, another cable. */
+export type StretchModel = {
+  readonly id: number;
+  readonly section: number;
+  fromM: number;
+  toM: number;
+  /** Impedance over that of the section, ln. */
+  ratio: number;
+  /** Delay per metre over that of the section, minus 1. */
+  slowness: number;
+  /** Dielectric loss beyond that of the section, relative to it. */
+  dielectric: number;
+};
 
 /** A lumped discontinuity, inside a section or tied to a joint. */
 export type Lump = {
@@ -44,6 +56,7 @@ export type LineModel = {
   conductor: number;
   dielectric: number;
   readonly lumps: Lump[];
+  readonly stretches: StretchModel[];
   end: EndModel;
   readonly residue: ResidueTerm[];
   /** How far the description is trusted. */
@@ -59,42 +72,6 @@ export type Priors = {
   readonly boundaryPrecision: Float64Array;
   readonly impedanceSigma: readonly number[];
   readonly lossSigma: number;
-};
-
-/** One free number of the model. */
-export type Parameter = {
-  readonly name: string;
-  readonly get: () => number;
-  readonly set: (value: number) => void;
-  /** Standard deviation of an independent prior around `mean`; null for none (or for the joint boundary prior). */
-  readonly sigma: number | null;
-  readonly mean: number;
-  /** True where the prior grows faster than a Gaussian: what is sound has limits, and beyond them it is a fault. */
-  readonly stiff?: boolean;
-  /** Largest change in one step of the search. */
-  readonly stepLimit: number;
-  readonly minimum: number;
-  readonly maximum: number;
-  /** Index of the boundary when the parameter is one, for the joint prior. */
-  readonly boundary: number | null;
-  /** Lump that the parameter belongs to. */
-  readonly lump: number | null;
-};
-
-/** Names of the two loss parameters. */
-export const LOSS_PARAMETERS = { common: 'loss', dielectric: 'dielectric loss beyond that' };
-
-/** The model translated for one evaluation. */
-export type Translation = {
-  readonly stages: readonly Stage[];
-  readonly parameters: readonly Parameter[];
-  readonly slots: readonly Slot[];
-  /** Column of the first residue parameter (re, im pairs follow); the instrument stands outside the cascade. */
-  readonly residueColumn: number;
-  /** Stage index of each lump by id. */
-  readonly stageOfLump: ReadonlyMap<number, number>;
-  /** Stage index of the step at boundary i (0 = port); absent at the end. */
-  readonly stageOfBoundary: readonly number[];
 };
 
 /** Prior of a sound section's impedance around its description, Ω. Common practice: about ±1 Ω. */
@@ -145,6 +122,7 @@ export function createLineModel(
     conductor: 0,
     dielectric: 0,
     lumps: [],
+    stretches: [],
     end: { type: 'load', parameters: [1, 0] },
     residue: residueTerms(frequencyHz),
     priors: {
@@ -226,6 +204,7 @@ export function cloneModel(model: LineModel): LineModel {
     boundaryM: model.boundaryM.slice(),
     impedanceRatio: model.impedanceRatio.slice(),
     lumps: model.lumps.map((lump) => ({ ...lump })),
+    stretches: model.stretches.map((stretch) => ({ ...stretch })),
     end: { type: model.end.type, parameters: model.end.parameters.slice() },
     residue: model.residue.map((term) => ({ ...term })),
   };
@@ -238,6 +217,7 @@ export function restoreModel(model: LineModel, from: LineModel): void {
   model.conductor = from.conductor;
   model.dielectric = from.dielectric;
   model.lumps.splice(0, model.lumps.length, ...from.lumps.map((lump) => ({ ...lump })));
+  model.stretches.splice(0, model.stretches.length, ...from.stretches.map((s) => ({ ...s })));
   model.end = { type: from.end.type, parameters: from.end.parameters.slice() };
   model.residue.splice(0, model.residue.length, ...from.residue.map((t) => ({ ...t })));
   model.nextId = Math.max(model.nextId, from.nextId);
@@ -275,6 +255,7 @@ export function removeLump(model: LineModel, id: number): void {
 /** What may move in a fit. */
 export type Freedom = {
   readonly loss: boolean;
+  readonly stretches: boolean;
   readonly end: boolean;
   readonly residue: boolean;
   /** Sections whose impedance may change; null for all. */
@@ -287,6 +268,7 @@ export type Freedom = {
 
 export const ALL_FREE: Freedom = {
   loss: true,
+  stretches: true,
   impedances: null,
   boundaries: null,
   end: true,
@@ -299,6 +281,7 @@ const NOTHING: ReadonlySet<number> = new Set();
 /** Nothing at all: for a look at what is left over. */
 export const NOTHING_FREE: Freedom = {
   loss: false,
+  stretches: false,
   impedances: NOTHING,
   boundaries: NOTHING,
   end: false,
@@ -316,6 +299,7 @@ export function around(model: LineModel, fromM: number, toM: number): Freedom {
   const lumps = model.lumps.filter((lump) => within(lumpDistanceM(model, lump)));
   return {
     loss: true,
+    stretches: true,
     impedances: new Set(near.flatMap((i) => (i + 1 < model.media.length ? [i, i + 1] : [i]))),
     boundaries: null,
     // An antenna's many numbers follow slowly, and its band hides what little a fault before it changes.
@@ -323,265 +307,4 @@ export function around(model: LineModel, fromM: number, toM: number): Freedom {
     residue: fromM <= 0,
     lumps: new Set(lumps.map((lump) => lump.id)),
   };
-}
-
-function isFree(set: ReadonlySet<number> | null, index: number): boolean {
-  return set === null || set.has(index);
-}
-
-/**
- * Stages, free parameters and derivative slots of the model as it stands.
- *
- * @param freedom What may move; what may not gets no column.
- */
-export function translate(model: LineModel, freedom: Freedom): Translation {
-  const parameters: Parameter[] = [];
-  const slots: Slot[] = [];
-  const stages: Stage[] = [];
-  const stageOfLump = new Map<number, number>();
-  const stageOfBoundary: number[] = [];
-  const add = (parameter: Parameter): number => parameters.push(parameter) - 1;
-  const free = { boundary: null, lump: null, mean: 0 };
-
-  const lossColumn = freedom.loss
-    ? add({
-        ...free,
-        name: LOSS_PARAMETERS.common,
-        get: () => model.conductor,
-        set: (v) => {
-          model.dielectric += v - model.conductor;
-          model.conductor = v;
-        },
-        sigma: model.priors.lossSigma,
-        stepLimit: 0.3,
-        minimum: -0.8,
-        maximum: 3,
-      })
-    : -1;
-  const dielectricColumn = freedom.loss
-    ? add({
-        ...free,
-        name: LOSS_PARAMETERS.dielectric,
-        get: () => model.dielectric - model.conductor,
-        set: (v) => {
-          model.dielectric = model.conductor + v;
-        },
-        // The loss that is linear in frequency varies more between samples than the conductor's.
-        sigma: Math.max(0.18, model.priors.lossSigma),
-        stepLimit: 0.5,
-        minimum: -1,
-        maximum: 10,
-      })
-    : -1;
-  const impedanceColumns = model.impedanceRatio.map((_, i) =>
-    isFree(freedom.impedances, i)
-      ? add({
-          ...free,
-          name: `impedance of section ${i + 1}`,
-          get: () => model.impedanceRatio[i]!,
-          set: (v) => {
-            model.impedanceRatio[i] = v;
-          },
-          sigma: model.priors.impedanceSigma[i]!,
-          stepLimit: 0.2,
-          stiff: true,
-          minimum: -1.5,
-          maximum: 1.5,
-        })
-      : -1,
-  );
-  const boundaryColumns = model.boundaryM.map((_, i) =>
-    isFree(freedom.boundaries, i)
-      ? add({
-          ...free,
-          name: `boundary ${i + 1}`,
-          boundary: i,
-          get: () => model.boundaryM[i]!,
-          set: (v) => {
-            model.boundaryM[i] = v;
-          },
-          sigma: null,
-          stepLimit: 0.2,
-          minimum: 0.001,
-          maximum: 1e6,
-        })
-      : -1,
-  );
-
-  /** A place on the line as a number and the parameters it moves with. */
-  type Place = { readonly valueM: number; readonly terms: readonly number[] };
-  const boundaryPlace = (index: number): Place => ({
-    valueM: boundaryAt(model, index),
-    terms: index === 0 || boundaryColumns[index - 1]! < 0 ? [] : [boundaryColumns[index - 1]!],
-  });
-  let from: Place = { valueM: 0, terms: [] };
-  const stretchTo = (to: Place, section: number): void => {
-    const stage = stages.length;
-    stages.push({
-      type: 'line',
-      medium: model.media[section]!,
-      lengthM: to.valueM - from.valueM,
-      conductor: model.conductor,
-      dielectric: model.dielectric,
-    });
-    for (const column of to.terms) slots.push({ stage, of: 'length', column, factor: 1 });
-    for (const column of from.terms) slots.push({ stage, of: 'length', column, factor: -1 });
-    if (lossColumn >= 0) {
-      slots.push({ stage, of: 'conductor', column: lossColumn, factor: 1 });
-      slots.push({ stage, of: 'dielectric', column: lossColumn, factor: 1 });
-    }
-    if (dielectricColumn >= 0) slots.push({ stage, of: 'dielectric', column: dielectricColumn, factor: 1 });
-    from = to;
-  };
-
-  for (let section = 0; section < model.media.length; section++) {
-    const medium = model.media[section]!;
-    const before = section === 0 ? model.port : model.media[section - 1]!;
-    stageOfBoundary.push(stages.length);
-    for (const [side, factor] of [
-      [section, 1],
-      [section - 1, -1],
-    ] as const) {
-      const column = impedanceColumns[side] ?? -1;
-      if (column >= 0) slots.push({ stage: stages.length, of: 'strength', column, factor });
-    }
-    const ratio = Math.exp(
-      model.impedanceRatio[section]! - (section > 0 ? model.impedanceRatio[section - 1]! : 0),
-    );
-    stages.push({ type: 'step', before, after: medium, ratio });
-    const inside = model.lumps
-      .filter((lump) => lump.section === section)
-      .sort((a, b) => lumpDistanceM(model, a) - lumpDistanceM(model, b));
-    for (const lump of inside) {
-      const mayMove = isFree(freedom.lumps, lump.id);
-      const base = lump.boundary === null ? { valueM: 0, terms: [] } : boundaryPlace(lump.boundary);
-      const terms = [...base.terms];
-      if (mayMove && lump.offsetSigmaM !== 0) {
-        terms.push(
-          add({
-            name: `place of lump ${lump.id}`,
-            boundary: null,
-            lump: lump.id,
-            get: () => lump.offsetM,
-            set: (v) => {
-              lump.offsetM = v;
-            },
-            sigma: lump.offsetSigmaM,
-            mean: lump.offsetMeanM,
-            stepLimit: 0.1,
-            minimum: lump.boundary === null ? 0.001 : -1e6,
-            maximum: 1e6,
-          }),
-        );
-      }
-      stretchTo({ valueM: base.valueM + lump.offsetM, terms }, section);
-      const stage = stages.length;
-      stageOfLump.set(lump.id, stage);
-      stages.push({ type: lump.type, medium, strength: lump.strength });
-      if (mayMove) {
-        const column = add({
-          name: `strength of lump ${lump.id}`,
-          boundary: null,
-          lump: lump.id,
-          get: () => lump.strength,
-          set: (v) => {
-            lump.strength = v;
-          },
-          sigma: lump.strengthSigma,
-          mean: 0,
-          stepLimit: Number.POSITIVE_INFINITY,
-          stiff: true,
-          minimum: Number.NEGATIVE_INFINITY,
-          maximum: Number.POSITIVE_INFINITY,
-        });
-        slots.push({ stage, of: 'strength', column, factor: 1 });
-      }
-    }
-    stretchTo(boundaryPlace(section + 1), section);
-  }
-  if (freedom.end) addEndParameters(model, add, slots, stages.length);
-  const residueColumn = parameters.length;
-  if (freedom.residue) {
-    for (const term of model.residue) {
-      for (const part of ['re', 'im'] as const) {
-        add({
-          ...free,
-          name: `correction residue ${part}`,
-          get: () => term[part],
-          set: (v) => {
-            term[part] = v;
-          },
-          sigma: RESIDUE_SIGMA,
-          stepLimit: Number.POSITIVE_INFINITY,
-          minimum: -1,
-          maximum: 1,
-        });
-      }
-    }
-  }
-  return { stages, parameters, slots, residueColumn, stageOfLump, stageOfBoundary };
-}
-
-/** Fringe of an open or inductance of a short, as a delay, s. From memory: a fraction of a picofarad at 50 Ω. */
-const FRINGE_SIGMA_S = 5e-12;
-
-function addEndParameters(
-  model: LineModel,
-  add: (parameter: Parameter) => number,
-  slots: Slot[],
-  stage: number,
-): void {
-  const type = model.end.type;
-  model.end.parameters.forEach((_, i) => {
-    const limits = endLimits(type, i, model.frequencyHz);
-    const column = add({
-      name: `end parameter ${i + 1}`,
-      boundary: null,
-      lump: null,
-      get: () => model.end.parameters[i]!,
-      set: (v) => {
-        const changed = model.end.parameters.slice();
-        changed[i] = v;
-        model.end = { type, parameters: changed };
-      },
-      ...limits,
-    });
-    slots.push({ stage, of: i, column, factor: 1 });
-  });
-}
-
-/** Highest quality of an antenna's resonance. Common practice: broadband antennas stay below 30. */
-const SHARPEST_ANTENNA = 40;
-
-function endLimits(
-  type: EndModel['type'],
-  index: number,
-  frequencyHz: Float64Array,
-): Pick<Parameter, 'sigma' | 'mean' | 'stepLimit' | 'minimum' | 'maximum'> {
-  if (type === 'open' || type === 'short') {
-    return { sigma: FRINGE_SIGMA_S, mean: 0, stepLimit: 10e-12, minimum: -100e-12, maximum: 100e-12 };
-  }
-  if (type === 'load') {
-    return index === 0
-      ? { sigma: 1, mean: 1, stepLimit: 0.5, minimum: 0.02, maximum: 50 }
-      : { sigma: 30e-12, mean: 0, stepLimit: 30e-12, minimum: -1e-9, maximum: 1e-9 };
-  }
-  if (index < 2)
-    return { sigma: index === 0 ? 1 : 0.4, mean: 0, stepLimit: 0.3, minimum: -1.2, maximum: 1.2 };
-  const top = frequencyHz[frequencyHz.length - 1]!;
-  switch ((index - 2) % 4) {
-    case 0:
-    case 1:
-      return { sigma: 1, mean: 0, stepLimit: 0.5, minimum: -2.2, maximum: 2.2 };
-    case 2:
-      return { sigma: null, mean: 0, stepLimit: 5, minimum: 0.5, maximum: SHARPEST_ANTENNA };
-    default:
-      return {
-        sigma: null,
-        mean: 0,
-        stepLimit: top * 0.05,
-        minimum: frequencyHz[0]! * 0.5,
-        maximum: top * 1.5,
-      };
-  }
 }

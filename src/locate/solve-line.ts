@@ -26,6 +26,7 @@ import {
   residualVariance,
 } from './fit-cascade.ts';
 import { leaveOutInterference } from './interference.ts';
+import { stretchesOf } from './join-stretches.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
 import { addSoundJoints, confirmJoints, type JointVerdict, judgeJoints, residualDb } from './judge-joints.ts';
 import {
@@ -33,7 +34,6 @@ import {
   boundaryAt,
   createLineModel,
   type LineModel,
-  LOSS_PARAMETERS,
   lumpDistanceM,
   restoreModel,
 } from './line-model.ts';
@@ -41,6 +41,7 @@ import { placeJoints } from './place-joints.ts';
 import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
 import type { FittedLoss, Solution } from './solution.ts';
+import { LOSS_PARAMETERS } from './translate-model.ts';
 
 export type SolveRequest = {
   /** Frequencies all above 0. */
@@ -163,6 +164,9 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
     varianceAt: (distanceM) => localVariance(floor, distanceM, request.resolutionM, variance),
   });
   const endEcho = echoes[echoes.length - 1]!;
+  const foundStretches = stretchesOf(context, model, scale, variance);
+  const water = findWater(line, model, scale, isFaulty(joints, lumps));
+  evaluateCost(context, model, ALL_FREE, 1);
   const modelGamma = complexCopy(context.modelled);
   const explained = 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
   const poor = explained < WELL_EXPLAINED;
@@ -171,8 +175,7 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
   const solution: Solution = {
     echoes: poor ? echoes.map(doubted) : echoes,
     ghosts: findGhosts(context, model, settings, echoes, scale.factor),
-    stretches:
-      request.lineDescribed && !end.cut ? findWater(line, model, scale, isFaulty(joints, lumps)) : [],
+    stretches: foundStretches.length > 0 || !request.lineDescribed || end.cut ? foundStretches : water,
     lengthM: endEcho.distanceM,
     lengthSigmaM: endEcho.distanceSigmaM,
     distanceScale: scale.factor,

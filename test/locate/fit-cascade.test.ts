@@ -17,8 +17,8 @@ import {
   type Freedom,
   type LineModel,
   NOTHING_FREE,
-  translate,
 } from '../../src/locate/line-model.ts';
+import { translate } from '../../src/locate/translate-model.ts';
 import { createRandom } from '../../src/numerics/random.ts';
 import { evenHz, FOAM, MATCHED, OPEN, SOLID } from './drawn-line.ts';
 import { contextOn, type DrawnRun, modelOf, reflectionOf, varianceOf, withNoise } from './drawn-model.ts';

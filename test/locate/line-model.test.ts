@@ -15,8 +15,8 @@ import {
   removeLump,
   restoreModel,
   sectionAt,
-  translate,
 } from '../../src/locate/line-model.ts';
+import { translate } from '../../src/locate/translate-model.ts';
 import { evenHz, FOAM, lineOf, MATCHED, OPEN, SOLID, THIN } from './drawn-line.ts';
 import { type DrawnRun, modelOf, reflectionOf } from './drawn-model.ts';
 

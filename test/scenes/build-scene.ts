@@ -38,8 +38,7 @@ function cableLossDb(laid: LaidRun, points: number): Float64Array {
   const lossDb = new Float64Array(points);
   for (const element of laid.elements) {
     if (element.type !== 'slab') continue;
-    for (let k = 0; k < points; k++)
-      lossDb[k]! += DB_IN_NEPER * element.medium.gammaRe[k]! * element.lengthM;
+    for (let k = 0; k < points; k++) lossDb[k]! += DB_IN_NEPER * element.medium.gammaRe[k]! * element.lengthM;
   }
   return lossDb;
 }
