@@ -160,7 +160,8 @@ function velocityTolerance(line: Line): number {
   return total > 0 ? weighted / total : 0.01;
 }
 
-function lengthNotice(measuredM: number, describedM: number, off: number): Notice {
+/** Says that a line measures other than it is described. @param off Measured over described, minus 1. */
+export function lengthNotice(measuredM: number, describedM: number, off: number): Notice {
   return {
     code: 'length-differs',
     what:

@@ -95,7 +95,7 @@ function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
     const best = bestEnd(context, model, search, ['open', 'short'], [cutAt]);
     return { ...best, line: cutLine, cut: true };
   }
-  const best = bestEnd(context, base, search, likelyKinds(line.end, nearEnd.level), [
+  const best = bestEnd(context, base, search, likelyKinds(line, context.frequencyHz, nearEnd.level), [
     nearEnd.distanceM,
     total,
   ]);
@@ -103,7 +103,8 @@ function findDescribedEnd(context: FitContext, search: EndSearch): EndFound {
 }
 
 /** Kinds that an end may be, given what was described and how large it looks. */
-function likelyKinds(described: EndKind, level: number): FoundEnd[] {
+function likelyKinds(line: Line, frequencyHz: Float64Array, level: number): FoundEnd[] {
+  const described = line.end;
   const full: FoundEnd[] = level > FULL_END_LEVEL ? ['open', 'short'] : [];
   switch (described) {
     case 'open':
@@ -112,13 +113,23 @@ function likelyKinds(described: EndKind, level: number): FoundEnd[] {
       return level > NOTHING_LEVEL ? ['open', 'short'] : ['open', 'short', 'load', 'antenna'];
     case 'load':
     case 'antenna':
-      // A load or antenna that reflects everything is off or broken.
-      return level > FULL_REFLECTION_LEVEL ? [described, 'open', 'short'] : [described];
+      // A load or antenna that reflects everything in its band is off or broken.
+      return level > FULL_REFLECTION_LEVEL && !isOutOfBand(line, frequencyHz)
+        ? [described, 'open', 'short']
+        : [described];
     case 'unknown':
       return [...full, 'load', 'antenna'];
     default:
       return assertNever(described);
   }
+}
+
+/** Whether a sweep keeps clear of every band that the line's antenna is described for. */
+function isOutOfBand(line: Line, frequencyHz: Float64Array): boolean {
+  const low = frequencyHz[0]!;
+  const high = frequencyHz[frequencyHz.length - 1]!;
+  const { bands } = line.limits;
+  return line.end === 'antenna' && bands.length > 0 && bands.every((b) => b.toHz < low || b.fromHz > high);
 }
 
 /** An open or a short that is described, however much stands before it, shows more than this. */
@@ -136,7 +147,7 @@ export function reviseEnd(
   found: Pick<EndFound, 'kind' | 'lead'>,
 ): Pick<EndFound, 'kind' | 'lead'> {
   const level = endLevel(context, model);
-  const kinds = new Set<FoundEnd>([found.kind, ...likelyKinds(search.line.end, level)]);
+  const kinds = new Set<FoundEnd>([found.kind, ...likelyKinds(search.line, context.frequencyHz, level)]);
   if (kinds.size === 1 && found.kind !== 'antenna') return found;
   const atM = model.boundaryM[model.boundaryM.length - 1]!;
   const before = cloneModel(model);

@@ -10,7 +10,7 @@ import type { Notice } from '../outcome.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { decimateSweep } from './decimate-sweep.ts';
-import { createDistanceScale } from './distance-scale.ts';
+import { createDistanceScale, lengthNotice } from './distance-scale.ts';
 import type { Echo } from './echo.ts';
 import { dropNothings, extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
 import { type EndSearch, findEnd, leaveUnseenEnd, reviseEnd } from './find-end.ts';
@@ -77,9 +77,33 @@ export function solveLine(
   const { delaySPerM } = request;
   const roundTripS = describedM === null || delaySPerM === undefined ? null : 2 * describedM * delaySPerM;
   const thinned = roundTripS === null ? sweep : decimateSweep(sweep, roundTripS);
-  const { solution, model, foundLine } = solveThinned({ ...request, sweep: thinned }, onProgress);
+  const asDescribed = solveThinned({ ...request, sweep: thinned }, onProgress);
+  const { solution, model, foundLine } = betterWithoutLength(request, thinned, asDescribed) ?? asDescribed;
   if (thinned === sweep) return solution;
   return { ...solution, modelGamma: modelOn(sweep, foundLine, model) };
+}
+
+/** A described length is given up when without it this share of what was left unexplained remains. */
+const GIVEN_UP_SHARE = 0.3;
+
+/**
+ * A line of one section that explains its sweep badly is solved once more with its length unknown: lengths on site are
+ * often guessed.
+ *
+ * @returns Null where that is not tried or not much better.
+ */
+function betterWithoutLength(request: SolveRequest, sweep: Sweep, described: Solved): Solved | null {
+  const [only, another] = request.line.sections;
+  const unexplained = 1 - described.solution.explained;
+  if (another || only?.type !== 'coax' || only.lengthM === null) return null;
+  if (unexplained < 1 - WELL_EXPLAINED || described.solution.endsEarly) return null;
+  const line: Line = { ...request.line, sections: [{ ...only, lengthM: null }] };
+  const free = solveThinned({ ...request, sweep, line, lineDescribed: false }, () => {});
+  if (1 - free.solution.explained > GIVEN_UP_SHARE * unexplained) return null;
+  const { lengthM } = free.solution;
+  const off = lengthM / only.lengthM - 1;
+  const notices = [lengthNotice(lengthM, only.lengthM, off), ...free.solution.notices];
+  return { ...free, solution: { ...free.solution, notices } };
 }
 
 /** The reading of a solved model at the frequencies of a sweep. */
