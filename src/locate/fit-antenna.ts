@@ -59,7 +59,7 @@ function settle(context: FitContext, model: LineModel, freedom: Freedom, maxIter
   linearise(context, model, freedom, 1);
   const points = context.weight.reduce((sum, w) => sum + w, 0);
   const variance = Math.max(residualEnergy(context) / (2 * points), 1e-10);
-  refine(context, model, freedom, { variance, maxIterations, tolerance: 1e-3 });
+  refine(context, model, freedom, { variance, maxIterations });
 }
 
 /** [a, b, Q, f0] of the resonance that explains most of the residual together with a change of the constant part. */

@@ -28,7 +28,7 @@ export type FitOptions = {
   /** Variance of the residual per real component. */
   readonly variance: number;
   readonly maxIterations: number;
-  /** Relative fall of the cost below which the fit has settled. */
+  /** Fall of the cost, in −2 ln likelihood, below which the fit has settled. */
   readonly tolerance?: number;
 };
 
@@ -38,6 +38,9 @@ export type FitResult = {
   readonly iterations: number;
   readonly settled: boolean;
 };
+
+/** A fall of a tenth moves no parameter by more than a third of its standard deviation. */
+const SETTLED = 0.1;
 
 /** Prepares buffers for fits to one sweep. */
 export function createFitContext(
@@ -72,7 +75,7 @@ export function refine(
   freedom: Freedom,
   options: FitOptions,
 ): FitResult {
-  const tolerance = options.tolerance ?? 1e-4;
+  const tolerance = options.tolerance ?? SETTLED;
   let linear = linearise(context, model, freedom, options.variance, 'some');
   let damping = 1e-3;
   let growth = 2;
@@ -97,7 +100,7 @@ export function refine(
     const cost = evaluateCost(context, model, freedom, options.variance);
     if (cost < linear.cost) {
       const fall = linear.cost - cost;
-      settled = fall < tolerance * Math.max(1, cost * 0.01) && fall < 0.05;
+      settled = fall < tolerance;
       linear = linearise(context, model, freedom, options.variance, 'some');
       damping = Math.max(1e-9, damping / (predicted > 0 && fall > 0.5 * predicted ? 10 : 3));
       growth = 2;
@@ -105,7 +108,7 @@ export function refine(
       parameters.forEach((parameter, k) => {
         parameter.set(before[k]!);
       });
-      settled = cost - linear.cost < 1e-3 * tolerance * Math.max(1, linear.cost);
+      settled = cost - linear.cost < 1e-3 * tolerance;
       damping *= growth;
       growth *= 2;
       if (damping > 1e9) break;

@@ -28,7 +28,7 @@ export type LocalEcho = {
 };
 
 /** Blocks that the sweep is gathered into: an echo two resolutions off the plane still turns little in one. */
-const BLOCKS = 96;
+const BLOCKS = 64;
 
 /**
  * Gathers what comes back from around a place.
@@ -336,6 +336,10 @@ export type LocalHypothesis = {
   readonly priors: (parameters: Float64Array) => number[];
 };
 
+/** Enough for starts that a linear fit has given. */
+const LOCAL_ITERATIONS = 14;
+const LOCAL_TOLERANCE = 1e-4;
+
 /**
  * Fits a hypothesis to what the sweep shows at a place.
  *
@@ -355,5 +359,9 @@ export function fitLocal(echo: LocalEcho, hypothesis: LocalHypothesis, variance:
     }
     out.set(hypothesis.priors(parameters), 2 * blocks);
   };
-  return fitLeastSquares(write, 2 * blocks + priorCount, hypothesis.start, { steps: hypothesis.steps });
+  return fitLeastSquares(write, 2 * blocks + priorCount, hypothesis.start, {
+    steps: hypothesis.steps,
+    maxIterations: LOCAL_ITERATIONS,
+    tolerance: LOCAL_TOLERANCE,
+  });
 }

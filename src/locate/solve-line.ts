@@ -63,6 +63,9 @@ const SEARCH_WINDOW = 'kaiser:5';
 const DESCRIBED_LOSS_SIGMA = 0.03;
 const TYPE_ONLY_LOSS_SIGMA = 0.5;
 
+/** The last fits go on until nothing moves by more than a hundredth of its standard deviation or so. */
+const FULLY_SETTLED = 1e-3;
+
 /** Lead in nats that counts as certain. */
 const KIND_LEAD = 2;
 
@@ -163,7 +166,7 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
     evaluateCost(context, model, ALL_FREE, 1);
     const variance = residualVariance(context);
     const freedom = leaveUnseenEnd(context, model, variance) ? { ...ALL_FREE, end: false } : ALL_FREE;
-    refine(context, model, freedom, { variance, maxIterations });
+    refine(context, model, freedom, { variance, maxIterations, tolerance: FULLY_SETTLED });
   };
   fitAll(10);
   const joints = confirmJoints(model, judged);
