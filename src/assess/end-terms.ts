@@ -46,8 +46,8 @@ const RESIDUE_SPAN_S = 1.2e-9;
 /** The residue's delays stand so much closer than the band tells apart: what lies between two is then theirs to show. */
 const FINER = 2;
 
-/** RMS of the tracking residue: −42 dB. Common practice for a correction made in the field. */
-const TRACKING = 0.0075;
+/** RMS of the tracking residue: −44 dB. Common practice for a correction made in the field. */
+const TRACKING = 0.0065;
 
 /** How far the end may stand off its place, as a round-trip delay, s: tape, fringe and what the fit left in doubt. */
 const DELAY_SIGMA_S = 0.3e-9;
