@@ -427,7 +427,8 @@ function bestAntenna(
     const model = cloneModel(base);
     placeEnd(model, distanceM, search);
     model.end = startingEnd('antenna', 0);
-    fitAntenna(context, model, freedom, FIRST_RESONANCES);
+    // The loss is left as it is for a first look: an antenna takes up its little error.
+    fitAntenna(context, model, { ...freedom, loss: false }, FIRST_RESONANCES);
     // What is left over, in −2 ln likelihood of its own variance, and what the priors think of it.
     const energy = Math.max(residualEnergy(context), 1e-14);
     const priors = evaluateCost(context, model, ALL_FREE, energy) - 1;
