@@ -3,6 +3,7 @@
  * and closing them does.
  */
 import { groupDelaySPerM, sectionAt } from '../line/medium-run.ts';
+import type { PlacedLump } from '../locate/fit-lumps.ts';
 import type { PureType } from '../locate/probe.ts';
 import { localUpperFloor, quantile } from '../numerics/statistics.ts';
 import { type Difference, fitChange, fitJoint, takeOut } from './compare-place.ts';
@@ -19,6 +20,8 @@ export type FoundChange = {
   readonly joint: number | null;
   /** RMS reflection at its place. */
   readonly reflection: number;
+  /** What was taken out for it. */
+  readonly lump: PlacedLump;
 };
 
 export type FindRequest = {
@@ -58,6 +61,7 @@ const JOINT_REFLECTION = 0.012;
 const JOINT_LEAD = 9;
 const LEAST_JOINT_REFLECTION = 0.005;
 const RESISTIVE_SHARE = 0.1;
+const MOST_OVER_SHOWN = 1.6;
 
 /** A lump takes twice its reflection off what is behind it; an end that rings shows half as much again beside its peak. */
 const WEAKENED = 3;
@@ -105,6 +109,7 @@ function strongest(
   const endM = request.jointM[request.jointM.length - 1]!;
   const near = Math.ceil(resolutionM / tracer.stepM);
   const folded = foldedPlacesM(request, found);
+  const smearM = 1.5 * resolutionM + SMEARED * Math.max(...request.reachM);
   const endSize = ownSizes.reduce((most, size) => Math.max(most, size), 0);
   let best: Candidate | null = null;
   for (let k = 1; k + 1 < sizes.length; k++) {
@@ -118,11 +123,7 @@ function strongest(
     let own = 0;
     for (let i = Math.max(0, k - near); i <= Math.min(sizes.length - 1, k + near); i++)
       own = Math.max(own, ownSizes[i]!);
-    const fold = folded.some(
-      (m) => distanceM > m - 1.5 * resolutionM && distanceM < m + 1.5 * resolutionM + RINGING_M,
-    )
-      ? FOLDED_SHARE * endSize
-      : 0;
+    const fold = folded.some((m) => Math.abs(distanceM - m) < smearM) ? FOLDED_SHARE * endSize : 0;
     const halo = found
       .filter((change) => Math.abs(change.distanceM - distanceM) < HALO_RESOLUTIONS * resolutionM)
       .reduce((sum, change) => sum + HALO_SHARE * 10 ** (change.levelDb / 20), 0);
@@ -132,9 +133,9 @@ function strongest(
   return best;
 }
 
-/** Share of the end's echo that its bounces off joints have, and how far behind them an antenna rings, m. */
-const FOLDED_SHARE = 0.02;
-const RINGING_M = 0.3;
+/** Share of the end's echo that its bounces off joints have, and by how much of the reach dispersion smears them. */
+const FOLDED_SHARE = 0.01;
+const SMEARED = 0.005;
 
 /**
  * Where bounces between the end and a joint fold back into the line: there the weather moves them the wrong way, and two
@@ -163,9 +164,12 @@ function portM(request: FindRequest): number {
   return RESIDUE_S / 2 / groupDelaySPerM(run, frequencyHz)[0]! + zoneM(request);
 }
 
+/** Length of a connector, m. Common practice. */
+const JOINT_LENGTH_M = 0.05;
+
 /** Half-width of what belongs to a joint, m. */
 function zoneM({ resolutionM }: FindRequest): number {
-  return 0.7 * resolutionM + 0.05;
+  return 0.7 * resolutionM + JOINT_LENGTH_M;
 }
 
 function jointNear(request: FindRequest, distanceM: number): number | null {
@@ -202,6 +206,7 @@ function settle(
     kind: fit.lead < KIND_LEAD ? 'unresolved' : fit.lump.type,
     joint: null,
     reflection: size / throughputAt(request, atM),
+    lump: fit.lump,
   };
 }
 
@@ -219,24 +224,28 @@ function settleJoint(
   let own = 0;
   for (let i = Math.max(0, k - near); i <= Math.min(ownSizes.length - 1, k + near); i++)
     own = Math.max(own, ownSizes[i]! / through);
+  const shownAt = tracer.trace(difference.gamma);
+  const atPoint = Math.round(atM / tracer.stepM);
   const place = { distanceM: jointM[joint - 1]!, sigmaM: 0, joint };
   const isEnd = joint === jointM.length;
   const weakened = found.reduce((sum, change) => sum + WEAKENED * change.reflection, 0);
   const allowed = isEnd ? (END_SHARE + weakened) * own : JOINT_SHARE * own;
   const resistive = fitJoint(difference, atM, 0.5 * resolutionM, variance, own);
-  const isResistive = resistive.lead > JOINT_LEAD;
   const reflection = Math.abs(resistive.strength) / 2;
+  const shown = Math.hypot(shownAt.re[atPoint]!, shownAt.im[atPoint]!) / through;
+  // A resistance that two halves beside it nearly cancel is no more than a fit to what a joint may show.
+  const isResistive = resistive.lead > JOINT_LEAD && reflection < MOST_OVER_SHOWN * shown;
   if (isResistive && reflection > Math.max(LEAST_JOINT_REFLECTION, isEnd ? allowed : RESISTIVE_SHARE * own)) {
     const { type, strength, distanceM } = resistive;
-    const size = takeOut(difference, { type, strength, distanceM });
-    return { ...place, levelDb: levelOf(size), kind: type, reflection };
+    const lump = { type, strength, distanceM };
+    return { ...place, levelDb: levelOf(takeOut(difference, lump)), kind: type, reflection, lump };
   }
   const fit = fitChange(difference, atM, 0.5 * resolutionM, variance);
   if (fit === null) return null;
   const size = takeOut(difference, fit.lump);
   if (size / through < Math.max(JOINT_REFLECTION, allowed)) return null;
   const kind = fit.lead < KIND_LEAD ? 'unresolved' : fit.lump.type;
-  return { ...place, levelDb: levelOf(size), kind, reflection: size / through };
+  return { ...place, levelDb: levelOf(size), kind, reflection: size / through, lump: fit.lump };
 }
 
 function levelOf(size: number): number {
@@ -259,17 +268,31 @@ function throughputAt({ difference: { run } }: FindRequest, distanceM: number): 
   return Math.sqrt(sum / n);
 }
 
-/** Floor of the difference along the line, joints left out; nowhere below what the whole of it shows. */
-function floorOf(request: FindRequest, sizes: Float64Array): Float64Array {
-  const { tracer, resolutionM } = request;
-  const guardCells = Math.ceil((1.5 * resolutionM) / tracer.stepM);
-  const reachCells = Math.max(Math.ceil((15 * resolutionM) / tracer.stepM), Math.ceil(sizes.length * 0.12));
-  const quiet = sizes.filter((_, k) => jointNear(request, k * tracer.stepM) === null);
-  const overall = quiet.length > 8 ? quantile(quiet, 0.5) : quantile(sizes, 0.25);
-  const local = localUpperFloor(sizes, {
-    reachCells: Math.min(reachCells, Math.max(1, sizes.length - guardCells - 2)),
-    guardCells: Math.min(guardCells, Math.max(0, (sizes.length >> 1) - 2)),
+/** What a joint shows around it, in resolutions. */
+const JOINT_SKIRT = 1.2;
+/** Cells that can speak for a line without its joints. */
+const FEWEST_QUIET = 10;
+
+/** Floor of the difference along the line, joints left out; nowhere below the middle of the whole. */
+function floorOf({ tracer, resolutionM, jointM }: FindRequest, sizes: Float64Array): Float64Array {
+  const { stepM } = tracer;
+  const skirtM = JOINT_SKIRT * resolutionM + JOINT_LENGTH_M;
+  const all = Array.from(sizes, (_, k) => k);
+  const between = all.filter((k) => jointM.every((m) => Math.abs(m - k * stepM) > skirtM));
+  const quiet = between.length < FEWEST_QUIET ? all : between;
+  const levels = Float64Array.from(quiet, (k) => sizes[k]!);
+  const guardCells = Math.min(Math.ceil((1.5 * resolutionM) / stepM), (levels.length >> 1) - 2);
+  const reachCells = Math.max(Math.ceil((15 * resolutionM) / stepM), Math.ceil(levels.length * 0.12));
+  const local = localUpperFloor(levels, {
+    reachCells: Math.min(reachCells, levels.length - guardCells - 2),
+    guardCells,
     share: FLOOR_SHARE,
   });
-  return local.map((level) => Math.max(level, overall));
+  const overall = quantile(levels, 0.5);
+  let nearest = 0;
+  return sizes.map((_, k) => {
+    while (nearest + 1 < quiet.length && Math.abs(quiet[nearest + 1]! - k) <= Math.abs(quiet[nearest]! - k))
+      nearest++;
+    return Math.max(local[nearest]!, overall);
+  });
 }

@@ -63,7 +63,10 @@ export function takeOut(difference: Difference, lump: PlacedLump): number {
 }
 
 /** Reflection of a lone lump as seen from the port, at every frequency. */
-function seenReflection({ frequencyHz, run }: Difference, lump: PlacedLump): ComplexArray {
+export function seenReflection(
+  { frequencyHz, run }: Pick<Difference, 'frequencyHz' | 'run'>,
+  lump: PlacedLump,
+): ComplexArray {
   const out = complexZeros(frequencyHz.length);
   writeLocalReflection(
     {
@@ -168,6 +171,9 @@ export function fitJoint(
     ];
     plain = Math.max(plain, fitTables(tables, halves, variance)?.gain ?? 0);
     for (const place of [at - half, at + half]) {
+      // The first account may be larger than a wrench explains: that is for the caller to judge.
+      const large: TableColumn = { reactive: true, at: place, sigma: 1 / top };
+      plain = Math.max(plain, fitTables(tables, [...halves, large], variance)?.gain ?? 0);
       const fit = fitTables(tables, [...halves, { reactive: false, at: place, sigma: 0.5 }], variance);
       if (fit !== null && fit.gain > with_.gain)
         with_ = { gain: fit.gain, strength: fit.strengths[2]!, at: place };
