@@ -209,28 +209,6 @@ export const VERBS = {
       },
     ],
   },
-  compare: {
-    arguments: 'BEFORE AFTER',
-    fewestArguments: 2,
-    mostArguments: 2,
-    summary: 'what has changed between two sweeps of a line',
-    description: [
-      'Takes out what the weather and the instrument do, subtracts the two sweeps, and places and names what is left: ' +
-        'where the line has changed, how large that looks from the port, and of what kind it is. Also how much longer ' +
-        'and lossier the line has become, and its match over the bands of its limits.',
-      'Both sweeps are read by the line of BEFORE; standards, when given, correct both. With --baseline, BEFORE is the ' +
-        'name of a line in the logbook, and its baseline is compared with AFTER. Sweeps taken with other settings are ' +
-        'compared over what they share.',
-      'Exit status 0: unchanged; 1: changed; 2: it could not be done.',
-    ],
-    flags: [...ANALYSIS_FLAGS, 'baseline', 'json'],
-    examples: [
-      {
-        command: 'feedsonde compare samples/north-1.s1p samples/north-1-later.s1p',
-        shows: 'a joint that has corroded',
-      },
-    ],
-  },
   cables: {
     arguments: '[ID]',
     fewestArguments: 0,
@@ -323,15 +301,37 @@ export const VERBS = {
         shows: 'a sweep as the baseline of its line',
       },
       { command: 'feedsonde log add samples/north-1-later.s1p --when 2026-05-11', shows: 'two years later' },
-      {
-        command: 'feedsonde compare --baseline ansel-ridge-north-1 samples/north-1-later.s1p',
-        shows: 'what has changed since the baseline',
-      },
       { command: 'feedsonde log list', shows: 'all entries' },
       { command: 'feedsonde log trend ansel-ridge-north-1', shows: 'how the line has changed' },
       { command: 'feedsonde log show ansel-ridge-north-1', shows: 'its latest entry' },
       { command: 'feedsonde log export logged', shows: 'a folder for another logbook' },
       { command: 'feedsonde log check', shows: 'whether everything is as it was saved' },
+    ],
+  },
+  compare: {
+    arguments: 'BEFORE AFTER',
+    fewestArguments: 2,
+    mostArguments: 2,
+    summary: 'what has changed between two sweeps of a line',
+    description: [
+      'Takes out what the weather and the instrument do, subtracts the two sweeps, and places and names what is left: ' +
+        'where the line has changed, how large that looks from the port, and of what kind it is. Also how much longer ' +
+        'and lossier the line has become, and its match over the bands of its limits.',
+      'Both sweeps are read by the line of BEFORE; standards, when given, correct both. With --baseline, BEFORE is the ' +
+        'name of a line in the logbook, and its baseline is compared with AFTER. Sweeps taken with other settings are ' +
+        'compared over what they share.',
+      'Exit status 0: unchanged; 1: changed; 2: it could not be done.',
+    ],
+    flags: [...ANALYSIS_FLAGS, 'baseline', 'json'],
+    examples: [
+      {
+        command: 'feedsonde compare samples/north-1.s1p samples/north-1-later.s1p',
+        shows: 'a joint that has corroded',
+      },
+      {
+        command: 'feedsonde compare --baseline ansel-ridge-north-1 samples/north-1-later.s1p',
+        shows: 'the same against the baseline in the logbook',
+      },
     ],
   },
 } as const satisfies Readonly<Record<string, VerbSpec>>;
