@@ -28,6 +28,7 @@ export type CompareDocument = {
     readonly distanceSigmaM: number | null;
     readonly levelDb: number | null;
     readonly kind: Change['kind'];
+    readonly gone: boolean;
     readonly joint: Change['joint'];
     readonly place: string;
   }[];
@@ -65,6 +66,7 @@ export function compareDocument(
       distanceSigmaM: known(change.distanceSigmaM),
       levelDb: known(change.levelDb),
       kind: change.kind,
+      gone: change.gone,
       joint: change.joint && { index: change.joint.index, name: change.joint.name },
       place: change.place,
     })),

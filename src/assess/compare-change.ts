@@ -1,5 +1,6 @@
 /** From a change that was found to one that is reported: distance in metres as scaled, its doubt, and where it lies. */
 import { jointName, type Line } from '../line/line.ts';
+import type { PureType } from '../locate/probe.ts';
 import type { Solution } from '../locate/solution.ts';
 import type { FoundChange } from './compare-find.ts';
 import type { Change } from './comparison.ts';
@@ -15,6 +16,7 @@ export function placeChange(
 ): Change {
   const distanceM = found.distanceM * solution.distanceScale;
   const section = sectionAtM(line, solution, distanceM);
+  const mended = wasThere(solution, found, distanceM, resolutionM);
   return {
     distanceM,
     distanceSigmaM: Math.hypot(
@@ -22,10 +24,42 @@ export function placeChange(
       Math.max(found.sigmaM, LEAST_SIGMA_SHARE * resolutionM),
     ),
     levelDb: found.levelDb,
-    kind: found.kind,
+    kind: mended ?? found.kind,
+    gone: mended !== null,
     joint: found.joint === null ? null : { index: found.joint, name: jointName(line, found.joint) },
     place: placeText(line, { distanceM, jointIndex: found.joint, section }, lengthWords),
   };
+}
+
+/** What looks like the coming of a kind when its dual goes. */
+const DUALS: Readonly<Record<PureType, PureType>> = {
+  'series-resistance': 'shunt-leakage',
+  'shunt-leakage': 'series-resistance',
+  'series-inductance': 'shunt-capacitance',
+  'shunt-capacitance': 'series-inductance',
+};
+
+/** An echo must be this large beside the change to be what has gone, dB. */
+const AS_LARGE_DB = 4;
+
+/** Kind of the earlier sweep's echo whose going the change is; null where nothing of the kind was there. */
+function wasThere(
+  { echoes }: Solution,
+  found: FoundChange,
+  distanceM: number,
+  resolutionM: number,
+): PureType | null {
+  if (found.kind === 'unresolved') return null;
+  const dual = DUALS[found.kind];
+  const there = echoes.some(
+    (echo) =>
+      echo.kind === dual &&
+      (found.joint === null
+        ? Math.abs(echo.distanceM - distanceM) < resolutionM / 2
+        : echo.joint?.index === found.joint) &&
+      -echo.returnLossDb > found.levelDb - AS_LARGE_DB,
+  );
+  return there ? dual : null;
 }
 
 /** What structure and templates leave in a place, as a share of a resolution. */

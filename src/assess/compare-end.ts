@@ -48,6 +48,7 @@ export function endChange(
     distanceM,
     distanceSigmaM: Math.max(is.lengthSigmaM, was.lengthSigmaM),
     levelDb: 20 * Math.log10(changed + 1e-12),
+    gone: false,
     kind: is.end === 'open' || is.end === 'short' ? is.end : 'termination',
     joint: atEnd ? { index, name: jointName(line, index) } : null,
     place: placeText(

@@ -12,6 +12,8 @@ export type Change = {
   /** Apparent RMS size of the complex change over the common band, dB, negative. */
   readonly levelDb: number;
   readonly kind: ChangeKind;
+  /** True where what the earlier sweep showed is no longer there: mended. */
+  readonly gone: boolean;
   readonly joint: { readonly index: number; readonly name: string } | null;
   readonly place: string;
 };

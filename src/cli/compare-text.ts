@@ -100,13 +100,12 @@ function changeLines(change: Change, { columns, units, paint }: CompareTextOptio
     ...wrapText(head, columns).map((line) => paint('fault', line)),
     ...hanging(
       '  ',
-      `${kindWords(change.kind)}, ${levelText(-change.levelDb)} as seen from the port`,
+      `${kindWords(change.kind)}${change.gone ? ' gone' : ''}, ${levelText(-change.levelDb)} as seen from the port`,
       columns,
     ),
   ];
 }
 
-/** A change tells what has been added; taking a lump away looks like adding its dual. */
 function kindWords(kind: ChangeKind): string {
   return kind === 'unresolved' ? 'of unresolved kind' : KIND_WORDS[kind];
 }

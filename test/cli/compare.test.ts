@@ -19,12 +19,21 @@ describe('feedsonde compare', () => {
     expect(document.changes).toHaveLength(1);
     expect(document.changes[0]).toMatchObject({
       kind: 'series-resistance',
+      gone: false,
       joint: { index: 3, name: 'main run / top jumper' },
       place: 'at joint 3, main run to top jumper',
     });
     expect(Math.abs(document.changes[0]!.distanceM! - 48)).toBeLessThan(0.3);
     expect(document.changes[0]!.levelDb).toBeLessThan(-20);
     expect(document.bands[0]!.afterDb!).toBeLessThan(document.bands[0]!.beforeDb!);
+  });
+
+  it('calls a mended joint what it was, gone', async () => {
+    const { status, stdout } = await runCli(['compare', AFTER, BEFORE, '--json']);
+    expect(status).toBe(1);
+    expect((JSON.parse(stdout) as CompareDocument).changes).toMatchObject([
+      { kind: 'series-resistance', gone: true, joint: { index: 3 } },
+    ]);
   });
 
   it('tells it in words within 80 columns, in feet where asked', async () => {
@@ -51,7 +60,12 @@ describe('feedsonde compare', () => {
     expect(status).toBe(1);
     const document = JSON.parse(stdout) as CompareDocument;
     expect(document.changes.at(-1)).toMatchObject({ kind: 'open', joint: null });
-    expect(document.notices.map(({ code }) => code)).toContain('not-alike');
+  });
+
+  it('doubts that two sweeps that differ everywhere are of one line', async () => {
+    const { stdout } = await runCli(['compare', 'samples/south-1.s1p', 'samples/south-2.s1p', '--json']);
+    const { notices } = JSON.parse(stdout) as CompareDocument;
+    expect(notices.map(({ code }) => code)).toContain('not-alike');
   });
 
   it('compares the baseline of a logged line with a file', async () => {
