@@ -7,7 +7,7 @@
  */
 import { type EndModel, writeEnd } from '../line/end.ts';
 import type { EndKind, Line } from '../line/line.ts';
-import { complexZeros } from '../numerics/complex.ts';
+import { complexEnergy, complexZeros } from '../numerics/complex.ts';
 import { findPeaks } from '../numerics/peaks.ts';
 import { assertNever } from '../outcome.ts';
 import { fitAntenna } from './fit-antenna.ts';
@@ -159,6 +159,9 @@ export function reviseEnd(
 /** Evidence for the end's own echo, in −2 ln likelihood, under which it is noise. */
 const UNSEEN = 40;
 
+/** A load that returns less than this, −46 dB, can't be told from what cable as sold shows here and there. */
+const FAINTEST_LOAD = 0.005;
+
 /**
  * A load that reflects too little to be seen is taken as matched and left where the description puts it, instead of
  * drawing every distance to where noise would have it.
@@ -174,7 +177,8 @@ export function leaveUnseenEnd(context: FitContext, model: LineModel, variance: 
   for (let i = 0; i < context.weight.length; i++)
     energy +=
       context.weight[i]! * (through.re[i]! ** 2 + through.im[i]! ** 2) * (own.re[i]! ** 2 + own.im[i]! ** 2);
-  if (energy > UNSEEN * variance) return false;
+  const level = Math.sqrt(complexEnergy(own) / own.re.length);
+  if (energy > UNSEEN * variance && level > FAINTEST_LOAD) return false;
   model.end = { type: 'load', parameters: [1, 0] };
   const last = model.boundaryM.length - 1;
   const others = new Set([...model.boundaryM.keys()].filter((i) => i !== last));
@@ -409,6 +413,9 @@ function placeEnd(model: LineModel, distanceM: number, search: EndSearch): void 
 /** What another place must be better by than the described one, while what stands before the end is not explained yet. */
 const DESCRIBED_LEAD = 40;
 
+/** Spread of the loss, relative, above which only the cable's type is known. */
+const DESCRIBED_LOSS = 0.1;
+
 /** Resonances that a first look at a starting distance fits. */
 const FIRST_RESONANCES = 2;
 
@@ -427,8 +434,9 @@ function bestAntenna(
     const model = cloneModel(base);
     placeEnd(model, distanceM, search);
     model.end = startingEnd('antenna', 0);
-    // The loss is left as it is for a first look: an antenna takes up its little error.
-    fitAntenna(context, model, { ...freedom, loss: false }, FIRST_RESONANCES);
+    // A loss that is described is left as it is for a first look: an antenna takes up its little error.
+    const loss = search.lossSigma > DESCRIBED_LOSS;
+    fitAntenna(context, model, { ...freedom, loss }, FIRST_RESONANCES);
     // What is left over, in −2 ln likelihood of its own variance, and what the priors think of it.
     const energy = Math.max(residualEnergy(context), 1e-14);
     const priors = evaluateCost(context, model, ALL_FREE, energy) - 1;
@@ -519,13 +527,13 @@ function phaseStarts(
   return starts;
 }
 
-/** A load that hardly reflects can't be told from a flaw before it, and is looked for where it is described. */
+/** A load reflects little and can't be told from a flaw before it, so it is looked for where it is described. */
 function isFaint(kind: EndKind, value: number): boolean {
   return kind === 'load' && Math.abs(value) < FAINT_LOAD;
 }
 
-/** −23 dB, and how far from its described place such a load may be taken to stand. */
-const FAINT_LOAD = 0.07;
+/** −10 dB, and how far from its described place such a load may be taken to stand. */
+const FAINT_LOAD = 0.3;
 const FAINT_SIGMAS = 1.2;
 
 function startingEnd(kind: Exclude<EndKind, 'unknown'>, value: number): EndModel {

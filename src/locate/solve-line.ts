@@ -98,7 +98,8 @@ const GIVEN_UP_SHARE = 0.3;
 function betterWithoutLength(request: SolveRequest, sweep: Sweep, described: Solved): Solved | null {
   const [only, another] = request.line.sections;
   const unexplained = 1 - described.solution.explained;
-  if (another || only?.type !== 'coax' || only.lengthM === null) return null;
+  // A load may reflect nothing, and the strongest flaw would pass for the end.
+  if (another || only?.type !== 'coax' || only.lengthM === null || request.line.end === 'load') return null;
   if (unexplained < 1 - WELL_EXPLAINED || described.solution.endsEarly) return null;
   const line: Line = { ...request.line, sections: [{ ...only, lengthM: null }] };
   const free = solveThinned({ ...request, sweep, line, lineDescribed: false }, () => {});
