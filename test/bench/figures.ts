@@ -189,6 +189,7 @@ const FIGURES: Readonly<Record<SuiteName, readonly Figure[]>> = {
     kindRight(0.85, 'kind right in narrow sweeps, of found', isNarrow),
     ...COMMON,
   ],
+  'last-joint': [found(null), kindRight(null), ...COMMON],
   healthy: [
     falsePerLine(0.02),
     lines(

@@ -60,13 +60,17 @@ export function drawCableDistance(
 }
 
 /**
- * Joints, counted from 1, at which a fault shows: not the one at the port, under the calibration's residue, and
- * not the one at an open or short end, where an element in series or across the end carries no current or no voltage.
+ * Joints, counted from 1, at which a fault shows by itself: not the one at the port, under the calibration's residue, and
+ * not the last one, which a sweep from one side can't part from what it feeds.
  */
 export function visibleJoints(recipe: Recipe): number[] {
-  const last = recipe.run.sections.length + 1;
+  return Array.from({ length: Math.max(0, recipe.run.sections.length - 1) }, (_, i) => i + 2);
+}
+
+/** The joint before a load or antenna; none before an open or short, where a fault carries no current or no voltage. */
+export function lastJoint(recipe: Recipe): number[] {
   const bareEnd = recipe.run.end.kind === 'open' || recipe.run.end.kind === 'short';
-  return Array.from({ length: last - 1 }, (_, i) => i + 2).filter((joint) => joint < last || !bareEnd);
+  return bareEnd ? [] : [recipe.run.sections.length + 1];
 }
 
 /** A lumped fault inside a cable that looks `levelDb` large from the port. */
@@ -87,8 +91,12 @@ export function faultInCable(
 }
 
 /** A bad joint; null when the run has none where it would show. */
-export function faultAtJoint(recipe: Recipe, draws: Draws, fault?: Fault): PlacedFault | null {
-  const joints = visibleJoints(recipe);
+export function faultAtJoint(
+  recipe: Recipe,
+  draws: Draws,
+  fault?: Fault,
+  joints: readonly number[] = visibleJoints(recipe),
+): PlacedFault | null {
   if (joints.length === 0) return null;
   const joint = draws.pick(joints);
   return {

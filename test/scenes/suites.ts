@@ -5,7 +5,14 @@ import { NO_CONNECTOR } from './connector.ts';
 import { type Draws, seededDraws } from './draws.ts';
 import { LUMPED_KINDS, type LumpedKind } from './fault.ts';
 import { NO_RESIDUE } from './instrument.ts';
-import { drawCableDistance, faultAtJoint, faultInCable, resolutionAt, withFaults } from './place-fault.ts';
+import {
+  drawCableDistance,
+  faultAtJoint,
+  faultInCable,
+  lastJoint,
+  resolutionAt,
+  withFaults,
+} from './place-fault.ts';
 import { drawHealthy, type Recipe, type RecipeOptions, USUAL } from './recipe.ts';
 import type { RippleMeasure } from './ripple.ts';
 import { jointDistances, type PlacedFault } from './run.ts';
@@ -21,6 +28,7 @@ export const SUITES = {
   pairs,
   'behind-strong': behindStrong,
   joints,
+  'last-joint': lastJointBad,
   healthy: drawHealthy,
   'unknown-length': unknownLength,
   wet: wetOrDry,
@@ -128,6 +136,13 @@ function behindStrong(draws: Draws, options: RecipeOptions): Recipe | null {
 function joints(draws: Draws, options: RecipeOptions): Recipe | null {
   const recipe = drawHealthy(draws, options);
   const atJoint = faultAtJoint(recipe, draws);
+  return atJoint && withFaults(recipe, [atJoint]);
+}
+
+/** A bad joint right before a load or an antenna. */
+function lastJointBad(draws: Draws, options: RecipeOptions): Recipe | null {
+  const recipe = drawHealthy(draws, options);
+  const atJoint = faultAtJoint(recipe, draws, undefined, lastJoint(recipe));
   return atJoint && withFaults(recipe, [atJoint]);
 }
 
