@@ -8,7 +8,6 @@ import { spacingOf } from '../sweep/spacing.ts';
 
 import type { Analysis } from './analysis.ts';
 import { analysisNotices } from './analysis-notices.ts';
-import { limitsVerdictOf, type VerdictEntry, verdictEntry } from './limits-entry.ts';
 
 /** Version of the documents' form; rises when a reader of the old form would misread the new one. */
 export const SCHEMA_VERSION = 1;
@@ -82,8 +81,6 @@ export type LocateDocument = {
     readonly checks: readonly string[];
     readonly bring: readonly string[];
   }[];
-  /** The limits of the line, judged. */
-  readonly verdict: VerdictEntry;
   readonly notices: readonly Notice[];
 };
 
@@ -158,7 +155,6 @@ export function locateDocument(
       checks: finding.checks,
       bring: finding.bring,
     })),
-    verdict: verdictEntry(limitsVerdictOf(analysis)),
     notices: [...notices, ...analysisNotices(analysis)].map(({ code, what }) => ({ code, what })),
   };
 }

@@ -4,7 +4,7 @@ import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { analysisNotices } from '../app/analysis-notices.ts';
 import { CAUTIONS } from '../app/cautions.ts';
 import { echoWords } from '../app/echo-words.ts';
-import { limitsVerdictOf } from '../app/limits-entry.ts';
+import { limitsVerdictOf } from '../app/limits-verdict.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import { verdictOf, verdictWords, worstOf } from '../app/verdict.ts';
 import type { Finding } from '../assess/finding.ts';

@@ -196,7 +196,8 @@ function solveThinned(request: SolveRequest, onProgress: (stage: string, fractio
   const water = findWater(line, model, scale, isFaulty(joints, lumps));
   evaluateCost(context, model, ALL_FREE, 1);
   const modelGamma = complexCopy(context.modelled);
-  const explained = 1 - complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
+  const share = complexEnergy(context.residual) / Math.max(complexEnergy(sweep.gamma), 1e-300);
+  const explained = Math.max(0, 1 - share);
   const poor = explained < WELL_EXPLAINED;
   const leftDb = residualDb(context);
   const loss = fittedLoss(context, model, variance);

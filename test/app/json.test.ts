@@ -7,7 +7,7 @@ const document = locateDocument(analysis, 'feedsonde 0.0.0', [{ code: 'line-besi
 
 /** Schema 1, key by key, in order; a list stands for each of its entries. */
 const SCHEMA_1 = {
-  '': 'schema tool command sweep reach line echoes sections fit findings verdict notices',
+  '': 'schema tool command sweep reach line echoes sections fit findings notices',
   sweep: 'file port startHz stopHz points stepHz even portOhm',
   reach: 'resolutionM unambiguousM weakestReturnLossDb impedanceProfile',
   line: 'name lengthM describedLengthM delayNs end scaledTo',
@@ -18,8 +18,6 @@ const SCHEMA_1 = {
   'sections[]': 'fromM toM excessLossDb excessLossSigmaDb kind',
   fit: 'residualDb explained elements',
   'findings[]': 'severity echo kind distanceM where what confidence causes checks bring',
-  verdict: 'pass text limits',
-  'verdict.limits[]': 'limit band limitDb valueDb marginDb atHz where pass isDefault why',
   'notices[]': 'code what',
 };
 
