@@ -6,6 +6,7 @@ import { groupDelaySPerM, sectionAt } from '../line/medium-run.ts';
 import type { PlacedLump } from '../locate/fit-lumps.ts';
 import type { PureType } from '../locate/probe.ts';
 import { localUpperFloor, quantile } from '../numerics/statistics.ts';
+import { foldedBounces, foldedSize } from './compare-folds.ts';
 import { type Difference, fitChange, fitJoint, takeOut } from './compare-place.ts';
 import { type SeenTracer, sizesOf } from './compare-trace.ts';
 
@@ -31,7 +32,7 @@ export type FindRequest = {
   readonly resolutionM: number;
   /** Distances of joints 1 … n+1, m; the first is the port, the last the end. */
   readonly jointM: readonly number[];
-  /** Sizes of the later sweep's own trace. */
+  /** Sizes of the trace of the line itself, as it was before and would look on the later day. */
   readonly ownSizes: Float64Array;
   /** Distances at which the two sweeps fold, m. */
   readonly reachM: readonly [number, number];
@@ -54,8 +55,8 @@ const HALO_SHARE = 0.08;
 const HALO_RESOLUTIONS = 3;
 
 /** Share of its own echo, and reflection of its own, that opening and closing a joint may change. */
-const JOINT_SHARE = 0.5;
-const JOINT_REFLECTION = 0.012;
+const JOINT_SHARE = 0.4;
+const JOINT_REFLECTION = 0.009;
 
 /** Lead of a resistance at a joint over re-torquing, nats, and the reflection it must have. */
 const JOINT_LEAD = 9;
@@ -108,9 +109,7 @@ function strongest(
   const { tracer, ownSizes, resolutionM } = request;
   const endM = request.jointM[request.jointM.length - 1]!;
   const near = Math.ceil(resolutionM / tracer.stepM);
-  const folded = foldedPlacesM(request, found);
-  const smearM = 1.5 * resolutionM + SMEARED * Math.max(...request.reachM);
-  const endSize = ownSizes.reduce((most, size) => Math.max(most, size), 0);
+  const folded = foldedBounces(request, found);
   let best: Candidate | null = null;
   for (let k = 1; k + 1 < sizes.length; k++) {
     if (sizes[k]! < sizes[k - 1]! || sizes[k]! < sizes[k + 1]!) continue;
@@ -123,7 +122,7 @@ function strongest(
     let own = 0;
     for (let i = Math.max(0, k - near); i <= Math.min(sizes.length - 1, k + near); i++)
       own = Math.max(own, ownSizes[i]!);
-    const fold = folded.some((m) => Math.abs(distanceM - m) < smearM) ? FOLDED_SHARE * endSize : 0;
+    const fold = foldedSize(folded, distanceM);
     const halo = found
       .filter((change) => Math.abs(change.distanceM - distanceM) < HALO_RESOLUTIONS * resolutionM)
       .reduce((sum, change) => sum + HALO_SHARE * 10 ** (change.levelDb / 20), 0);
@@ -132,28 +131,6 @@ function strongest(
   }
   return best;
 }
-
-/** Share of the end's echo that its bounces off joints have, and by how much of the reach dispersion smears them. */
-const FOLDED_SHARE = 0.01;
-const SMEARED = 0.005;
-
-/**
- * Where bounces between the end and a joint fold back into the line: there the weather moves them the wrong way, and two
- * grids fold them to two places.
- */
-function foldedPlacesM({ jointM, reachM }: FindRequest, found: readonly FoundChange[]): number[] {
-  const endM = jointM[jointM.length - 1]!;
-  const places = [...jointM.slice(0, -1), ...found.map((change) => change.distanceM)];
-  return reachM.flatMap((reach) =>
-    places
-      .map((m) => 2 * endM - m)
-      .filter((m) => m > NEAR_REACH * reach)
-      .map((m) => Math.abs(m - reach * Math.round(m / reach))),
-  );
-}
-
-/** Share of the reach from which a sweep's own estimate of what is between its points is no longer good. */
-const NEAR_REACH = 0.9;
 
 /** Round trip within which residues of the correction lie, s. */
 const RESIDUE_S = 1.2e-9;

@@ -81,7 +81,7 @@ export function subtractSweeps(
       tracer: later,
       resolutionM,
       jointM: [...solved.jointM.filter((m) => m < seenToM), seenToM],
-      ownSizes: sizesOf(later.trace(after)),
+      ownSizes: sizesOf(later.trace(maskedBy(complexSubtract(after, gamma), weight))),
       reachM: [reachM(beforeStepHz, solved), reachM(medianStepHz(frequencyHz), solved)],
     });
     aside = found.filter(({ levelDb }) => levelDb > WEIGHS_DB);

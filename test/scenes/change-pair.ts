@@ -154,14 +154,21 @@ function cableChange(recipe: Recipe, draws: Draws): PlacedFault | null {
 }
 
 /**
- * At a joint between two sections, resistance or leakage larger than what opening and closing it does. At the end's own
- * joint so small a change is as large as the residues of two corrections, −40 to −46 dB of all that the end reflects.
+ * At a joint between two sections, resistance or leakage larger than what opening and closing it does; as clear of port
+ * and end as changes in a cable are. At the port and the end so small a change is as large as the residues of two
+ * corrections, −40 to −46 dB of all that comes back.
  */
 function jointChange(recipe: Recipe, draws: Draws): PlacedFault | null {
-  const joints = visibleJoints(recipe).filter((joint) => joint <= recipe.run.sections.length);
+  const places = jointDistances(recipe.run.sections);
+  const lengthM = places.at(-1)!;
+  const joints = visibleJoints(recipe).filter((joint) => {
+    const distanceM = places[joint - 1]!;
+    const clearM = Math.max(0.5, 1.5 * resolutionAt(recipe, distanceM));
+    return distanceM > Math.max(1, clearM) && distanceM < lengthM - clearM;
+  });
   if (joints.length === 0) return null;
   const joint = draws.pick(joints);
-  const distanceM = jointDistances(recipe.run.sections)[joint - 1]!;
+  const distanceM = places[joint - 1]!;
   const kind = draws.pick(['series-resistance', 'shunt-leakage'] as const);
   const fault = faultSeenAs(recipe, kind, draws.uniform(35, 45), distanceM);
   return { fault, distanceM, joint, half: draws.pick(['near', 'far']) };
