@@ -108,7 +108,7 @@ function strongest(
 ): Candidate | null {
   const { tracer, ownSizes, resolutionM } = request;
   const endM = request.jointM[request.jointM.length - 1]!;
-  const near = Math.ceil(resolutionM / tracer.stepM);
+  const near = Math.ceil(resolutionM / 2 / tracer.stepM);
   const folded = foldedBounces(request, found);
   let best: Candidate | null = null;
   for (let k = 1; k + 1 < sizes.length; k++) {
@@ -138,7 +138,7 @@ const RESIDUE_S = 1.2e-9;
 /** What belongs to the port, m: its joint, and what the correction leaves behind it. */
 function portM(request: FindRequest): number {
   const { frequencyHz, run } = request.difference;
-  return RESIDUE_S / 2 / groupDelaySPerM(run, frequencyHz)[0]! + zoneM(request);
+  return RESIDUE_S / 2 / groupDelaySPerM(run, frequencyHz)[0]! + request.resolutionM / 2;
 }
 
 /** Length of a connector, m. Common practice. */
