@@ -19,6 +19,7 @@ import {
   residualEnergy,
   residualVariance,
 } from './fit-cascade.ts';
+import { medianStepHz } from './grid-weights.ts';
 import {
   ALL_FREE,
   cloneModel,
@@ -205,6 +206,17 @@ function endLevel(context: FitContext, model: LineModel): number {
   return Math.sqrt(power / Math.max(weight, 1e-30));
 }
 
+/** Middle step over the widest; 1 for an even sweep. */
+function evennessOf(frequencyHz: Float64Array): number {
+  let widest = 0;
+  for (let i = 1; i < frequencyHz.length; i++)
+    widest = Math.max(widest, frequencyHz[i]! - frequencyHz[i - 1]!);
+  return Math.min(1, medianStepHz(frequencyHz) / widest);
+}
+
+/** Share of the unambiguous distance before the fold that is not searched. */
+const FOLD_SHARE = 0.03;
+
 function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
   const { line } = search;
   const known = line.sections.slice(0, -1).map((section) => section.lengthM!);
@@ -212,8 +224,11 @@ function findUnknownEnd(context: FitContext, search: EndSearch): EndFound {
   const guess = createLineModel(line, context.frequencyHz, search.portOhm, [...known, 1], {
     lossSigma: search.lossSigma,
   });
-  const trace = measuredTrace(context, guess, search, search.unambiguousM);
-  const start = Math.max(knownM, search.resolutionM * 0.75);
+  // Just before the fold stands the foot of what is at the port; an uneven sweep folds first where its steps are wide.
+  const unambiguousM = search.unambiguousM * evennessOf(context.frequencyHz);
+  const foldM = unambiguousM - Math.max(4 * search.resolutionM, FOLD_SHARE * unambiguousM);
+  const trace = measuredTrace(context, guess, search, Math.max(foldM, 4 * search.resolutionM));
+  const start = Math.max(knownM, search.resolutionM * 0.75, PORT_REACH_M);
   const at = lastOwnEcho(trace, start, search.resolutionM);
   const lengthM = Math.max(0.05, at.distanceM - knownM);
   const model = createLineModel(line, context.frequencyHz, search.portOhm, [...known, lengthM], {
@@ -272,6 +287,13 @@ function fullReflectionBefore(trace: ResidualTrace, beforeM: number, resolutionM
   return first ? trace.fromM + first.index * trace.stepM : null;
 }
 
+/** Evidence of a later echo, as a share of the strongest one's, from which it may be the end; bounces follow large ones. */
+const LATER_SHARE = { behindLarge: 0.06, behindSmall: 0.018 };
+const LARGE_LEVEL = 0.3;
+
+/** What stands nearer than this is the port's own, m. */
+const PORT_REACH_M = 0.3;
+
 /** The last echo that stands by itself: not a re-reflection between stronger ones before it. */
 function lastOwnEcho(
   trace: ResidualTrace,
@@ -290,8 +312,11 @@ function lastOwnEcho(
   });
   let chosen = at(strongest);
   if (chosen.level > FULL_REFLECTION_LEVEL) return chosen;
+  const share = chosen.level > LARGE_LEVEL ? LATER_SHARE.behindLarge : LATER_SHARE.behindSmall;
   const peaks = findPeaks(trace.density)
-    .filter((peak) => peak.index > strongest && trace.density[peak.index]! > 0.05 * trace.density[strongest]!)
+    .filter(
+      (peak) => peak.index > strongest && trace.density[peak.index]! > share * trace.density[strongest]!,
+    )
     .map((peak) => at(peak.index));
   for (const peak of peaks) {
     const bounce = Math.abs(peak.distanceM - 2 * chosen.distanceM) < resolutionM;
