@@ -89,6 +89,9 @@ export function solveLine(
 /** A described length is given up when without it this share of what was left unexplained remains. */
 const GIVEN_UP_SHARE = 0.3;
 
+/** An end nearer than this many 6 dB widths of an echo is no length that a sweep could tell. */
+const LEAST_CELLS_TO_END = 4;
+
 /**
  * A line of one section that explains its sweep badly is solved once more with its length unknown: lengths on site are
  * often guessed.
@@ -103,8 +106,9 @@ function betterWithoutLength(request: SolveRequest, sweep: Sweep, described: Sol
   if (unexplained < 1 - WELL_EXPLAINED || described.solution.endsEarly) return null;
   const line: Line = { ...request.line, sections: [{ ...only, lengthM: null }] };
   const free = solveThinned({ ...request, sweep, line, lineDescribed: false }, () => {});
-  if (1 - free.solution.explained > GIVEN_UP_SHARE * unexplained) return null;
   const { lengthM } = free.solution;
+  const seen = lengthM > LEAST_CELLS_TO_END * request.resolutionM;
+  if (!seen || 1 - free.solution.explained > GIVEN_UP_SHARE * unexplained) return null;
   const off = lengthM / only.lengthM - 1;
   const notices = [lengthNotice(lengthM, only.lengthM, off), ...free.solution.notices];
   return { ...free, solution: { ...free.solution, notices } };
