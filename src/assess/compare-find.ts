@@ -55,12 +55,12 @@ const HALO_SHARE = 0.08;
 const HALO_RESOLUTIONS = 3;
 
 /** Share of its own echo, and reflection of its own, that opening and closing a joint may change. */
-const JOINT_SHARE = 0.4;
-const JOINT_REFLECTION = 0.009;
+const JOINT_SHARE = 0.5;
+const JOINT_REFLECTION = 0.011;
 
 /** Lead of a resistance at a joint over re-torquing, nats, and the reflection it must have. */
 const JOINT_LEAD = 9;
-const LEAST_JOINT_REFLECTION = 0.005;
+const LEAST_JOINT_REFLECTION = 0.0065;
 const RESISTIVE_SHARE = 0.1;
 const MOST_OVER_SHOWN = 1.6;
 
@@ -68,7 +68,7 @@ const MOST_OVER_SHOWN = 1.6;
 const WEAKENED = 3;
 
 /** What residues of two corrections leave of the end's own echo, as a share of it. */
-const END_SHARE = 0.06;
+const END_SHARE = 0.12;
 
 /** Lead of a kind over the next, nats, below which it is a coin toss. */
 const KIND_LEAD = 1;
