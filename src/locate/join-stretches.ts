@@ -137,8 +137,8 @@ export function stretchesOf(
     const relativeVariance = covariance && k >= 0 ? covariance[k * parameters.length + k]! : Number.NaN;
     const excessLossSigmaDb = perUnitDb * Math.sqrt(Math.max(0, relativeVariance));
     return {
-      fromM: scale.place(stretch.fromM, null).distanceM,
-      toM: scale.place(stretch.toM, null).distanceM,
+      fromM: scale.place(Math.min(stretch.fromM, stretch.toM), null).distanceM,
+      toM: scale.place(Math.max(stretch.fromM, stretch.toM), null).distanceM,
       excessLossDb: stretch.dielectric * perUnitDb,
       excessLossSigmaDb: Number.isFinite(excessLossSigmaDb)
         ? excessLossSigmaDb

@@ -165,11 +165,9 @@ export function translate(model: LineModel, freedom: Freedom): Translation {
     const medium = model.media[section]!;
     if (edge === 'from') columnsOf.set(stretch.id, addStretchParameters(stretch, freedom, add));
     const columns = columnsOf.get(stretch.id)!;
-    const place = edge === 'from' ? columns.fromM : columns.toM;
-    stretchTo(
-      { valueM: stretch[edge === 'from' ? 'fromM' : 'toM'], terms: place >= 0 ? [place] : [] },
-      section,
-    );
+    const key = placeKey(stretch, edge);
+    const place = columns[key];
+    stretchTo({ valueM: stretch[key], terms: place >= 0 ? [place] : [] }, section);
     const sign = edge === 'from' ? 1 : -1;
     if (columns.ratio >= 0)
       slots.push({ stage: stages.length, of: 'strength', column: columns.ratio, factor: sign });
@@ -342,10 +340,16 @@ function eventsIn(model: LineModel, section: number): Event[] {
       events.push({ atM: lumpDistanceM(model, lump), event: { type: 'lump', lump } });
   for (const stretch of model.stretches) {
     if (stretch.section !== section) continue;
-    events.push({ atM: stretch.fromM, event: { type: 'edge', stretch, edge: 'from' } });
-    events.push({ atM: stretch.toM, event: { type: 'edge', stretch, edge: 'to' } });
+    for (const edge of ['from', 'to'] as const)
+      events.push({ atM: stretch[placeKey(stretch, edge)], event: { type: 'edge', stretch, edge } });
   }
   return events.sort((a, b) => a.atM - b.atM).map(({ event }) => event);
+}
+
+/** Which of a stretch's places its nearer or farther edge is: a step of the search may have crossed them. */
+function placeKey(stretch: StretchModel, edge: 'from' | 'to'): 'fromM' | 'toM' {
+  const crossed = stretch.toM < stretch.fromM;
+  return (edge === 'from') === crossed ? 'toM' : 'fromM';
 }
 
 /** Columns of a stretch's parameters; −1 for those that may not move. */
