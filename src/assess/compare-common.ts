@@ -1,6 +1,6 @@
 /** What two sweeps share: band, points that count, port. */
 
-import { createFitContext } from '../locate/fit-cascade.ts';
+import { createFitContext } from '../locate/fit-context.ts';
 import { leaveOutInterference } from '../locate/interference.ts';
 import type { Solution } from '../locate/solution.ts';
 import { type ComplexArray, complexZeros } from '../numerics/complex.ts';

@@ -6,10 +6,11 @@ import type { ComplexArray } from '../numerics/complex.ts';
 import { complexRms, complexZeros } from '../numerics/complex.ts';
 import type { DistanceScale } from './distance-scale.ts';
 import type { Echo, EchoKind, EchoValue } from './echo.ts';
-import { type FitContext, fitCovariance, linearise } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 import type { EndJointVerdict } from './judge-end-joint.ts';
 import { type JointVerdict, reactiveStrength, resistiveStrength } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel, type Lump, lumpDistanceM, sectionAt } from './line-model.ts';
+import { fitCovariance, linearise } from './linearise.ts';
 import { lumpedTypeOf, lumpReturnLossDb, type PureType, pureTypeOf } from './probe.ts';
 
 /** What the type competition said of one free lump. */

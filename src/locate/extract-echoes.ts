@@ -4,7 +4,8 @@
  * Working on the whole cascade instead of a sum of echoes means that ghosts are explained, never found.
  */
 
-import { evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
+import { refine } from './fit-cascade.ts';
+import { type FitContext, residualVariance } from './fit-context.ts';
 import { fitOneLump, type LumpFit } from './fit-lumps.ts';
 import { joinStretches } from './join-stretches.ts';
 import { type JointVerdict, judgeJoint } from './judge-joints.ts';
@@ -19,6 +20,7 @@ import {
   lumpDistanceM,
   removeLump,
 } from './line-model.ts';
+import { evaluateCost } from './linearise.ts';
 import { type LocalEcho, localEcho } from './local-echo.ts';
 import { expectBoundary, placeJoints } from './place-joints.ts';
 import { lumpedTypeOf, lumpReturnLossDb, pureTypeOf } from './probe.ts';

@@ -7,8 +7,9 @@
 import { complexZeros } from '../numerics/complex.ts';
 import { findPeaks } from '../numerics/peaks.ts';
 import type { Echo } from './echo.ts';
-import { type FitContext, linearise } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
+import { linearise } from './linearise.ts';
 import { addEcho } from './probe.ts';
 import type { SearchSettings } from './residual-floor.ts';
 import type { Ghost } from './solution.ts';

@@ -7,8 +7,10 @@
  */
 import { complexZeros } from '../numerics/complex.ts';
 import { solveSymmetric } from '../numerics/linear-solve.ts';
-import { type FitContext, linearise, refine, residualEnergy } from './fit-cascade.ts';
+import { refine } from './fit-cascade.ts';
+import { type FitContext, residualEnergy } from './fit-context.ts';
 import { cloneModel, type Freedom, type LineModel, restoreModel } from './line-model.ts';
+import { linearise } from './linearise.ts';
 
 /** Most resonances of one antenna. */
 const MOST_RESONANCES = 5;

@@ -3,7 +3,7 @@
  * which nothing on the line can do, for what the line leaves over changes slowly from point to point.
  */
 import { median } from '../numerics/statistics.ts';
-import type { FitContext } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 
 /** Points on each side that a point is compared with. */
 const NEIGHBOURS = 16;

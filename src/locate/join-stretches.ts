@@ -5,14 +5,8 @@
  */
 import type { DistanceScale } from './distance-scale.ts';
 import type { Stretch } from './echo.ts';
-import {
-  evaluateCost,
-  type FitContext,
-  fitCovariance,
-  linearise,
-  refine,
-  residualVariance,
-} from './fit-cascade.ts';
+import { refine } from './fit-cascade.ts';
+import { type FitContext, residualVariance } from './fit-context.ts';
 import {
   ALL_FREE,
   around,
@@ -23,8 +17,9 @@ import {
   restoreModel,
   type StretchModel,
 } from './line-model.ts';
+import { evaluateCost, fitCovariance, linearise } from './linearise.ts';
 import type { SearchSettings } from './residual-floor.ts';
-import { stretchParameter } from './translate-model.ts';
+import { stretchParameter } from './stretch-parameters.ts';
 
 /** Shortest and longest stretch, m, and in 6 dB widths of an echo how near its edges may stand. */
 const SHORTEST_M = 0.3;

@@ -5,9 +5,11 @@
  * reflects more than any sound load does has a bad joint before it. What kind of fault that is follows from the
  * frequency law, as at any joint.
  */
-import { evaluateCost, type FitContext, residualVariance } from './fit-cascade.ts';
+
+import { type FitContext, residualVariance } from './fit-context.ts';
 import type { JointState } from './judge-joints.ts';
 import { ALL_FREE, boundaryAt, type LineModel } from './line-model.ts';
+import { evaluateCost } from './linearise.ts';
 import {
   fitLocal,
   type LocalEcho,

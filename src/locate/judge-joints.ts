@@ -6,15 +6,11 @@
  * resistive part of any size, and with a reactive part of any size, and the fits compete by likelihood.
  */
 
-import {
-  evaluateCost,
-  type FitContext,
-  refine,
-  residualEnergy,
-  residualVariance,
-  STIFFNESS,
-} from './fit-cascade.ts';
+import { refine } from './fit-cascade.ts';
+import { type FitContext, residualEnergy, residualVariance } from './fit-context.ts';
+import { STIFFNESS } from './fit-priors.ts';
 import { ALL_FREE, addLump, around, boundaryAt, type LineModel, removeLump } from './line-model.ts';
+import { evaluateCost } from './linearise.ts';
 import {
   fitLocal,
   fitTables,

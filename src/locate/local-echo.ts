@@ -9,8 +9,9 @@
 import { complexRms, complexZeros } from '../numerics/complex.ts';
 import { fitLeastSquares, type LeastSquaresFit } from '../numerics/least-squares.ts';
 import { solveSymmetric } from '../numerics/linear-solve.ts';
-import { type FitContext, linearise } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
+import { linearise } from './linearise.ts';
 import { putBack, putBackEnd } from './probe.ts';
 
 /** What the sweep shows at a place. */

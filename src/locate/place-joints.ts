@@ -6,7 +6,7 @@
  * over would a joint there explain?
  */
 import { invertSymmetric, solveSymmetric } from '../numerics/linear-solve.ts';
-import { type FitContext, residualVariance } from './fit-cascade.ts';
+import { type FitContext, residualVariance } from './fit-context.ts';
 import { boundaryAt, type LineModel } from './line-model.ts';
 import { lumpedTypeOf, matchAt, type Probe, PURE_TYPES, type PureType, probeAcross } from './probe.ts';
 

@@ -11,8 +11,9 @@ import type { Stage } from '../line/cascade.ts';
 import type { LumpedType } from '../line/discontinuity.ts';
 
 import type { ComplexArray } from '../numerics/complex.ts';
-import { type FitContext, linearise } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 import { type LineModel, NOTHING_FREE } from './line-model.ts';
+import { linearise } from './linearise.ts';
 
 /** The pure types: signed strengths tell series from shunt. */
 export type PureType = 'series-resistance' | 'shunt-leakage' | 'series-inductance' | 'shunt-capacitance';

@@ -4,7 +4,7 @@
  */
 import { quantile, quantileOfSorted } from '../numerics/statistics.ts';
 import type { WindowSpec } from '../numerics/window.ts';
-import type { FitContext } from './fit-cascade.ts';
+import type { FitContext } from './fit-context.ts';
 import { boundaryAt, type LineModel, sectionAt } from './line-model.ts';
 import { planResidualTrace, type ResidualTrace, type ResidualTracer } from './residual-trace.ts';
 

@@ -5,9 +5,12 @@
  * there is put back, two are fitted in its place, and believed only when they are worth their parameters (Bayesian
  * information criterion).
  */
-import { evaluateCost, type FitContext, refine, residualVariance } from './fit-cascade.ts';
+
+import { refine } from './fit-cascade.ts';
+import { type FitContext, residualVariance } from './fit-context.ts';
 import { fitOneLump, fitTwoLumps, type LumpFit } from './fit-lumps.ts';
 import { ALL_FREE, addFreeLump, around, type LineModel, lumpDistanceM, removeLump } from './line-model.ts';
+import { evaluateCost } from './linearise.ts';
 import { localEcho } from './local-echo.ts';
 import { lumpedTypeOf, lumpReturnLossDb } from './probe.ts';
 import type { SearchSettings } from './residual-floor.ts';

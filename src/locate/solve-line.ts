@@ -12,19 +12,13 @@ import { buildEchoes, type LumpVerdict } from './build-echoes.ts';
 import { decimateSweep } from './decimate-sweep.ts';
 import { createDistanceScale, lengthNotice } from './distance-scale.ts';
 import type { Echo } from './echo.ts';
+import type { EndSearch } from './end-search.ts';
 import { dropNothings, extractEchoes, modelSize, rankTypes } from './extract-echoes.ts';
-import { type EndSearch, findEnd, leaveUnseenEnd, reviseEnd } from './find-end.ts';
+import { findEnd } from './find-end.ts';
 import { findGhosts } from './find-ghosts.ts';
 import { findWater } from './find-water.ts';
-import {
-  createFitContext,
-  evaluateCost,
-  type FitContext,
-  fitCovariance,
-  linearise,
-  refine,
-  residualVariance,
-} from './fit-cascade.ts';
+import { refine } from './fit-cascade.ts';
+import { createFitContext, type FitContext, residualVariance } from './fit-context.ts';
 import { leaveOutInterference } from './interference.ts';
 import { stretchesOf } from './join-stretches.ts';
 import { judgeEndJoint } from './judge-end-joint.ts';
@@ -37,9 +31,11 @@ import {
   lumpDistanceM,
   restoreModel,
 } from './line-model.ts';
+import { evaluateCost, fitCovariance, linearise } from './linearise.ts';
 import { placeJoints } from './place-joints.ts';
 import { localVariance, planTracer, type SearchSettings, traceResidual } from './residual-floor.ts';
 import type { ResidualTrace } from './residual-trace.ts';
+import { leaveUnseenEnd, reviseEnd } from './revise-end.ts';
 import type { FittedLoss, Solution } from './solution.ts';
 import { LOSS_PARAMETERS } from './translate-model.ts';
 

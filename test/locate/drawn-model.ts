@@ -6,7 +6,7 @@ import { type LumpedKind, strengthOf } from '../../src/line/discontinuity.ts';
 import type { EndModel } from '../../src/line/end.ts';
 import type { Line } from '../../src/line/line.ts';
 import { coaxMedium, portMedium } from '../../src/line/medium.ts';
-import { createFitContext, type FitContext } from '../../src/locate/fit-cascade.ts';
+import { createFitContext, type FitContext } from '../../src/locate/fit-context.ts';
 import { createLineModel, type LineModel } from '../../src/locate/line-model.ts';
 import { planTracer, type SearchSettings } from '../../src/locate/residual-floor.ts';
 import type { ComplexArray } from '../../src/numerics/complex.ts';

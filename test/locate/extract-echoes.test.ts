@@ -8,9 +8,11 @@ import {
   nearestBoundary,
   rankTypes,
 } from '../../src/locate/extract-echoes.ts';
-import { evaluateCost, refine, residualVariance } from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
+import { residualVariance } from '../../src/locate/fit-context.ts';
 import { addSoundJoints } from '../../src/locate/judge-joints.ts';
 import { ALL_FREE, addFreeLump, type LineModel } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { lumpReturnLossDb, pureTypeOf } from '../../src/locate/probe.ts';
 import { evenHz, FOAM, MATCHED, OPEN, SOLID } from './drawn-line.ts';
 import {

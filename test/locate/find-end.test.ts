@@ -1,9 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import type { EndModel } from '../../src/line/end.ts';
 import type { EndKind, Line } from '../../src/line/line.ts';
-import { type EndSearch, findEnd, moveEnd, reviseEnd, truncateLine } from '../../src/locate/find-end.ts';
-import { evaluateCost } from '../../src/locate/fit-cascade.ts';
+import type { EndSearch } from '../../src/locate/end-search.ts';
+import { findEnd, truncateLine } from '../../src/locate/find-end.ts';
+import { moveEnd } from '../../src/locate/fit-end.ts';
 import { ALL_FREE, cloneModel } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
+import { reviseEnd } from '../../src/locate/revise-end.ts';
 import { evenHz, FOAM, lineOf, SOLID } from './drawn-line.ts';
 import { contextOn, type DrawnRun, modelOf, reflectionOf, searchOn, withNoise } from './drawn-model.ts';
 

@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { fitCovariance, linearise, refine } from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
 import {
   addFreeLump,
   addLump,
@@ -8,6 +8,7 @@ import {
   type Freedom,
   NOTHING_FREE,
 } from '../../src/locate/line-model.ts';
+import { fitCovariance, linearise } from '../../src/locate/linearise.ts';
 import { cable, lineOf } from './drawn-line.ts';
 import { contextOn, varianceOf } from './drawn-model.ts';
 

@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { type EndModel, writeEnd } from '../../src/line/end.ts';
 import { fitAntenna } from '../../src/locate/fit-antenna.ts';
-import { evaluateCost, residualEnergy, residualVariance } from '../../src/locate/fit-cascade.ts';
+import { residualEnergy, residualVariance } from '../../src/locate/fit-context.ts';
 import { type Freedom, type LineModel, NOTHING_FREE } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { complexZeros } from '../../src/numerics/complex.ts';
 import { evenHz, FOAM } from './drawn-line.ts';
 import { contextOn, type DrawnRun, modelOf, reflectionOf, varianceOf, withNoise } from './drawn-model.ts';

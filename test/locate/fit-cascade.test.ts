@@ -1,14 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { strengthOf } from '../../src/line/discontinuity.ts';
-import {
-  createFitContext,
-  evaluateCost,
-  fitCovariance,
-  linearise,
-  refine,
-  residualEnergy,
-  residualVariance,
-} from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
+import { createFitContext, residualEnergy, residualVariance } from '../../src/locate/fit-context.ts';
 import {
   ALL_FREE,
   addFreeLump,
@@ -18,6 +11,7 @@ import {
   type LineModel,
   NOTHING_FREE,
 } from '../../src/locate/line-model.ts';
+import { evaluateCost, fitCovariance, linearise } from '../../src/locate/linearise.ts';
 import { translate } from '../../src/locate/translate-model.ts';
 import { createRandom } from '../../src/numerics/random.ts';
 import { evenHz, FOAM, MATCHED, OPEN, SOLID } from './drawn-line.ts';

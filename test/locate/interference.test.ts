@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { createFitContext, type FitContext } from '../../src/locate/fit-cascade.ts';
+import { createFitContext, type FitContext } from '../../src/locate/fit-context.ts';
 import { leaveOutInterference } from '../../src/locate/interference.ts';
 import { complexZeros } from '../../src/numerics/complex.ts';
 import { evenHz } from './drawn-line.ts';

@@ -1,9 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import type { LumpedKind } from '../../src/line/discontinuity.ts';
 import type { EndModel } from '../../src/line/end.ts';
-import { evaluateCost, refine, residualVariance } from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
+import { residualVariance } from '../../src/locate/fit-context.ts';
 import { judgeEndJoint } from '../../src/locate/judge-end-joint.ts';
 import { ALL_FREE, cloneModel } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { evenHz, FOAM, MATCHED, OPEN } from './drawn-line.ts';
 import {
   contextOn,

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { LumpedKind } from '../../src/line/discontinuity.ts';
-import { evaluateCost, refine, residualVariance } from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
+import { residualVariance } from '../../src/locate/fit-context.ts';
 import {
   addSoundJoints,
   judgeJoint,
@@ -11,6 +12,7 @@ import {
   resistiveStrength,
 } from '../../src/locate/judge-joints.ts';
 import { ALL_FREE, boundaryAt, lumpDistanceM, NOTHING_FREE } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { evenHz, FOAM, MATCHED } from './drawn-line.ts';
 import {
   contextOn,

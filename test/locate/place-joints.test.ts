@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { evaluateCost } from '../../src/locate/fit-cascade.ts';
 import { NOTHING_FREE } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { bestPlaceOf, expectBoundary, placeJoints } from '../../src/locate/place-joints.ts';
 import { PURE_TYPES, probeAcross } from '../../src/locate/probe.ts';
 import { cable, evenHz, FOAM, MATCHED } from './drawn-line.ts';

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { strengthOf } from '../../src/line/discontinuity.ts';
-import { evaluateCost, linearise, residualEnergy } from '../../src/locate/fit-cascade.ts';
+import { residualEnergy } from '../../src/locate/fit-context.ts';
 import { addFreeLump, NOTHING_FREE } from '../../src/locate/line-model.ts';
+import { evaluateCost, linearise } from '../../src/locate/linearise.ts';
 import {
   bestOfEach,
   lumpedTypeOf,

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { evaluateCost } from '../../src/locate/fit-cascade.ts';
 import { NOTHING_FREE } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { floorAt, localVariance, traceResidual } from '../../src/locate/residual-floor.ts';
 import type { ResidualTrace } from '../../src/locate/residual-trace.ts';
 import { complexZeros } from '../../src/numerics/complex.ts';

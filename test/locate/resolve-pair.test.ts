@@ -1,7 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { type LumpedKind, strengthOf } from '../../src/line/discontinuity.ts';
-import { evaluateCost, refine, residualVariance } from '../../src/locate/fit-cascade.ts';
+import { refine } from '../../src/locate/fit-cascade.ts';
+import { residualVariance } from '../../src/locate/fit-context.ts';
 import { ALL_FREE, addFreeLump, cloneModel, type LineModel } from '../../src/locate/line-model.ts';
+import { evaluateCost } from '../../src/locate/linearise.ts';
 import { pureTypeOf } from '../../src/locate/probe.ts';
 import { resolvePair } from '../../src/locate/resolve-pair.ts';
 import { evenHz, FOAM, MATCHED } from './drawn-line.ts';
