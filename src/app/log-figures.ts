@@ -4,9 +4,9 @@ import type { BandLimit } from '../line/line.ts';
 import { sectionMedium } from '../line/medium.ts';
 import { returnLossDb } from '../line/reflection.ts';
 import type { BandFigures, EchoFigures, EntryFigures } from '../logbook/entry.ts';
+import { echoWords } from '../report/echo-words.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import type { Analysis } from './analysis.ts';
-import { echoWords } from './echo-words.ts';
 
 /** Name of the match over everything that was swept: what is followed where the line names no bands. */
 export const WHOLE_SWEEP = 'whole sweep';

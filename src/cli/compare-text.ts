@@ -1,5 +1,5 @@
 /** A comparison as text for a terminal or a pipe: the verdict first, then each change, then what else differs. */
-import { CAUTIONS } from '../app/cautions.ts';
+
 import type { ComparedSweeps } from '../app/compare.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import type { BandChange, Change, ChangeKind, Comparison } from '../assess/comparison.ts';
@@ -15,6 +15,7 @@ import {
   levelText,
   type Units,
 } from '../plot/quantity-text.ts';
+import { CAUTIONS } from '../report/cautions.ts';
 import type { Sweep } from '../sweep/sweep.ts';
 import type { Paint } from './paint.ts';
 

@@ -2,12 +2,10 @@
 import type { Analysis } from '../app/analysis.ts';
 import { analysisInUnits } from '../app/analysis-in-units.ts';
 import { analysisNotices } from '../app/analysis-notices.ts';
-import { CAUTIONS } from '../app/cautions.ts';
-import { echoWords } from '../app/echo-words.ts';
 import { limitsVerdictOf } from '../app/limits-verdict.ts';
 import { spokenFile } from '../app/standard-input.ts';
-import { verdictOf, verdictWords, worstOf } from '../app/verdict.ts';
 import type { Finding } from '../assess/finding.ts';
+import { verdictOf, verdictWords, worstOf } from '../assess/verdict.ts';
 import { describedLengthM } from '../line/line.ts';
 import type { Echo } from '../locate/echo.ts';
 import type { Ghost } from '../locate/solution.ts';
@@ -25,6 +23,8 @@ import {
   temperatureText,
   type Units,
 } from '../plot/quantity-text.ts';
+import { CAUTIONS } from '../report/cautions.ts';
+import { echoWords } from '../report/echo-words.ts';
 import { limitsLines } from './limits-text.ts';
 import type { Paint } from './paint.ts';
 

@@ -7,7 +7,7 @@ import { readLineFile } from '../app/line-request.ts';
 import { keepLine, knownLine, newEntry } from '../app/log-add.ts';
 import { logHead, summaryDocument } from '../app/log-documents.ts';
 import { STANDARD_INPUT } from '../app/standard-input.ts';
-import { verdictWords, worstOf } from '../app/verdict.ts';
+import { verdictWords, worstOf } from '../assess/verdict.ts';
 import type { Added } from '../logbook/add-entry.ts';
 import { type EntrySummary, type LineName, shortKey } from '../logbook/entry.ts';
 import type { Logbook } from '../logbook/logbook.ts';

@@ -1,6 +1,6 @@
 /** Entries of the logbook as text: the list, and one of them with what was concluded. */
 
-import { verdictWords, worstOf } from '../app/verdict.ts';
+import { verdictWords, worstOf } from '../assess/verdict.ts';
 import { type EchoFigures, type Entry, type EntrySummary, shortKey } from '../logbook/entry.ts';
 import { fullName } from '../logbook/stored-lines.ts';
 import type { Verification } from '../logbook/verify.ts';

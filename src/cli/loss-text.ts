@@ -1,12 +1,12 @@
 /** A loss check as text: the verdict first, then the figures it rests on. */
 import type { Analysis } from '../app/analysis.ts';
-import { CAUTIONS } from '../app/cautions.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import type { BandLoss } from '../assess/loss-bands.ts';
 import type { LossCheck, LossMethod } from '../assess/loss-check.ts';
 import type { Excess } from '../assess/loss-excess.ts';
 import { wrapText } from '../plot/cells.ts';
 import { fixedText, frequencyText, lengthText, temperatureText } from '../plot/quantity-text.ts';
+import { CAUTIONS } from '../report/cautions.ts';
 import type { TextOptions } from './locate-text.ts';
 import { tableLines } from './table-lines.ts';
 

@@ -1,7 +1,6 @@
 /** No verb: the workspace on a terminal, the located echoes as text anywhere else. */
 import type { Analysis } from '../app/analysis.ts';
 import { bundledPath } from '../app/bundled.ts';
-import { CAUTIONS, type Cautions } from '../app/cautions.ts';
 import { readBytes } from '../app/files.ts';
 import type { AnalyseRequest, Solver } from '../app/solver.ts';
 import { type TraceView, traceWindow } from '../app/trace-view.ts';
@@ -9,6 +8,7 @@ import type { Cable } from '../line/cable.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import type { Notice, Outcome } from '../outcome.ts';
 import type { Units } from '../plot/quantity-text.ts';
+import { CAUTIONS, type Cautions } from '../report/cautions.ts';
 import type { ExitStatus, Io } from './io.ts';
 import type { Invocation } from './parse-arguments.ts';
 import { printProblems } from './print-problems.ts';

@@ -4,16 +4,13 @@ import type { AnalyseRequest } from '../app/solver.ts';
 import { describedLengthM } from '../line/line.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import { DOTS_ACROSS, type Domain } from '../plot/scale.ts';
+import { lineSpan } from '../report/line-sections.ts';
 import type { LookView, TraceView } from './config.ts';
 import { type Found, foundIn } from './found.ts';
 import { layoutOf, tooSmall } from './layout.ts';
 import { picksOf } from './picks.ts';
 import { analysisOf, type State } from './state.ts';
 import { resolutionWith } from './window-choices.ts';
-
-/** Room before the port and behind the end of the whole line, as shares of its length. */
-const ROOM_BEFORE = 0.02;
-const ROOM_BEHIND = 0.13;
 
 /** Samples per width of an echo, so that its peak is met within half a dB. */
 const SAMPLES_PER_WIDTH = 4;
@@ -30,11 +27,6 @@ export function wholeSpan(analysis: Analysis): Domain {
     analysis.reach.resolutionM,
   );
   return lineSpan(lengthM);
-}
-
-/** From a little before the port to a little behind the end of a line. */
-export function lineSpan(lengthM: number): Domain {
-  return [-ROOM_BEFORE * lengthM, (1 + ROOM_BEHIND) * lengthM];
 }
 
 /** The farthest out that zooming goes: as far as the sweep can see without folding. */

@@ -1,10 +1,10 @@
 /** What was found along the line, worst first: the rows of the list. */
 import type { Analysis } from '../app/analysis.ts';
 import { analysisInUnits } from '../app/analysis-in-units.ts';
-import { echoWords, STRETCH_WORDS } from '../app/echo-words.ts';
 import type { Finding } from '../assess/finding.ts';
 import type { Echo, Severity, StretchKind } from '../locate/echo.ts';
 import type { Units } from '../plot/quantity-text.ts';
+import { echoWords, STRETCH_WORDS } from '../report/echo-words.ts';
 
 /** One row of the list: a finding, or an echo that is as it should be. */
 export type Found = {

@@ -4,10 +4,10 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { loadCableTable } from '../../src/app/cable-files.ts';
-import { CAUTIONS } from '../../src/app/cautions.ts';
 import { VERBS, verbSpec } from '../../src/cli/commands.ts';
 import { readCables } from '../../src/line/read-cables.ts';
 import { readLine } from '../../src/line/read-line.ts';
+import { CAUTIONS } from '../../src/report/cautions.ts';
 import { ROOT, runCli } from './run-cli.ts';
 
 const readme = await readFile(join(ROOT, 'README.md'), 'utf8');

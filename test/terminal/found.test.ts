@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { longestCoax, withCable } from '../../src/terminal/change-cable.ts';
 import { foundIn } from '../../src/terminal/found.ts';
-import { endText, stripSections } from '../../src/terminal/line-sections.ts';
 import { resolutionWith, windowChoices, windowName } from '../../src/terminal/window-choices.ts';
 import { makeAnalysis } from '../app/made-analysis.ts';
 import { OTHER_CABLE } from './made-state.ts';
@@ -41,32 +40,6 @@ describe('foundIn', () => {
   it('gives the same list for the same analysis, so that rows can be compared', () => {
     expect(foundIn(analysis)).toBe(foundIn(analysis));
     expect(foundIn(analysis)[0]).toMatchObject({ place: 'joint 2', short: 'series resistance 10.0 Ω' });
-  });
-});
-
-describe('stripSections', () => {
-  it('lays the sections end to end, the last one to where the line was found to end', () => {
-    const sections = stripSections(analysis.line, null, 'm');
-    expect(sections.map(({ fromM, toM }) => [fromM, toM])).toEqual([
-      [0, 8],
-      [8, 20],
-    ]);
-    expect(sections[0]!.texts[0]).toBe('lower run 8.0 m · made-up cable');
-    const [first, last] = analysis.line.sections;
-    const open = {
-      ...analysis.line,
-      sections: [first!, { ...last!, lengthM: null } as typeof last & object],
-    };
-    expect(stripSections(open, 19.5, 'm').at(-1)?.toM).toBe(19.5);
-    expect(stripSections(open, null, 'm')).toHaveLength(1);
-  });
-
-  it('writes the end that was found where none is described', () => {
-    expect(endText(analysis)).toBe('open');
-    const unknown = makeAnalysis({ line: { ...analysis.line, end: 'unknown' } });
-    expect(endText(unknown)).toBe('open');
-    const neither = makeAnalysis({ ...unknown, solution: { ...analysis.solution, end: 'unknown' } });
-    expect(endText(neither)).toBe('end');
   });
 });
 

@@ -1,9 +1,9 @@
 /** A workspace without a terminal: a state with an answer in it, and a way to play events on it. */
 import type { Analysis } from '../../src/app/analysis.ts';
-import { CAUTIONS } from '../../src/app/cautions.ts';
 import type { AnalyseRequest } from '../../src/app/solver.ts';
 import { traceWindow } from '../../src/app/trace-view.ts';
 import { succeed } from '../../src/outcome.ts';
+import { CAUTIONS } from '../../src/report/cautions.ts';
 import type { Effect } from '../../src/terminal/effects.ts';
 import type { Event } from '../../src/terminal/events.ts';
 import { eventFor } from '../../src/terminal/keys.ts';

@@ -1,7 +1,7 @@
 /** The top row: which line, which sweep, and the verdict. */
 import type { Analysis } from '../../app/analysis.ts';
 import { STANDARD_INPUT } from '../../app/standard-input.ts';
-import { verdictOf } from '../../app/verdict.ts';
+import { verdictOf } from '../../assess/verdict.ts';
 import { cellWidth, fitRuns, spreadRuns } from '../../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
 import { frequencySpanText, temperatureText } from '../../plot/quantity-text.ts';

@@ -4,10 +4,10 @@ import { cellWidth, spreadRuns } from '../../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../../plot/line-strip.ts';
 import { lengthText } from '../../plot/quantity-text.ts';
 import { type Run, run, runsText } from '../../plot/run.ts';
+import { stripSections } from '../../report/line-sections.ts';
 import { spanOf } from '../derived.ts';
 import { foundIn } from '../found.ts';
 import type { Layout } from '../layout.ts';
-import { stripSections } from '../line-sections.ts';
 import type { Picture } from '../pictures/picture.ts';
 import type { State } from '../state.ts';
 

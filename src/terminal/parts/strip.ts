@@ -3,10 +3,10 @@ import { describedLengthM } from '../../line/line.ts';
 import { fitRuns } from '../../plot/cells.ts';
 import { drawLineStrip, type LineStripSpec } from '../../plot/line-strip.ts';
 import { type Run, run } from '../../plot/run.ts';
-import { chosenOf, lineSpan, spanOf } from '../derived.ts';
+import { endText, lineSpan, stripSections } from '../../report/line-sections.ts';
+import { chosenOf, spanOf } from '../derived.ts';
 import { foundIn } from '../found.ts';
 import { GUTTER, type Layout } from '../layout.ts';
-import { endText, stripSections } from '../line-sections.ts';
 import { analysisOf, type State } from '../state.ts';
 
 /** The line with what was found on it; before there is an answer, the line as described. */

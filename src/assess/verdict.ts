@@ -1,7 +1,9 @@
 /** The verdict on a line, as every front door gives it. */
-import { fitDoubt } from '../assess/fit-doubt.ts';
+
 import type { Severity } from '../locate/echo.ts';
-import type { Analysis } from './analysis.ts';
+import type { Solution } from '../locate/solution.ts';
+import type { Finding } from './finding.ts';
+import { fitDoubt } from './fit-doubt.ts';
 
 /** What was found, counted; a logged entry has the same counts. */
 export type Verdict = {
@@ -11,8 +13,14 @@ export type Verdict = {
   readonly doubtful?: boolean;
 };
 
-/** The verdict on an analysis. */
-export function verdictOf({ findings, solution }: Pick<Analysis, 'findings' | 'solution'>): Verdict {
+/** The verdict on what was found and on how well the line explains it. */
+export function verdictOf({
+  findings,
+  solution,
+}: {
+  readonly findings: readonly Finding[];
+  readonly solution: Solution;
+}): Verdict {
   const count = (severity: Severity) => findings.filter((finding) => finding.severity === severity).length;
   return { faults: count('fault'), watches: count('watch'), doubtful: fitDoubt(solution) !== null };
 }

@@ -1,8 +1,8 @@
 /** Kinds and sizes of echoes in plain words, the same in both front doors. */
 import { KIND_WORDS } from '../assess/size-text.ts';
 import type { Echo, EchoValue, StretchKind } from '../locate/echo.ts';
+import type { Solution } from '../locate/solution.ts';
 import { digitsText, ohmText } from '../plot/quantity-text.ts';
-import type { Analysis } from './analysis.ts';
 
 export const STRETCH_WORDS: Readonly<Record<StretchKind, string>> = {
   wet: 'wet stretch',
@@ -11,7 +11,7 @@ export const STRETCH_WORDS: Readonly<Record<StretchKind, string>> = {
 };
 
 /** "series resistance 9.1 Ω", "joint", "end: antenna". */
-export function echoWords(analysis: Analysis, echo: Echo): string {
+export function echoWords(analysis: { readonly solution: Solution }, echo: Echo): string {
   const { echoes, end } = analysis.solution;
   const isEnd = echo === echoes.at(-1) && end !== 'unknown';
   if (isEnd && (echo.kind === 'open' || echo.kind === 'short' || echo.kind === 'termination'))

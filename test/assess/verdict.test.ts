@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { verdictOf, verdictWords, worstOf } from '../../src/app/verdict.ts';
-import { makeAnalysis } from './made-analysis.ts';
+import { verdictOf, verdictWords, worstOf } from '../../src/assess/verdict.ts';
+import { makeAnalysis } from '../app/made-analysis.ts';
 
 describe('verdictOf', () => {
   it('counts what was found, and doubts it where the line does not explain the sweep', () => {

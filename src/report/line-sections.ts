@@ -1,9 +1,19 @@
 /** The described line as the strip draws it. */
-import type { Analysis } from '../app/analysis.ts';
 import type { Line, Section } from '../line/line.ts';
+import type { Solution } from '../locate/solution.ts';
 import { assertNever } from '../outcome.ts';
 import type { StripSection } from '../plot/line-strip.ts';
 import { lengthText, type Units } from '../plot/quantity-text.ts';
+import type { Domain } from '../plot/scale.ts';
+
+/** Room before the port and behind the end of the whole line, as shares of its length. */
+const ROOM_BEFORE = 0.02;
+const ROOM_BEHIND = 0.13;
+
+/** From a little before the port to a little behind the end of a line. */
+export function lineSpan(lengthM: number): Domain {
+  return [-ROOM_BEFORE * lengthM, (1 + ROOM_BEHIND) * lengthM];
+}
 
 /**
  * Sections from the port, with ways to write them.
@@ -37,7 +47,7 @@ export function stripSections(line: Line, lengthM: number | null, units: Units):
 }
 
 /** What terminates the line: what was found when the description does not say. */
-export function endText({ line, solution }: Analysis): string {
+export function endText({ line, solution }: { readonly line: Line; readonly solution: Solution }): string {
   const end = line.end === 'unknown' ? solution.end : line.end;
   return end === 'unknown' ? 'end' : end;
 }

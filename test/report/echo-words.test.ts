@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import type { Analysis } from '../../src/app/analysis.ts';
-import { echoWords } from '../../src/app/echo-words.ts';
 import type { Echo } from '../../src/locate/echo.ts';
+import { echoWords } from '../../src/report/echo-words.ts';
+import { makeAnalysis } from '../app/made-analysis.ts';
 import { makeEcho, makeEnd, makeSolution } from '../assess/made-line.ts';
-import { makeAnalysis } from './made-analysis.ts';
 
 const words = (echo: Echo, end: Analysis['solution']['end'] = 'antenna'): string => {
   const echoes = echo.distanceM === 50 ? [makeEcho(), echo] : [echo, makeEnd()];

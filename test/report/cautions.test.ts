@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { CAUTIONS } from '../../src/app/cautions.ts';
+import { CAUTIONS } from '../../src/report/cautions.ts';
 
 describe('CAUTIONS', () => {
   it('has a gist that fits one line of 80 columns', () => {
