@@ -69,6 +69,7 @@ export function compareSweeps(
       lengthAfterM: after.solution.lengthM,
     },
     common: { startHz: frequencyHz[0]!, stopHz: frequencyHz.at(-1)!, points: frequencyHz.length },
+    difference: { frequencyHz, gamma: alignment.difference },
     notices: [...common.notices, ...subtraction.notices, ...strangers(changes, alignment)],
   });
 }

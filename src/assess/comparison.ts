@@ -1,5 +1,6 @@
 /** What has changed on a line between two sweeps. */
 import type { PureType } from '../locate/probe.ts';
+import type { ComplexArray } from '../numerics/complex.ts';
 import type { Notice } from '../outcome.ts';
 
 /** Kinds of change at a place: a discontinuity that has come or gone, or an end that is another. */
@@ -45,5 +46,10 @@ export type Comparison = {
   };
   /** What both sweeps cover. */
   readonly common: { readonly startHz: number; readonly stopHz: number; readonly points: number };
+  /**
+   * Γ of the later sweep less that of the earlier one, turned into what the later day would have shown of it, at the
+   * common frequencies; 0 where a carrier has hit one of the two. Distances in it are the earlier sweep's.
+   */
+  readonly difference: { readonly frequencyHz: Float64Array; readonly gamma: ComplexArray };
   readonly notices: readonly Notice[];
 };

@@ -1,7 +1,15 @@
 /** From curves in their own units to rows of text: scales, then dots, then marks. */
 import { brailleGlyph, type CellGlyph, rasterRows } from './braille.ts';
 import { cellWidth } from './cells.ts';
-import { createRaster, drawHair, drawLevel, drawSeries, rowOf } from './raster.ts';
+import {
+  createRaster,
+  drawDottedSeries,
+  drawHair,
+  drawLevel,
+  drawSeries,
+  rowOf,
+  shadeArea,
+} from './raster.ts';
 import { mergeRuns, type Role, type Run, run } from './run.ts';
 import { cellOf, cellScale, DOTS_DOWN, type Domain, linearScale, type Scale } from './scale.ts';
 import { axisTicks, type Tick } from './ticks.ts';
@@ -11,7 +19,10 @@ export type AxisSpec = {
   readonly domain: Domain;
   /** Written once, beside the last tick. */
   readonly unit: string;
-  /** Shown units per unit of the domain (default 1), for example 1/0.3048 for feet on an axis in metres. */
+  /**
+   * Shown units per unit of the domain (default 1), for example 1/0.3048 for feet on an axis in metres; −1 shows a
+   * level below 0 dB as a positive return loss.
+   */
   readonly perUnit?: number;
 };
 
@@ -20,6 +31,17 @@ export type Series = {
   /** Rising, in the unit of the x axis. */
   readonly x: Float64Array;
   readonly y: Float64Array;
+  readonly role: Role;
+  /** Dots with gaps between them instead of a line: what is told, not measured. */
+  readonly dotted?: boolean;
+};
+
+/** What lies between two curves, shaded: a doubt. Values that are not finite leave a gap. */
+export type Area = {
+  /** Rising, in the unit of the x axis. */
+  readonly x: Float64Array;
+  readonly low: Float64Array;
+  readonly high: Float64Array;
   readonly role: Role;
 };
 
@@ -36,6 +58,8 @@ export type ChartSpec = {
   readonly x: AxisSpec;
   readonly y: AxisSpec;
   readonly series: readonly Series[];
+  /** Drawn under everything else. */
+  readonly areas?: readonly Area[];
   /** Dotted lines across: limits, noise floor, a reference impedance. */
   readonly levels: readonly { readonly y: number; readonly role: Role }[];
   readonly marks: readonly ChartMark[];
@@ -72,9 +96,13 @@ export function drawChart(spec: ChartSpec, size: ChartSize): ChartFrame {
   const x = cellScale(spec.x.domain, size.width);
   const y = linearScale(spec.y.domain, size.height * DOTS_DOWN);
   const raster = createRaster(size.width, size.height);
+  for (const area of spec.areas ?? []) shadeArea(raster, x, y, area, area.role);
   for (const level of spec.levels) drawLevel(raster, y, level.y, level.role);
   if (spec.cursor !== null) drawHair(raster, x, spec.cursor, 'cursor');
-  for (const series of spec.series) drawSeries(raster, x, y, series, series.role);
+  for (const series of spec.series) {
+    if (series.dotted) drawDottedSeries(raster, x, y, series, series.role);
+    else drawSeries(raster, x, y, series, series.role);
+  }
   const rows = rasterRows(raster, size.glyph ?? brailleGlyph).map((row) => [...row]);
   for (const mark of spec.marks) placeMark(rows, mark, spec, x, y);
   return {

@@ -78,6 +78,47 @@ export function drawSeries(
   }
 }
 
+/** A curve as one dot in every `every` columns, at the middle of what the curve covers there. */
+export function drawDottedSeries(
+  raster: Raster,
+  x: Scale,
+  y: Scale,
+  samples: { readonly x: Float64Array; readonly y: Float64Array },
+  role: Role,
+  every = 3,
+): void {
+  if (samples.x.length !== samples.y.length)
+    throw new RangeError(`lengths differ: ${samples.x.length} and ${samples.y.length}`);
+  const { top, bottom } = columnEnvelope(x, y, samples);
+  for (let column = 0; column < top.length; column += every) {
+    if (top[column]! > bottom[column]!) continue;
+    lightDot(raster, column, Math.round((top[column]! + bottom[column]!) / 2), role);
+  }
+}
+
+/**
+ * Shades what lies between two curves: every other dot of every other column, so that a curve over it stands out.
+ *
+ * @param area.x Rising; `low` and `high` of the same length.
+ */
+export function shadeArea(
+  raster: Raster,
+  x: Scale,
+  y: Scale,
+  area: { readonly x: Float64Array; readonly low: Float64Array; readonly high: Float64Array },
+  role: Role,
+): void {
+  const low = columnEnvelope(x, y, { x: area.x, y: area.low });
+  const high = columnEnvelope(x, y, { x: area.x, y: area.high });
+  const lastRow = raster.height * DOTS_DOWN - 1;
+  for (let column = 0; column < high.top.length; column += 2) {
+    const top = Math.max(0, high.top[column]!);
+    const bottom = Math.min(lastRow, low.bottom[column]!);
+    for (let row = top; row <= bottom; row++)
+      if ((row + column / 2) % 2 === 0) lightDot(raster, column, row, role);
+  }
+}
+
 /** Highest and lowest lit row of each dot column; top > bottom where the line does not pass. */
 function columnEnvelope(
   x: Scale,

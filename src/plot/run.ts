@@ -12,6 +12,8 @@ export type Role =
   | 'trace'
   | 'ohms'
   | 'baseline'
+  | 'difference'
+  | 'doubt'
   | 'guide'
   | 'cursor'
   | 'fault'

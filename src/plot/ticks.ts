@@ -12,16 +12,18 @@ export type Tick = { readonly value: number; readonly text: string };
  * @param domain In the axis' own unit (metres, dB, ohms).
  * @param count How many are wanted, at least 1; d3-array's rule decides between steps of 1, 2 and 5.
  * @param perUnit Shown units per unit of the axis, for example 1/0.3048 to show metres as feet.
+ *   A negative one turns the signs: a level of −20 dB is written as 20.
  * @returns Rising; values in the axis' own unit, all with the same decimals.
  */
 export function axisTicks(domain: Domain, count: number, perUnit = 1): readonly Tick[] {
   const start = domain[0] * perUnit;
   const stop = domain[1] * perUnit;
   const wanted = Math.max(1, Math.floor(count));
-  const step = tickStep(start, stop, wanted);
+  const step = Math.abs(tickStep(start, stop, wanted));
   const decimals = Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
   return ticks(start, stop, wanted).map((shown) => ({
-    value: shown / perUnit,
+    // No "−0": it would compare as another value.
+    value: shown / perUnit + 0,
     text: tickText(shown, decimals),
   }));
 }

@@ -1,6 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { rasterRows } from '../../src/plot/braille.ts';
-import { cellInk, createRaster, drawHair, drawLevel, drawSeries, lightDot } from '../../src/plot/raster.ts';
+import {
+  cellInk,
+  createRaster,
+  drawDottedSeries,
+  drawHair,
+  drawLevel,
+  drawSeries,
+  lightDot,
+  shadeArea,
+} from '../../src/plot/raster.ts';
 import { runsText } from '../../src/plot/run.ts';
 import { cellScale, linearScale } from '../../src/plot/scale.ts';
 
@@ -154,6 +163,26 @@ describe('drawLevel', () => {
     const raster = createRaster(4, 1);
     drawLevel(raster, linearScale([0, 3], 4), 3, 'guide');
     expect(rasterRows(raster).map(runsText)).toEqual(['⠁ ⠁ ']);
+  });
+});
+
+describe('drawDottedSeries', () => {
+  it('drawDottedSeries lights one dot in every third column, at the height of the curve', () => {
+    const raster = createRaster(4, 1);
+    const flat = { x: Float64Array.of(0, 7), y: Float64Array.of(1, 1) };
+    drawDottedSeries(raster, cellScale([0, 7], 4), linearScale([0, 3], 4), flat, 'guide');
+    expect(rasterRows(raster).map(runsText)).toEqual(['⠄⠠ ⠄']);
+  });
+});
+
+describe('shadeArea', () => {
+  it('shadeArea fills every other column between the curves, and nothing where they are not known', () => {
+    const raster = createRaster(4, 1);
+    const x = Float64Array.from({ length: 8 }, (_, i) => i);
+    const area = { x, low: x.map(() => 0), high: x.map((i) => (i < 4 ? 3 : Number.NaN)) };
+    shadeArea(raster, cellScale([0, 7], 4), linearScale([0, 3], 4), area, 'doubt');
+    // Column 0: rows 0 and 2; column 2: rows 1 and 3.
+    expect(rasterRows(raster).map(runsText)).toEqual(['⠅⡂  ']);
   });
 });
 

@@ -20,6 +20,13 @@ describe('axisTicks', () => {
     expect(ticks[2]?.value).toBeCloseTo(30.48, 10); // 100 ft, exact by the definition of the foot
   });
 
+  it('axisTicks turns signs where the shown unit is the negative of the axis', () => {
+    const ticks = axisTicks([-40, 0], 4, -1);
+    expect(ticks.map((t) => t.text).sort()).toEqual(['0', '10', '20', '30', '40']);
+    expect(ticks.find((t) => t.text === '10')?.value).toBe(-10);
+    expect(texts([-2.5, 0], 5, -1)).toContain('0.5');
+  });
+
   it('axisTicks with a count below one still gives at least one tick', () => {
     expect(axisTicks([0, 52], 0).length).toBeGreaterThanOrEqual(1);
   });
