@@ -5,7 +5,7 @@ import type { ChartMark } from '../plot/chart.ts';
 import { lengthPerMetre, type Units } from '../plot/quantity-text.ts';
 import type { Domain } from '../plot/scale.ts';
 import { type Drawing, dottedKey, type KeyEntry, lineKey, markKey } from './drawing.ts';
-import type { Curve } from './level-curve.ts';
+import type { Curve } from './trace-curve.ts';
 
 /** Signs of a change: something has come, or what was there has gone. */
 export const CHANGE_GLYPHS = { come: '+', gone: '−' } as const;

@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Change } from '../../src/assess/comparison.ts';
 import { changeDrawing } from '../../src/report/change-drawing.ts';
-import { levelCurve } from '../../src/report/level-curve.ts';
 
 const x = Float64Array.of(0, 10, 20, 30);
 const curve = (...levels: number[]) => ({ x, y: Float64Array.from(levels) });
@@ -55,20 +54,5 @@ describe('changeDrawing', () => {
     const { chart } = changeDrawing(curves, [], { domainM: [0, 30], units: 'ft' });
     expect(chart.x.unit).toBe('ft');
     expect(chart.x.perUnit).toBeCloseTo(1 / 0.3048, 12);
-  });
-});
-
-describe('levelCurve', () => {
-  it('levelCurve is the size of the trace in dB, −∞ for nothing', () => {
-    const trace = {
-      distanceM: x,
-      value: { re: Float64Array.of(1, 0, 0.03, 0), im: Float64Array.of(0, 0.1, 0.04, 0) },
-      corrected: true,
-    };
-    const { y } = levelCurve(trace);
-    expect(y[0]).toBeCloseTo(0, 12);
-    expect(y[1]).toBeCloseTo(-20, 12);
-    expect(y[2]).toBeCloseTo(20 * Math.log10(0.05), 12);
-    expect(y[3]).toBe(Number.NEGATIVE_INFINITY);
   });
 });
