@@ -1,4 +1,4 @@
-// Bundles the program into dist/: one entry for the command line, one for the solve worker.
+// Bundles the program into dist/: one entry for the command line, one for each worker.
 // Splitting keeps the workspace (Ink, React) out of the path of every other verb.
 import { chmodSync, rmSync, writeFileSync } from 'node:fs';
 import { resolve } from 'node:path';
@@ -47,7 +47,11 @@ const common = {
 rmSync('dist', { recursive: true, force: true });
 await build({
   ...common,
-  entryPoints: { cli: 'src/cli/main.ts', 'solve-worker': 'src/app/solve-worker.ts' },
+  entryPoints: {
+    cli: 'src/cli/main.ts',
+    'solve-worker': 'src/app/solve-worker.ts',
+    'study-worker': 'src/app/study-worker.ts',
+  },
   outdir: 'dist',
   splitting: true,
   minify: true,

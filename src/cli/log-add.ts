@@ -7,6 +7,7 @@ import { readLineFile } from '../app/line-request.ts';
 import { keepLine, knownLine, newEntry } from '../app/log-add.ts';
 import { logHead, summaryDocument } from '../app/log-documents.ts';
 import { STANDARD_INPUT } from '../app/standard-input.ts';
+import { wallTimeOf } from '../app/wall-time.ts';
 import { verdictWords, worstOf } from '../assess/verdict.ts';
 import type { Added } from '../logbook/add-entry.ts';
 import { type EntrySummary, type LineName, shortKey } from '../logbook/entry.ts';
@@ -16,7 +17,7 @@ import { type Notice, type Outcome, type Problem, succeed } from '../outcome.ts'
 import { wrapText } from '../plot/cells.ts';
 import { SEVERITY_GLYPHS } from '../plot/line-strip.ts';
 import { type ExitStatus, type Io, write } from './io.ts';
-import { parseWallTime, wallTimeOf } from './log-dates.ts';
+import { parseWallTime } from './log-dates.ts';
 import { type LogTextOptions, whenText } from './log-text.ts';
 import type { Invocation } from './parse-arguments.ts';
 import { printProblems } from './print-problems.ts';

@@ -30,10 +30,3 @@ export function parseDate(text: string | null, flag: string): Outcome<string | n
   const time = parseWallTime(text, flag);
   return time.ok ? succeed(time.value.slice(0, 10)) : time;
 }
-
-/** Wall time of this machine at an instant, to the minute. */
-export function wallTimeOf(instant: Date): string {
-  const two = (value: number): string => String(value).padStart(2, '0');
-  const date = `${instant.getFullYear()}-${two(instant.getMonth() + 1)}-${two(instant.getDate())}`;
-  return `${date}T${two(instant.getHours())}:${two(instant.getMinutes())}`;
-}

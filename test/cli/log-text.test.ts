@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { parseWallTime, wallTimeOf } from '../../src/cli/log-dates.ts';
+import { parseWallTime } from '../../src/cli/log-dates.ts';
 import { checkText, echoLabel, listText } from '../../src/cli/log-text.ts';
 import { trendText } from '../../src/cli/log-trend-text.ts';
 import { createPaint } from '../../src/cli/paint.ts';
@@ -56,12 +56,6 @@ describe('parseWallTime', () => {
     '2026-05-03Z',
   ])('refuses %j', (text) => {
     expect(parseWallTime(text, 'when')).toMatchObject({ ok: false, problems: [{ code: 'flag-value' }] });
-  });
-});
-
-describe('wallTimeOf', () => {
-  it('is the time on the clock here, to the minute', () => {
-    expect(wallTimeOf(new Date(2026, 4, 3, 7, 5, 59))).toBe('2026-05-03T07:05');
   });
 });
 
