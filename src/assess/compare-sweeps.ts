@@ -74,7 +74,7 @@ export function compareSweeps(
   });
 }
 
-/** Doubt that no noise tells of: sections that weather differently, corrections. Chosen by `test/bench/change.ts`. */
+/** Doubt that no noise tells of: sections that weather differently, corrections. Chosen by `npm run bench:change`. */
 const LEAST_STRETCH_SIGMA = 12e-6;
 const LEAST_LOSS_SIGMA_DB = 0.06;
 

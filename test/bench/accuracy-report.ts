@@ -1,11 +1,9 @@
 /** One suite's figures as a table of text and as data. */
 import type { SuiteName } from '../scenes/suites.ts';
 import type { ScenePair } from './accuracy-worker.ts';
+import { alignedRows, type FigureValue, meets, overSeeds, targetText, valueText } from './figure-text.ts';
 import { type Figure, figuresOf } from './figures.ts';
 import type { SceneScore, Strictness } from './score.ts';
-
-/** Worst seed's value and the value over all seeds; null where there was nothing to count. */
-export type FigureValue = { readonly worst: number | null; readonly all: number | null };
 
 export type FigureRow = {
   readonly label: string;
@@ -63,31 +61,9 @@ function figureValue(
   scores: readonly SceneScore[],
   strictness: Strictness,
 ): FigureValue {
-  const each = seeds
-    .map((seed) =>
-      figure.value(
-        scores.filter((score) => score.seed === seed),
-        strictness,
-      ),
-    )
-    .filter((value) => value !== null);
-  const all = figure.value(scores, strictness);
-  if (each.length === 0) return { worst: null, all };
-  return { worst: each.reduce((a, b) => (badness(figure, a) >= badness(figure, b) ? a : b)), all };
-}
-
-/** How far a value is on the wrong side; for a target with two sides, how far from their middle. */
-function badness(figure: Figure, value: number): number {
-  const { atLeast, atMost } = figure.target ?? {};
-  if (atLeast !== undefined && atMost !== undefined) return Math.abs(value - (atLeast + atMost) / 2);
-  if (atMost !== undefined) return value;
-  const lessIsBetter = figure.unit !== 'percent';
-  return lessIsBetter ? value : -value;
-}
-
-function meets(figure: Figure, { worst }: FigureValue): boolean {
-  const { atLeast = Number.NEGATIVE_INFINITY, atMost = Number.POSITIVE_INFINITY } = figure.target ?? {};
-  return worst !== null && worst >= atLeast && worst <= atMost;
+  return overSeeds(figure, seeds, (seed) =>
+    figure.value(seed === null ? scores : scores.filter((score) => score.seed === seed), strictness),
+  );
 }
 
 function table(title: string, figures: readonly FigureRow[]): string {
@@ -102,49 +78,11 @@ function table(title: string, figures: readonly FigureRow[]): string {
       row.met === null ? '' : metText(row.met),
     ]),
   ];
-  const widths = rows[0]!.map((_, column) => Math.max(...rows.map((row) => row[column]!.length)));
-  const lines = rows.map((row) =>
-    row
-      .map((cell, column) => (column === 0 ? cell.padEnd(widths[0]!) : cell.padStart(widths[column]!)))
-      .join('  ')
-      .trimEnd(),
-  );
-  return [title, ...lines].join('\n');
+  return [title, ...alignedRows(rows)].join('\n');
 }
 
 function metText(met: Readonly<Record<Strictness, boolean>>): string {
   if (met.fault && met['fault-or-watch']) return 'met';
   if (!met.fault && !met['fault-or-watch']) return 'NOT met';
   return met.fault ? 'met by faults alone' : 'met with watches';
-}
-
-function valueText({ worst, all }: FigureValue, unit: Figure['unit']): string {
-  if (worst === null) return '–';
-  return `${numberText(worst, unit)} (${all === null ? '–' : numberText(all, unit)})`;
-}
-
-function numberText(value: number, unit: Figure['unit']): string {
-  switch (unit) {
-    case 'percent':
-      return `${(100 * value).toFixed(1)} %`;
-    case 'a line':
-    case 'ratio':
-      return value.toFixed(3);
-    case 'm':
-      return `${value.toFixed(4)} m`;
-    case 'dB':
-      return `${value.toFixed(4)} dB`;
-    case 'ms':
-      return `${value.toFixed(0)} ms`;
-    case 'count':
-      return String(value);
-  }
-}
-
-function targetText({ target, unit }: FigureRow): string {
-  if (target === null) return '';
-  const { atLeast, atMost } = target;
-  if (atLeast !== undefined && atMost !== undefined)
-    return `${numberText(atLeast, unit)} to ${numberText(atMost, unit)}`;
-  return atLeast !== undefined ? `≥ ${numberText(atLeast, unit)}` : `≤ ${numberText(atMost ?? 0, unit)}`;
 }

@@ -4,12 +4,13 @@ import type { RippleMeasure } from '../scenes/ripple.ts';
 import type { Scene } from '../scenes/scene.ts';
 import { drawScene, type SuiteName } from '../scenes/suites.ts';
 import type { Answer } from './answer.ts';
+import { CHANGE_SUITE_NAMES, type ChangeSuiteName, type ScoredPair, scoredPair } from './change-suites.ts';
 import { plainRecipe } from './plain-recipe.ts';
 import { runProgram } from './run-program.ts';
 import { type SceneScore, scoreScene } from './score.ts';
 
 export type AccuracyTask = {
-  readonly suite: SuiteName;
+  readonly suite: SuiteName | ChangeSuiteName;
   readonly seed: number;
   readonly indices: readonly number[];
   readonly rippleMeasure: RippleMeasure;
@@ -22,16 +23,24 @@ export type ScenePair = {
   readonly misses: readonly string[];
 };
 
+/** What comes back of a task: a scene's scores, or those of a pair of sweeps. */
+export type Scored = ScenePair | ScoredPair;
+
 const cables = await readyTable();
 
 process.on('message', (task: AccuracyTask) => {
-  const pairs = task.indices.map((index) => scenePair(task, index));
-  process.send?.(pairs);
+  process.send?.(task.indices.map((index) => scored(task, index)));
 });
 process.send?.('ready');
 
-function scenePair(task: AccuracyTask, index: number): ScenePair {
-  const scene = drawScene(task.suite, task.seed, index, { rippleMeasure: task.rippleMeasure });
+function scored(task: AccuracyTask, index: number): Scored {
+  const change = CHANGE_SUITE_NAMES.find((name) => name === task.suite);
+  if (change !== undefined) return scoredPair(change, task.seed, index, cables);
+  return scenePair(task, task.suite as SuiteName, index);
+}
+
+function scenePair(task: AccuracyTask, suite: SuiteName, index: number): ScenePair {
+  const scene = drawScene(suite, task.seed, index, { rippleMeasure: task.rippleMeasure });
   const answer = runProgram(scene, cables);
   const program = scoreScene(scene, answer);
   return { program, plain: scoreScene(scene, plainRecipe(scene)), misses: missesOf(scene, answer, program) };

@@ -1,13 +1,11 @@
 /** The figures of each suite, with the targets of design section 13. */
 import { median, quantile } from '../../src/numerics/statistics.ts';
 import type { SuiteName } from '../scenes/suites.ts';
+import type { FigureKind } from './figure-text.ts';
 import type { FaultScore, SceneScore, Strictness } from './score.ts';
 
-export type Figure = {
+export type Figure = FigureKind & {
   readonly label: string;
-  readonly unit: 'percent' | 'a line' | 'm' | 'ms' | 'ratio' | 'count' | 'dB';
-  /** What is asked of it; null when it is only shown. */
-  readonly target: { readonly atLeast?: number; readonly atMost?: number } | null;
   /** Null where the suite gives nothing to count. */
   readonly value: (scores: readonly SceneScore[], strictness: Strictness) => number | null;
 };

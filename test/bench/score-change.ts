@@ -1,6 +1,6 @@
 /** Compares what `compare` concluded with the truth of a pair of sweeps. */
 import type { Comparison } from '../../src/assess/comparison.ts';
-import type { ChangePair } from '../scenes/change-pair.ts';
+import type { ChangePair, GridChange } from '../scenes/change-pair.ts';
 
 export type ChangeScore = {
   readonly seed: number;
@@ -8,6 +8,8 @@ export type ChangeScore = {
   /** Level of the true change, dB; null where there is none. */
   readonly levelDb: number | null;
   readonly atJoint: boolean;
+  readonly grid: GridChange;
+  readonly even: boolean;
   readonly wide: boolean;
   /** The rest of these is null when it wasn't found. */
   readonly found: boolean;
@@ -48,6 +50,8 @@ export function scoreChange(
     index: pair.index,
     levelDb: change?.levelDb ?? null,
     atJoint: change !== null && change.joint !== null,
+    grid: pair.truth.grid,
+    even: pair.truth.even,
     wide: !pair.truth.plan.startsWith('narrow'),
     found: partner !== null,
     kindRight: partner && partner.kind === change?.kind,

@@ -23,7 +23,14 @@ describe('drawChangePair', () => {
     for (const { truth } of pairs.filter((pair) => Math.abs(pair.truth.swingC) > 5)) {
       expect(Math.sign(truth.stretchPpm)).toBe(Math.sign(truth.swingC));
       expect(Math.abs(truth.stretchPpm)).toBeLessThan(700);
-      if (truth.sameGrid) expect(Math.sign(truth.lossChangeDb)).toBe(Math.sign(truth.swingC));
+      if (truth.grid === 'same') expect(Math.sign(truth.lossChangeDb)).toBe(Math.sign(truth.swingC));
     }
+  });
+
+  it('sets the second sweep otherwise where it is asked to, and says how', () => {
+    const others = Array.from({ length: 24 }, (_, index) => drawChangePair(31, index, 1).truth);
+    for (const { grid, even } of others) expect(grid === 'same').toBe(!even);
+    const grids = new Set(others.map(({ grid }) => grid));
+    for (const grid of ['points', 'start', 'stop'] as const) expect(grids).toContain(grid);
   });
 });

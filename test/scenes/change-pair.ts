@@ -48,7 +48,8 @@ export type ChangePair = {
     readonly resolutionM: number;
     readonly lengthM: number;
     readonly swingC: number;
-    readonly sameGrid: boolean;
+    readonly grid: GridChange;
+    readonly even: boolean;
   };
 };
 
@@ -69,26 +70,34 @@ const SECTION_STRAY = 0.15;
 const RE_TORQUED = 0.5;
 const RE_TORQUE_SIGMA = 0.12;
 
-/** Share of pairs whose second sweep has another number of points, or another part of the band. */
+/** How the second sweep is set: as the first, or with other points over the band, or other ends of it. */
+export type GridChange = 'same' | 'points' | 'start' | 'stop';
+
+/** Share of pairs whose second sweep is set otherwise. */
 const OTHER_GRID = 0.2;
 
-/** One pair: the same seed and index give the same texts, character for character. */
-export function drawChangePair(seed: number, index: number): ChangePair {
+/**
+ * One pair: the same seed and index give the same texts, character for character.
+ *
+ * @param otherGridShare Share of pairs whose second sweep is set otherwise; uneven sweeps are all set alike.
+ */
+export function drawChangePair(seed: number, index: number, otherGridShare = OTHER_GRID): ChangePair {
   for (let attempt = 0; ; attempt++) {
     const draws = seededDraws('change', seed, index, attempt);
     const before = drawHealthy(draws, USUAL);
-    const pair = drawAfter(before, draws);
+    const pair = drawAfter(before, draws, otherGridShare);
     if (pair !== null) return writePair(before, pair, seed, index);
   }
 }
 
 type After = {
   readonly recipe: Recipe;
+  readonly grid: GridChange;
   readonly stretches: readonly number[];
   readonly change: PlacedFault | null;
 };
 
-function drawAfter(before: Recipe, draws: Draws): After | null {
+function drawAfter(before: Recipe, draws: Draws, otherGridShare: number): After | null {
   const swingC = draws.uniform(-LARGEST_SWING_C, LARGEST_SWING_C);
   const temperatureC = Math.max(COLDEST_C, Math.min(HOTTEST_C, before.run.temperatureC + swingC));
   const common = (temperatureC - before.run.temperatureC) * draws.uniform(...STRETCH_PPM_PER_C) * 1e-6;
@@ -98,8 +107,11 @@ function drawAfter(before: Recipe, draws: Draws): After | null {
   const joints = before.run.joints.map((joint, j) =>
     j === 0 || draws.chance(RE_TORQUED) ? reTorqued(joint, draws) : joint,
   );
-  const plan = draws.chance(OTHER_GRID) ? otherGrid(before, draws) : before.plan;
-  if (plan === null) return null;
+  const grid = draws.chance(otherGridShare)
+    ? otherGrid(before, draws)
+    : { change: 'same' as const, plan: before.plan };
+  if (grid === null) return null;
+  const { plan } = grid;
   const unchanged: Recipe = {
     ...before,
     plan,
@@ -115,10 +127,11 @@ function drawAfter(before: Recipe, draws: Draws): After | null {
       })),
     },
   };
-  if (!draws.chance(CHANGED)) return { recipe: unchanged, stretches, change: null };
+  if (!draws.chance(CHANGED)) return { recipe: unchanged, grid: grid.change, stretches, change: null };
   const change = draws.chance(AT_JOINT) ? jointChange(unchanged, draws) : cableChange(unchanged, draws);
   if (change === null) return null;
-  return { recipe: { ...unchanged, run: { ...unchanged.run, faults: [change] } }, stretches, change };
+  const changed: Recipe = { ...unchanged, run: { ...unchanged.run, faults: [change] } };
+  return { recipe: changed, grid: grid.change, stretches, change };
 }
 
 function reTorqued(joint: Connector, draws: Draws): Connector {
@@ -130,19 +143,27 @@ function reTorqued(joint: Connector, draws: Draws): Connector {
   return { ...joint, near: half(joint.near), far: half(joint.far) };
 }
 
-/** Another number of points over the same band, or the upper part of it in the same steps; null when it would fold. */
-function otherGrid(before: Recipe, draws: Draws): Recipe['plan'] | null {
+/** Other points over the same band, or the upper or lower part of it in the same steps; null when it would fold. */
+function otherGrid(
+  before: Recipe,
+  draws: Draws,
+): { readonly change: GridChange; readonly plan: Recipe['plan'] } | null {
   const { plan, run } = before;
-  if (!plan.even) return plan;
+  if (!plan.even) return { change: 'same', plan };
   const count = plan.frequencyHz.length;
-  const frequencyHz = draws.chance(0.5)
-    ? evenGrid(plan.name, Math.round(count * draws.uniform(0.8, 1.7)))
-    : plan.frequencyHz.slice(Math.round(count * draws.uniform(0.05, 0.25)));
+  const change = draws.chance(0.5) ? 'points' : draws.chance(0.5) ? 'start' : 'stop';
+  const left = Math.round(count * draws.uniform(0.05, 0.25));
+  const frequencyHz = {
+    points: () => evenGrid(plan.name, Math.round(count * draws.uniform(0.8, 1.7))),
+    start: () => plan.frequencyHz.slice(left),
+    stop: () => plan.frequencyHz.slice(0, count - left),
+  }[change]();
   const slowest = run.sections.reduce((a, b) =>
     a.figures.velocityFactor < b.figures.velocityFactor ? a : b,
   );
   const lengthM = jointDistances(run.sections).at(-1)!;
-  return unambiguousM(slowest.figures, frequencyHz) < 1.15 * lengthM ? null : { ...plan, frequencyHz };
+  if (unambiguousM(slowest.figures, frequencyHz) < 1.15 * lengthM) return null;
+  return { change, plan: { ...plan, frequencyHz } };
 }
 
 /** −35 to −60 dB somewhere in the cables. */
@@ -215,7 +236,8 @@ function writePair(before: Recipe, after: After, seed: number, index: number): C
       resolutionM: resolutionAt(late, after.change?.distanceM ?? lengthM / 2),
       lengthM,
       swingC: late.run.temperatureC - before.run.temperatureC,
-      sameGrid: late.plan.frequencyHz === before.plan.frequencyHz,
+      grid: after.grid,
+      even: before.plan.even,
     },
   };
 }
