@@ -12,6 +12,7 @@ import { closedObject, oneOf, readCheckedJson, visibleText } from '../line/check
 import { nearestWords, orList } from '../line/nearest-word.ts';
 import { parseWindow } from '../numerics/window.ts';
 import { fail, type Outcome, type Problem, succeed } from '../outcome.ts';
+import { GLYPH_SETS, type GlyphSet } from '../plot/glyph-sets.ts';
 import type { Units } from '../plot/quantity-text.ts';
 import { cleanForDisplay } from '../sweep/clean-text.ts';
 import { fileExists, readText, shownName } from './files.ts';
@@ -24,13 +25,24 @@ export type Settings = {
   readonly cableFolders: readonly string[];
   /** False when colour must not be used even on a terminal. */
   readonly colour: boolean;
+  /** Set of colours of the workspace; null where none was chosen. */
+  readonly colours: ColourSet | null;
+  /** Characters that plots are drawn with. */
+  readonly plot: GlyphSet;
 };
+
+/** Sets of colours that the workspace has. */
+export const COLOUR_SETS = ['usual', 'light', 'contrast', 'colour-blind'] as const;
+
+export type ColourSet = (typeof COLOUR_SETS)[number];
 
 /** Flags as typed; null where not given. */
 export type SettingFlags = {
   readonly units: string | null;
   readonly window: string | null;
   readonly cables: string | null;
+  readonly colours?: string | null;
+  readonly plot?: string | null;
 };
 
 /** The variables that are looked at. */
@@ -48,6 +60,8 @@ const settingsFile = closedObject({
   units: v.optional(oneOf(UNITS)),
   window: v.optional(visibleText()),
   cables: v.optional(visibleText(1000)),
+  colours: v.optional(oneOf(COLOUR_SETS)),
+  plot: v.optional(oneOf(GLYPH_SETS)),
 });
 
 /** The platform's folder for this program's settings. */
@@ -78,7 +92,9 @@ export async function loadSettings(
   const windowSpec = flags.window ?? file.value.window ?? DEFAULT_WINDOW;
   const window = parseWindow(windowSpec);
   if (!window.ok) problems.push(...window.problems);
-  if (flags.units !== null && !isUnits(flags.units)) problems.push(unknownUnits(flags.units));
+  const units = chosen('units', flags.units, UNITS, problems);
+  const colours = chosen('colours', flags.colours ?? null, COLOUR_SETS, problems);
+  const plot = chosen('plot', flags.plot ?? null, GLYPH_SETS, problems);
   if (problems.length > 0) return fail(...problems);
 
   const ownCables = join(folder, 'cables');
@@ -88,10 +104,12 @@ export async function loadSettings(
     ...(flags.cables === null ? [] : [flags.cables]),
   ];
   return succeed({
-    units: flags.units !== null && isUnits(flags.units) ? flags.units : (file.value.units ?? 'm'),
+    units: units ?? file.value.units ?? 'm',
     windowSpec,
     cableFolders,
     colour: !environment.NO_COLOR && environment.TERM !== 'dumb',
+    colours: colours ?? file.value.colours ?? null,
+    plot: plot ?? file.value.plot ?? 'braille',
   });
 }
 
@@ -104,21 +122,29 @@ async function readSettingsFile(path: string): Promise<Outcome<v.InferOutput<typ
       units: '"m" or "ft"',
       window: 'a window by name, for example "kaiser:6"',
       cables: 'the path of a folder of cable files',
+      colours: orList(COLOUR_SETS),
+      plot: orList(GLYPH_SETS),
     },
     items: {},
   });
 }
 
-function isUnits(text: string): text is Units {
-  return UNITS.some((units) => units === text);
-}
-
-function unknownUnits(found: string): Problem {
-  const [near] = nearestWords(found, UNITS);
-  return {
+/** One of the words that a flag takes; null where it was not given, or is none of them: then there is a problem too. */
+function chosen<Word extends string>(
+  flag: string,
+  given: string | null,
+  words: readonly Word[],
+  problems: Problem[],
+): Word | null {
+  const word = words.find((one) => one === given);
+  if (word !== undefined || given === null) return word ?? null;
+  const [near] = nearestWords(given, words);
+  problems.push({
     code: 'flag-value',
-    what: 'these are not units of length known here',
-    found: cleanForDisplay(`--units ${found}`, 60),
-    mend: near === undefined ? `use ${orList(UNITS)}` : `did you mean "${near}"?`,
-  };
+    what:
+      flag === 'units' ? 'these are not units of length known here' : `--${flag} takes one of its own words`,
+    found: cleanForDisplay(`--${flag} ${given}`, 60),
+    mend: near === undefined ? `use ${orList(words)}` : `did you mean "${near}"?`,
+  });
+  return null;
 }

@@ -33,6 +33,11 @@ export const FLAGS = {
   'standard-load': { value: 'FILE', help: 'sweep of a load there; the sweep is corrected with all three' },
   cables: { value: 'FOLDER', help: 'your own cable files, which win over the table' },
   units: { value: 'm|ft', help: 'metres and °C (default), or feet and °F' },
+  colours: {
+    value: 'SET',
+    help: 'colours of the workspace: usual, light (background), contrast or colour-blind',
+  },
+  plot: { value: 'SET', help: 'characters of the plots: braille (default), blocks or ascii' },
   json: { value: null, help: 'one JSON document instead of text' },
   trace: { value: 'FILE', help: 'also write trace and impedance profile as CSV' },
   at: { value: 'FREQUENCY', help: 'frequency for loss and delay, like 900MHz' },
@@ -109,7 +114,7 @@ export const VERBS = {
       'Opens a sweep in the full-screen workspace; without one, the sample that comes with the program. This is what ' +
         'happens when no verb is given. Where standard output is not a terminal the located echoes are printed as text.',
     ],
-    flags: ANALYSIS_FLAGS,
+    flags: [...ANALYSIS_FLAGS, 'colours', 'plot'],
     examples: [
       { command: 'feedsonde', shows: 'the bundled sample' },
       { command: 'feedsonde samples/south-3.s1p', shows: 'a sweep with its line file beside it' },

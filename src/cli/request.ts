@@ -28,6 +28,8 @@ export async function prepareTables(
       units: invocation.text('units'),
       window: invocation.text('window'),
       cables: invocation.text('cables'),
+      colours: invocation.text('colours'),
+      plot: invocation.text('plot'),
     },
     io.env,
   );

@@ -2,11 +2,13 @@
 import type { Analysis } from '../app/analysis.ts';
 import { bundledPath } from '../app/bundled.ts';
 import { readBytes } from '../app/files.ts';
+import type { ColourSet } from '../app/settings.ts';
 import type { AnalyseRequest, Solver } from '../app/solver.ts';
 import { type TraceView, traceWindow } from '../app/trace-view.ts';
 import type { Cable } from '../line/cable.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import type { Notice, Outcome } from '../outcome.ts';
+import type { GlyphSet } from '../plot/glyph-sets.ts';
 import type { Units } from '../plot/quantity-text.ts';
 import { CAUTIONS, type Cautions } from '../report/cautions.ts';
 import type { ExitStatus, Io } from './io.ts';
@@ -26,6 +28,8 @@ export type WorkspaceInput = {
   /** What was decided without being asked while the request was put together. */
   readonly notices: readonly Notice[];
   readonly units: Units;
+  readonly colours: ColourSet | null;
+  readonly glyphs: GlyphSet;
   readonly solver: Solver;
   readonly files: { readSweep(file: string): Promise<Outcome<Uint8Array>> };
   readonly traceWindow: (analysis: Analysis, view: TraceView) => DistanceTrace;
@@ -62,6 +66,8 @@ export async function runWorkspace(
       initial: request,
       notices: prepared.notices,
       units: settings.units,
+      colours: settings.colours,
+      glyphs: settings.plot,
       solver,
       files: { readSweep: (file) => readBytes(file) },
       traceWindow,

@@ -12,6 +12,7 @@ export type Role =
   | 'trace'
   | 'ohms'
   | 'baseline'
+  | 'tried'
   | 'difference'
   | 'doubt'
   | 'guide'

@@ -1,9 +1,11 @@
 /** What the workspace is handed from outside: streams, the first question, and everyone who can answer. */
 import type { Analysis } from '../app/analysis.ts';
+import type { ColourSet } from '../app/settings.ts';
 import type { AnalyseRequest, Solver } from '../app/solver.ts';
 import type { Cable } from '../line/cable.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import type { Notice, Outcome } from '../outcome.ts';
+import type { GlyphSet } from '../plot/glyph-sets.ts';
 import type { Units } from '../plot/quantity-text.ts';
 
 /** Which piece of the trace is wanted, and how. */
@@ -50,6 +52,9 @@ export type WorkspaceConfig = {
   /** What was decided without being asked while the first question was put together. */
   readonly notices?: readonly Notice[];
   readonly units: Units;
+  /** Set of colours; null leaves it to the terminal. */
+  readonly colours: ColourSet | null;
+  readonly glyphs: GlyphSet;
   readonly solver: Solver;
   readonly files: FileAccess;
   readonly traceWindow: TraceWindow;

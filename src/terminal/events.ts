@@ -16,6 +16,7 @@ export type KeyEvent =
   | { readonly type: 'view'; readonly view: ViewId }
   | { readonly type: 'nextView'; readonly by: 1 | -1 }
   | { readonly type: 'toggleUnits' }
+  | { readonly type: 'nextColours' }
   | { readonly type: 'toggleCorrected' }
   | { readonly type: 'openPage'; readonly page: PageName }
   | { readonly type: 'scroll'; readonly lines: number }

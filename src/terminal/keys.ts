@@ -173,6 +173,12 @@ const WORK: readonly KeyRow[] = [
   },
   {
     group: 'program',
+    shown: 'p',
+    does: 'other colours: light, high contrast, colour-blind',
+    strokes: { p: { type: 'nextColours' } },
+  },
+  {
+    group: 'program',
     shown: '!',
     does: 'cautions: before you connect or climb',
     strokes: { '!': { type: 'openPage', page: 'cautions' } },

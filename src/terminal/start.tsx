@@ -1,12 +1,13 @@
 /** Opens the workspace on a terminal and comes back when it is left, with the terminal as it was. */
 import { render } from 'ink';
 import type { WorkspaceConfig } from './config.ts';
+import { paletteFor } from './palettes.ts';
 import { createPerform } from './perform.ts';
 import { createProgram, type Program } from './program.ts';
 import { createScreen, sizeOf } from './screen.ts';
 import { openSession } from './session.ts';
 import { initialState } from './state.ts';
-import { themeFor } from './theme.ts';
+import { hasColour } from './theme.ts';
 import { update } from './update.ts';
 import { AppView } from './views/app-view.tsx';
 
@@ -25,6 +26,9 @@ export async function startWorkspace(config: WorkspaceConfig): Promise<void> {
       ...sizeOf(stdout),
       request: config.initial,
       units: config.units,
+      colours: config.colours ?? paletteFor(config.env),
+      hasColour: hasColour(config.env),
+      glyphs: config.glyphs,
       cables: config.cables,
       cautions: config.cautions,
       openingNotices: config.notices ?? [],
@@ -53,7 +57,7 @@ export async function startWorkspace(config: WorkspaceConfig): Promise<void> {
   stdout.on('resize', resized);
   let unmount = (): void => {};
   try {
-    const app = render(<AppView program={program} theme={themeFor(config.env)} />, {
+    const app = render(<AppView program={program} env={config.env} />, {
       stdout: screen.stream,
       stdin,
       // Frames are handed over whole; the screen writes what differs.

@@ -1,9 +1,11 @@
 /** What is on the screen, as plain data. What follows from it is in `derived.ts`, never stored twice. */
 import type { Analysis } from '../app/analysis.ts';
+import type { ColourSet } from '../app/settings.ts';
 import type { AnalyseRequest } from '../app/solver.ts';
 import type { Cable } from '../line/cable.ts';
 import type { DistanceTrace } from '../locate/distance-trace.ts';
 import type { Notice, Problem } from '../outcome.ts';
+import type { GlyphSet } from '../plot/glyph-sets.ts';
 import type { Units } from '../plot/quantity-text.ts';
 import type { Domain } from '../plot/scale.ts';
 import type { Cautions } from './config.ts';
@@ -61,6 +63,10 @@ export type State = {
   /** Number of the latest wish for a trace. */
   readonly lastTraceId: number;
   readonly units: Units;
+  readonly colours: ColourSet;
+  /** False under NO_COLOR and where the terminal has none. */
+  readonly hasColour: boolean;
+  readonly glyphs: GlyphSet;
   readonly panel: Panel | null;
   /** The cautions' one line is shown until they were opened once. */
   readonly cautionsRead: boolean;
@@ -79,6 +85,9 @@ export function initialState(start: {
   readonly rows: number;
   readonly request: AnalyseRequest | null;
   readonly units: Units;
+  readonly colours?: ColourSet;
+  readonly hasColour?: boolean;
+  readonly glyphs?: GlyphSet;
   readonly cables: readonly Cable[];
   readonly cautions: Cautions;
   readonly openingNotices?: readonly Notice[];
@@ -100,6 +109,9 @@ export function initialState(start: {
     trace: null,
     lastTraceId: 0,
     units: start.units,
+    colours: start.colours ?? 'usual',
+    hasColour: start.hasColour ?? true,
+    glyphs: start.glyphs ?? 'braille',
     panel: null,
     cautionsRead: false,
     remark: null,

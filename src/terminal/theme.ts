@@ -1,81 +1,34 @@
-/** Roles to terminal styles. Colours are the terminal's own sixteen, so they suit its background, dark or light. */
-import type { Role, Run } from '../plot/run.ts';
+/** Roles to terminal styles. */
+import type { ColourSet } from '../app/settings.ts';
+import { type GlyphSet, inGlyphSet } from '../plot/glyph-sets.ts';
+import type { Run } from '../plot/run.ts';
+import { BARE_STYLES, MONOCHROME_STYLES, PALETTES, type Styles } from './palettes.ts';
 
-/** SGR parameters of a role; empty for plain text. */
-export type Theme = { readonly name: string; readonly styles: Readonly<Record<Role, readonly number[]>> };
+/** How rows look: a style for each role, and the characters that the terminal has. */
+export type Theme = { readonly styles: Styles; readonly glyphs: GlyphSet };
 
-const BOLD = 1;
-const DIM = 2;
-const INVERSE = 7;
-const RED = 31;
-const GREEN = 32;
-const YELLOW = 33;
-const MAGENTA = 35;
-const CYAN = 36;
-
-/** Weight and reversal only. */
-const MONOCHROME: Theme = {
-  name: 'monochrome',
-  styles: {
-    plain: [],
-    dim: [DIM],
-    strong: [BOLD],
-    chosen: [INVERSE],
-    key: [BOLD],
-    axis: [DIM],
-    line: [],
-    trace: [],
-    ohms: [],
-    baseline: [DIM],
-    difference: [BOLD],
-    doubt: [DIM],
-    guide: [DIM],
-    cursor: [BOLD],
-    fault: [BOLD],
-    watch: [BOLD],
-    sound: [],
-    caution: [BOLD],
-  },
-};
-
-/** The usual set. */
-const COLOURS: Theme = {
-  name: 'colours',
-  styles: {
-    ...MONOCHROME.styles,
-    trace: [CYAN],
-    ohms: [MAGENTA],
-    difference: [YELLOW],
-    fault: [BOLD, RED],
-    watch: [BOLD, YELLOW],
-    sound: [GREEN],
-    caution: [YELLOW],
-  },
-};
-
-/** Nothing but characters, for terminals that know no styles. */
-export const BARE: Theme = {
-  name: 'bare',
-  styles: Object.fromEntries(Object.keys(MONOCHROME.styles).map((role) => [role, []])) as unknown as Record<
-    Role,
-    readonly number[]
-  >,
-};
+/** True where colours may be used: not where NO_COLOR is set to anything but nothing, nor on a dumb terminal. */
+export function hasColour(env: Readonly<Record<string, string | undefined>>): boolean {
+  return !env['NO_COLOR'] && env['TERM'] !== 'dumb';
+}
 
 /**
- * The theme for an environment: no colour where NO_COLOR is set to anything but nothing, no styles on a dumb terminal.
+ * The theme for an environment: no colour where NO_COLOR is set, no styles on a dumb terminal.
  *
  * @source no-color.org (the convention of the NO_COLOR variable).
  */
-export function themeFor(env: Readonly<Record<string, string | undefined>>): Theme {
-  if (env['TERM'] === 'dumb') return BARE;
-  return env['NO_COLOR'] ? MONOCHROME : COLOURS;
+export function themeFor(
+  env: Readonly<Record<string, string | undefined>>,
+  look: { readonly colours: ColourSet; readonly glyphs: GlyphSet } = { colours: 'usual', glyphs: 'braille' },
+): Theme {
+  if (env['TERM'] === 'dumb') return { styles: BARE_STYLES, glyphs: look.glyphs };
+  return { styles: hasColour(env) ? PALETTES[look.colours] : MONOCHROME_STYLES, glyphs: look.glyphs };
 }
 
 /** A row of runs as text with escape codes; each run ends in a reset, so that rows stand alone. */
 export function styledText(runs: readonly Run[], theme: Theme): string {
   let text = '';
-  for (const { text: piece, role } of runs) {
+  for (const { text: piece, role } of inGlyphSet(runs, theme.glyphs)) {
     const style = theme.styles[role];
     text += style.length === 0 || piece === '' ? piece : `\u001b[${style.join(';')}m${piece}\u001b[0m`;
   }

@@ -1,4 +1,5 @@
 /** What each event does to the state, and what it asks of the world. Pure: the whole workspace can be run without a terminal. */
+import { COLOUR_SETS } from '../app/settings.ts';
 import { assertNever } from '../outcome.ts';
 import { readAgain, solved, solveEffects, sweepRead } from './asking.ts';
 import { chosenOf, traceWish } from './derived.ts';
@@ -6,6 +7,7 @@ import type { Effect } from './effects.ts';
 import type { Event } from './events.ts';
 import { choose, cursorTo, moveCursor, pan, zoom } from './looking.ts';
 import { mostScroll } from './pages/pages.ts';
+import { PALETTE_WORDS } from './palettes.ts';
 import { openPicker, pickFilter, pickMove, pickTake } from './picking.ts';
 import { analysisOf, type Panel, type State } from './state.ts';
 import type { Step } from './step.ts';
@@ -65,6 +67,8 @@ function apply(state: State, event: Event): Step {
     }
     case 'toggleUnits':
       return [{ ...state, units: state.units === 'm' ? 'ft' : 'm' }, []];
+    case 'nextColours':
+      return [nextColours(state), []];
     case 'toggleCorrected':
       return [{ ...state, corrected: !state.corrected }, []];
     case 'openPage':
@@ -125,6 +129,14 @@ function scroll(state: State, lines: number): State {
   const { page } = state.panel;
   const wanted = Math.min(mostScroll(state, page), state.panel.scroll + lines);
   return { ...state, panel: { ...state.panel, scroll: Math.max(0, wanted) } };
+}
+
+/** The next set of colours, and its name. */
+function nextColours(state: State): State {
+  if (!state.hasColour)
+    return { ...state, remark: 'there is no colour here: NO_COLOR is set, or TERM is dumb' };
+  const colours = COLOUR_SETS[(COLOUR_SETS.indexOf(state.colours) + 1) % COLOUR_SETS.length]!;
+  return { ...state, colours, remark: `colours ${PALETTE_WORDS[colours]}` };
 }
 
 function closePanel(state: State): State {

@@ -30,7 +30,14 @@ describe('loadSettings', () => {
   it('gives the defaults where nothing is set', async () => {
     expect(await loadSettings(NO_FLAGS, {}, empty)).toEqual({
       ok: true,
-      value: { units: 'm', windowSpec: 'kaiser:6', cableFolders: [], colour: true },
+      value: {
+        units: 'm',
+        windowSpec: 'kaiser:6',
+        cableFolders: [],
+        colour: true,
+        colours: null,
+        plot: 'braille',
+      },
       notices: [],
     });
   });
@@ -51,6 +58,22 @@ describe('loadSettings', () => {
   ])('with %j has colour %s', async (environment, colour) => {
     const settings = await loadSettings(NO_FLAGS, environment, empty);
     expect(settings.ok && settings.value.colour).toBe(colour);
+  });
+
+  it('takes colours and the characters of plots, flags over the file', async () => {
+    await writeFile(
+      join(filled, 'settings.json'),
+      '{ "units": "ft", "colours": "contrast", "plot": "ascii" }',
+    );
+    const file = await loadSettings(NO_FLAGS, {}, filled);
+    expect(file.ok && file.value).toMatchObject({ colours: 'contrast', plot: 'ascii' });
+    const flags = await loadSettings({ ...NO_FLAGS, colours: 'light', plot: 'blocks' }, {}, filled);
+    expect(flags.ok && flags.value).toMatchObject({ colours: 'light', plot: 'blocks' });
+    const wrong = await loadSettings({ ...NO_FLAGS, colours: 'ligth', plot: 'dots' }, {}, filled);
+    expect(!wrong.ok && wrong.problems.map(({ found, mend }) => [found, mend])).toEqual([
+      ['--colours ligth', 'did you mean "light"?'],
+      ['--plot dots', 'use "braille", "blocks" or "ascii"'],
+    ]);
   });
 
   it('names every wrong flag at once', async () => {

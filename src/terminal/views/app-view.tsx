@@ -5,16 +5,17 @@ import { useProgram } from '../hooks/use-program.ts';
 import { eventFor } from '../keys.ts';
 import type { Program } from '../program.ts';
 import { strokesOf } from '../strokes.ts';
-import type { Theme } from '../theme.ts';
+import { themeFor } from '../theme.ts';
 import { ScreenView } from './screen-view.tsx';
 
 /** The whole screen. */
 export function AppView({
   program,
-  theme,
+  env,
 }: {
   readonly program: Program;
-  readonly theme: Theme;
+  /** What the terminal says of itself, and NO_COLOR. */
+  readonly env: Readonly<Record<string, string | undefined>>;
 }): ReactElement {
   const state = useProgram(program);
   const onInput = useCallback(
@@ -27,5 +28,5 @@ export function AppView({
     [program],
   );
   useInput(onInput);
-  return <ScreenView state={state} theme={theme} />;
+  return <ScreenView state={state} theme={themeFor(env, state)} />;
 }
