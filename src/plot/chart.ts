@@ -51,7 +51,12 @@ export type ChartMark = {
   readonly y: number | null;
   readonly glyph: string;
   readonly role: Role;
+  /** What is written instead where there is room for more than a cell: "×1". */
+  readonly label?: string;
 };
+
+/** A dotted line across; its label is written on it where a drawing has room. */
+export type ChartLevel = { readonly y: number; readonly role: Role; readonly label?: string };
 
 /** A picture in units. Later series and marks lie over earlier ones. */
 export type ChartSpec = {
@@ -61,7 +66,7 @@ export type ChartSpec = {
   /** Drawn under everything else. */
   readonly areas?: readonly Area[];
   /** Dotted lines across: limits, noise floor, a reference impedance. */
-  readonly levels: readonly { readonly y: number; readonly role: Role }[];
+  readonly levels: readonly ChartLevel[];
   readonly marks: readonly ChartMark[];
   /** Where the dotted hair stands; null for none. */
   readonly cursor: number | null;
@@ -107,8 +112,8 @@ export function drawChart(spec: ChartSpec, size: ChartSize): ChartFrame {
   for (const mark of spec.marks) placeMark(rows, mark, spec, x, y);
   return {
     rows: rows.map(mergeRuns),
-    yLabels: yLabels(spec.y, y, size.height),
-    xLabels: xLabels(spec.x, x, size.width),
+    yLabels: yLabels(spec.y, size.height),
+    xLabels: placedTicks(spec.x, x, size.width).labels,
   };
 }
 
@@ -158,24 +163,42 @@ function replaceCell(row: Run[], column: number, cell: Run): void {
   }
 }
 
-function yLabels(axis: AxisSpec, y: Scale, height: number): readonly string[] {
-  const labels: string[] = Array.from({ length: height }, () => '');
-  for (const tick of axisTicks(axis.domain, Math.max(2, Math.floor(height / 2)), axis.perUnit)) {
+/** Ticks up the side of a plot `rows` cells high: one in two cells, each in a row of its own, none outside. */
+export function ticksUp(axis: AxisSpec, rows: number): readonly (Tick & { readonly row: number })[] {
+  const y = linearScale(axis.domain, rows * DOTS_DOWN);
+  const taken = new Set<number>();
+  return axisTicks(axis.domain, Math.max(2, Math.floor(rows / 2)), axis.perUnit).flatMap((tick) => {
     const row = Math.floor(rowOf(y, tick.value) / DOTS_DOWN);
-    if (row >= 0 && row < height && labels[row] === '') labels[row] = tick.text;
-  }
+    if (row < 0 || row >= rows || taken.has(row)) return [];
+    taken.add(row);
+    return [{ ...tick, row }];
+  });
+}
+
+/** Ticks along the foot of a plot `width` cells wide: about ten cells apart, at least three blanks between them. */
+export function ticksAcross(axis: AxisSpec, width: number): readonly Tick[] {
+  return placedTicks(axis, cellScale(axis.domain, width), width).ticks;
+}
+
+function yLabels(axis: AxisSpec, height: number): readonly string[] {
+  const labels: string[] = Array.from({ length: height }, () => '');
+  for (const { row, text } of ticksUp(axis, height)) labels[row] = text;
   return labels;
 }
 
-/** Round numbers about ten cells apart, at least three blanks between them; the last carries the unit. */
-function xLabels(axis: AxisSpec, x: Scale, width: number): readonly PlacedText[] {
+/** The last label carries the unit. */
+function placedTicks(
+  axis: AxisSpec,
+  x: Scale,
+  width: number,
+): { readonly ticks: readonly Tick[]; readonly labels: readonly PlacedText[] } {
   for (let count = Math.max(2, Math.floor(width / 10)); count >= 1; count--) {
     const ticks = axisTicks(axis.domain, count, axis.perUnit);
-    const placed = ticks.map((tick, i) => placeLabel(tick, axis.unit, x, width, i === ticks.length - 1));
-    const clear = placed.every((label, i) => i === 0 || endOf(placed[i - 1]!) + 3 <= label.column);
-    if (clear && placed.length > 0) return placed;
+    const labels = ticks.map((tick, i) => placeLabel(tick, axis.unit, x, width, i === ticks.length - 1));
+    const clear = labels.every((label, i) => i === 0 || endOf(labels[i - 1]!) + 3 <= label.column);
+    if (clear && labels.length > 0) return { ticks, labels };
   }
-  return [];
+  return { ticks: [], labels: [] };
 }
 
 function placeLabel(tick: Tick, unit: string, x: Scale, width: number, last: boolean): PlacedText {

@@ -28,6 +28,8 @@ export type StripMark = {
   readonly distanceM: number;
   readonly severity: MarkSeverity;
   readonly chosen: boolean;
+  /** What is written on paper, where there is room for more than a sign: "×1". */
+  readonly label?: string;
 };
 
 export type LineStripSpec = {
