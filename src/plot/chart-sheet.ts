@@ -1,256 +1,197 @@
 /** A chart on paper: the same spec as in the terminal, with the same ticks, as shapes. */
-import { type AxisSpec, type ChartMark, type ChartSpec, type Series, ticksAcross, ticksUp } from './chart.ts';
+import { type Area, type AxisSpec, type ChartLevel, type ChartSpec, ticksAcross, ticksUp } from './chart.ts';
+import { curvePieces, type ToPlace } from './curve-places.ts';
+import type { Role } from './run.ts';
 import {
   CELL_HEIGHT,
   CELL_WIDTH,
-  type Sheet,
+  letters,
   lettersWidth,
   MARGIN_LEFT,
   MARGIN_RIGHT,
   type Place,
   rowsWithoutOverlap,
   type Shape,
+  type Sheet,
+  SIGN_ROW,
+  SIGN_SIZE,
   type Stroke,
-  TEXT_SIZE,
+  sign,
 } from './sheet.ts';
-import type { Role } from './run.ts';
 
 /** Size of the plot in the cells of a terminal that would show it alike. */
-export type PaperSize = { readonly width: number; readonly height: number };
+export type PlotSize = { readonly width: number; readonly height: number };
 
 /** Room over the plot for signs, and under it for the ticks' texts. */
 const ROOM_ABOVE = 18;
 const ROOM_BELOW = 26;
-/** Height of a row of signs that stand over each other. */
-const SIGN_ROW = 15;
 const GAP = 4;
-const SMALL_TEXT = 11;
 
-/** How each role of a curve is drawn, so that curves differ without colour. */
-const CURVES: Readonly<Partial<Record<Role, Pick<Stroke, 'width' | 'dash'>>>> = {
-  baseline: { width: 1.2, dash: [5, 3] },
-  guide: { width: 1.4, dash: [2, 3] },
-  dim: { width: 1, dash: [1, 3] },
-};
-const PLAIN_CURVE: Pick<Stroke, 'width'> = { width: 1.5 };
+/** Widths of curves by role, so that they differ without colour; those not named are of the middle width. */
+const WIDTHS: Readonly<Partial<Record<Role, number>>> = { baseline: 1, guide: 1.4, difference: 2 };
+const USUAL_WIDTH = 1.5;
+/** Lengths drawn and left out in a dotted curve or level. */
+const DOTTED: readonly number[] = [2, 3];
 
-/** From a value to a place along one side of the plot. */
-type Along = (value: number) => number;
+/** Where the plot lies on the paper. */
+type Edges = { readonly left: number; readonly right: number; readonly top: number; readonly bottom: number };
 
 /**
  * Draws a chart.
  *
  * @throws RangeError When a domain does not rise or the size is below 1 × 1.
  */
-export function chartSheet(spec: ChartSpec, size: PaperSize): Sheet {
+export function chartSheet(spec: ChartSpec, size: PlotSize): Sheet {
+  const signs = placeSigns(spec);
   const left = MARGIN_LEFT;
   const right = left + size.width * CELL_WIDTH;
-  const x = along(spec.x, left, right);
-  const marks = placeMarks(spec, x);
-  const top = ROOM_ABOVE + SIGN_ROW * Math.max(0, ...marks.map(({ row }) => row));
-  const bottom = top + size.height * CELL_HEIGHT;
-  const y = along(spec.y, bottom, top);
-  const up = ticksUp(spec.y, size.height);
-  const across = ticksAcross(spec.x, size.width);
-  const shapes: Shape[] = [
-    ...up.map((tick) => gridLine([left, y(tick.value)], [right, y(tick.value)])),
-    ...across.map((tick) => gridLine([x(tick.value), top], [x(tick.value), bottom])),
-    {
-      shape: 'stroke',
-      places: [
-        [left, top],
-        [left, bottom],
-        [right, bottom],
-      ],
-      role: 'axis',
-      width: 1,
-    },
-    ...up.map(
-      (tick): Shape => ({
-        shape: 'letters',
-        at: [left - 6, y(tick.value) + 4],
-        text: tick.text,
-        role: 'plain',
-        anchor: 'end',
-        size: SMALL_TEXT,
-      }),
-    ),
-    {
-      shape: 'letters',
-      at: [left - 6, top - 6],
-      text: spec.y.unit,
-      role: 'plain',
-      anchor: 'end',
-      size: SMALL_TEXT,
-    },
-    ...across.map(
-      (tick, i): Shape => ({
-        shape: 'letters',
-        at: [x(tick.value), bottom + 16],
-        text: i === across.length - 1 ? `${tick.text} ${spec.x.unit}` : tick.text,
-        role: 'plain',
-        anchor: 'middle',
-        size: SMALL_TEXT,
-      }),
-    ),
-    ...spec.levels.flatMap((level): Shape[] => {
-      if (level.y < Math.min(...spec.y.domain) || level.y > Math.max(...spec.y.domain)) return [];
-      const line = curveStroke(
-        [
-          [left, y(level.y)],
-          [right, y(level.y)],
-        ],
-        'guide',
-      );
-      return level.label === undefined
-        ? [line]
-        : [
-            line,
-            {
-              shape: 'letters',
-              at: [right - GAP, y(level.y) - GAP],
-              text: level.label,
-              role: 'plain',
-              anchor: 'end',
-              size: SMALL_TEXT,
-            },
-          ];
-    }),
-    ...spec.series.flatMap((series) =>
-      curvePieces(series, spec, x, y).map((places) => curveStroke(places, series.role)),
-    ),
-    ...markShapes(marks, (value) => y(Math.min(spec.y.domain[1], Math.max(spec.y.domain[0], value))), {
-      left,
-      right,
-      top,
-    }),
-  ];
-  return { width: right + MARGIN_RIGHT, height: bottom + ROOM_BELOW, shapes };
+  const rows = rowsWithoutOverlap(signs.map((one): Place => spanOf(one, left, right)));
+  const top = ROOM_ABOVE + SIGN_ROW * Math.max(0, ...rows);
+  const edges = { left, right, top, bottom: top + size.height * CELL_HEIGHT };
+  const toPlace = placer(spec, edges);
+  return {
+    width: right + MARGIN_RIGHT,
+    height: edges.bottom + ROOM_BELOW,
+    shapes: [
+      ...(spec.areas ?? []).flatMap((area) => areaShapes(area, spec, toPlace)),
+      ...axisShapes(spec, size, edges, toPlace),
+      ...spec.levels.flatMap((level) => levelShapes(level, spec, edges, toPlace)),
+      ...spec.series.flatMap((series) =>
+        curvePieces(series, spec, toPlace).map((places) =>
+          curve(places, series.role, series.dotted ?? false),
+        ),
+      ),
+      ...signs.flatMap((one, i) => signShapes(one, rows[i]!, edges, toPlace)),
+    ],
+  };
 }
 
-function along({ domain: [start, stop] }: AxisSpec, from: number, to: number): Along {
+function placer({ x, y }: Pick<ChartSpec, 'x' | 'y'>, { left, right, top, bottom }: Edges): ToPlace {
+  const across = spread(x, left, right);
+  const up = spread(y, bottom, top);
+  return (valueX, valueY) => [across(valueX), up(valueY)];
+}
+
+function spread({ domain: [start, stop] }: AxisSpec, from: number, to: number): (value: number) => number {
   if (!(Number.isFinite(start) && Number.isFinite(stop) && start < stop))
     throw new RangeError(`domain must rise, got ${start} to ${stop}`);
   const perUnit = (to - from) / (stop - start);
   return (value) => from + (value - start) * perUnit;
 }
 
-function gridLine(from: Place, to: Place): Stroke {
-  return { shape: 'stroke', places: [from, to], role: 'dim', width: 0.5 };
+function axisShapes(spec: ChartSpec, size: PlotSize, edges: Edges, toPlace: ToPlace): Shape[] {
+  const { left, right, top, bottom } = edges;
+  const across = ticksAcross(spec.x, size.width);
+  const xOf = (value: number): number => toPlace(value, 0)[0];
+  const yOf = (value: number): number => toPlace(0, value)[1];
+  const up = ticksUp(spec.y, size.height).map(({ value, text }) => ({ y: yOf(value), text }));
+  return [
+    ...up.map(({ y }) => grid([left, y], [right, y])),
+    ...across.map(({ value }) => grid([xOf(value), top], [xOf(value), bottom])),
+    stroke(
+      [
+        [left, top],
+        [left, bottom],
+        [right, bottom],
+      ],
+      'axis',
+      1,
+    ),
+    ...up.map(({ y, text }) => letters(text, [left - 6, y + 4], 'end')),
+    letters(spec.y.unit, [left - 6, top - 8], 'end'),
+    ...across.map(({ value, text }, i) =>
+      letters(i === across.length - 1 ? `${text} ${spec.x.unit}` : text, [xOf(value), bottom + 16]),
+    ),
+  ];
 }
 
-function curveStroke(places: readonly Place[], role: Role): Stroke {
-  return { shape: 'stroke', places, role, ...(CURVES[role] ?? PLAIN_CURVE) };
+function levelShapes(
+  { y, label }: ChartLevel,
+  { y: axis }: ChartSpec,
+  edges: Edges,
+  toPlace: ToPlace,
+): Shape[] {
+  if (y < axis.domain[0] || y > axis.domain[1]) return [];
+  const at = toPlace(0, y)[1];
+  const line = curve(
+    [
+      [edges.left, at],
+      [edges.right, at],
+    ],
+    'guide',
+    true,
+  );
+  return label === undefined ? [line] : [line, letters(label, [edges.right - GAP, at - GAP], 'end')];
 }
 
-/** Columns a unit of paper is parted into: finer is not seen in print. */
-const COLUMNS_PER_UNIT = 2;
-
-/**
- * A curve as lines through places: in each narrow column the first, lowest, highest and last sample, so that no peak
- * is lost and a sweep of many points makes no larger picture. A gap parts it; what lies outside the axes is clipped.
- */
-function curvePieces(series: Series, spec: ChartSpec, x: Along, y: Along): Place[][] {
-  const [xFrom, xTo] = spec.x.domain;
-  const [yFrom, yTo] = spec.y.domain;
-  const pieces: Place[][] = [];
-  let piece: Place[] = [];
-  let column: Place[] = [];
-  let columnAt = Number.NaN;
-  const flushColumn = (): void => {
-    piece.push(...fewest(column));
-    column = [];
-  };
-  const flushPiece = (): void => {
-    flushColumn();
-    if (piece.length > 1) pieces.push(piece);
-    piece = [];
-    columnAt = Number.NaN;
-  };
-  for (let i = 0; i < series.x.length; i++) {
-    const valueX = series.x[i]!;
-    const valueY = series.y[i]!;
-    if (Number.isNaN(valueY) || valueX < xFrom || valueX > xTo) {
-      flushPiece();
-      continue;
-    }
-    const place: Place = [x(valueX), y(Math.min(yTo, Math.max(yFrom, valueY)))];
-    const at = Math.floor(place[0] * COLUMNS_PER_UNIT);
-    if (at !== columnAt) flushColumn();
-    columnAt = at;
-    column.push(place);
-  }
-  flushPiece();
-  return pieces;
+/** What lies between two curves: along the upper one and back along the lower one. */
+function areaShapes({ x, low, high, role }: Area, spec: ChartSpec, toPlace: ToPlace): Shape[] {
+  const uppers = curvePieces({ x, y: high }, spec, toPlace);
+  const lowers = curvePieces({ x, y: low }, spec, toPlace);
+  return uppers.flatMap((upper, i): Shape[] => {
+    const lower = lowers[i];
+    return lower ? [{ shape: 'patch', places: [...upper, ...[...lower].reverse()], role }] : [];
+  });
 }
 
-/** First, highest, lowest and last of a column, in their order. */
-function fewest(column: readonly Place[]): readonly Place[] {
-  if (column.length <= 4) return column;
-  let high = 0;
-  let low = 0;
-  for (let i = 1; i < column.length; i++) {
-    if (column[i]![1] < column[high]![1]) high = i;
-    if (column[i]![1] > column[low]![1]) low = i;
-  }
-  return [...new Set([0, high, low, column.length - 1])].sort((a, b) => a - b).map((i) => column[i]!);
-}
-
-/** A sign that lies within the axes, with the row it stands in over the others. */
-type PlacedMark = {
-  readonly mark: ChartMark;
+/** A sign with the place that it names. */
+type Sign = {
   readonly text: string;
-  readonly at: number;
-  readonly value: number;
-  readonly half: number;
-  readonly row: number;
+  readonly role: Role;
+  /** Share of the x axis. */
+  readonly share: number;
+  readonly x: number;
+  readonly y: number;
 };
 
-function placeMarks(spec: ChartSpec, x: Along): readonly PlacedMark[] {
-  const [from, to] = spec.x.domain;
-  const drawn = spec.marks.flatMap((mark) => {
-    const value = mark.y ?? highestNear(spec.series, mark.x, (to - from) / NEARBY);
-    if (value === null || mark.x < from || mark.x > to) return [];
-    const text = mark.label ?? mark.glyph;
-    return [{ mark, text, at: x(mark.x), value, half: lettersWidth(text) / 2 + 1 }];
-  });
-  const rows = rowsWithoutOverlap(drawn.map(({ at, half }): Place => [at - half, at + half]));
-  return drawn.map((placed, i) => ({ ...placed, row: rows[i]! }));
-}
-
 /** A sign stands over what the curve does within this share of the axis. */
-const NEARBY = 200;
+const NEARBY = 1 / 200;
 
-/** Signs over the curve; those that would cover each other stand in rows, with a stem down to it. */
-function markShapes(
-  marks: readonly PlacedMark[],
-  y: (value: number) => number,
-  edges: { readonly left: number; readonly right: number; readonly top: number },
-): Shape[] {
-  return marks.flatMap(({ mark, text, at, value, half, row }): Shape[] => {
-    const foot = Math.max(edges.top, y(value));
-    const base = foot - GAP - SIGN_ROW * row;
-    return [
-      ...(row > 0 ? [stemOf(mark, [at, base + 2], [at, foot])] : []),
-      {
-        shape: 'letters',
-        at: [Math.min(edges.right - half, Math.max(edges.left + half, at)), base],
-        text,
-        role: mark.role,
-        anchor: 'middle',
-        size: TEXT_SIZE,
-        strong: true,
-      },
-    ];
+function placeSigns(spec: ChartSpec): readonly Sign[] {
+  const [from, to] = spec.x.domain;
+  const [low, high] = spec.y.domain;
+  return spec.marks.flatMap(({ x, y, glyph, label, role }) => {
+    const value = y ?? highestNear(spec, x, (to - from) * NEARBY);
+    if (value === null || x < from || x > to) return [];
+    const inside = Math.min(high, Math.max(low, value));
+    return [{ text: label ?? glyph, role, share: (x - from) / (to - from), x, y: inside }];
   });
 }
 
-function stemOf(mark: ChartMark, from: Place, to: Place): Stroke {
-  return { shape: 'stroke', places: [from, to], role: mark.role, width: 0.6 };
+function spanOf({ text, share }: Sign, left: number, right: number): Place {
+  const at = left + share * (right - left);
+  const half = lettersWidth(text, SIGN_SIZE) / 2 + 1;
+  return [at - half, at + half];
 }
 
-/** Highest value of any curve within a reach of a place. */
-function highestNear(series: readonly Series[], at: number, reach: number): number | null {
+/** A sign over the curve; where it stands in a further row, with a stem down to it. */
+function signShapes(
+  { text, role, x, y }: Sign,
+  row: number,
+  { left, right }: Edges,
+  toPlace: ToPlace,
+): Shape[] {
+  const [at, foot] = toPlace(x, y);
+  const half = lettersWidth(text, SIGN_SIZE) / 2;
+  const base = foot - GAP - SIGN_ROW * row;
+  const shown = sign(text, [Math.min(right - half, Math.max(left + half, at)), base], role);
+  return row === 0
+    ? [shown]
+    : [
+        stroke(
+          [
+            [at, base + 2],
+            [at, foot],
+          ],
+          role,
+          0.6,
+        ),
+        shown,
+      ];
+}
+
+/** Highest value of any measured curve within a reach of a place. */
+function highestNear({ series }: ChartSpec, at: number, reach: number): number | null {
   let highest: number | null = null;
   for (const { x, y, role } of series) {
     if (role === 'guide') continue;
@@ -260,4 +201,17 @@ function highestNear(series: readonly Series[], at: number, reach: number): numb
     }
   }
   return highest;
+}
+
+function grid(from: Place, to: Place): Stroke {
+  return stroke([from, to], 'dim', 0.5);
+}
+
+function stroke(places: readonly Place[], role: Role, width: number): Stroke {
+  return { shape: 'stroke', places, role, width };
+}
+
+function curve(places: readonly Place[], role: Role, dotted: boolean): Stroke {
+  const plain = stroke(places, role, WIDTHS[role] ?? USUAL_WIDTH);
+  return dotted ? { ...plain, dash: DOTTED } : plain;
 }

@@ -1,4 +1,4 @@
-/** A picture as shapes on paper: what charts and line drawings become before they are SVG or PDF. */
+/** A picture as shapes on paper: what charts and lines become before they are SVG or PDF. */
 import type { Role } from './run.ts';
 
 /** A place on the paper, in units of which 16 make the height of a line of text; y grows downward. */
@@ -14,11 +14,10 @@ export type Stroke = {
   readonly dash?: readonly number[];
 };
 
-/** A filled rectangle. */
-export type Box = {
-  readonly shape: 'box';
-  readonly from: Place;
-  readonly to: Place;
+/** What lies within the places, filled. */
+export type Patch = {
+  readonly shape: 'patch';
+  readonly places: readonly Place[];
   readonly role: Role;
 };
 
@@ -33,7 +32,7 @@ export type Letters = {
   readonly strong?: true;
 };
 
-export type Shape = Stroke | Box | Letters;
+export type Shape = Stroke | Patch | Letters;
 
 /** Later shapes lie over earlier ones. */
 export type Sheet = {
@@ -46,14 +45,28 @@ export type Sheet = {
 export const CELL_WIDTH = 8;
 export const CELL_HEIGHT = 16;
 
-/** Size of ordinary text. */
-export const TEXT_SIZE = 12;
+/** Sizes of signs, and of the text on axes and under lines. */
+export const SIGN_SIZE = 12;
+export const TEXT_SIZE = 11;
 
-/** Units left and right of the plot: every sheet with a distance axis leaves the same, so that they stand over each other. */
+/** Height of a row of signs that stand over each other. */
+export const SIGN_ROW = 15;
+
+/** Units left and right of the plot; every picture leaves the same, so that those on one axis stand over each other. */
 export const MARGIN_LEFT = 48;
 export const MARGIN_RIGHT = 16;
 
-/** About how wide a text of this size is; no font is wider by much. */
+/** Plain text of the usual size. */
+export function letters(text: string, at: Place, anchor: Letters['anchor'] = 'middle'): Letters {
+  return { shape: 'letters', at, text, role: 'plain', anchor, size: TEXT_SIZE };
+}
+
+/** A sign of something found. */
+export function sign(text: string, at: Place, role: Role): Letters {
+  return { shape: 'letters', at, text, role, anchor: 'middle', size: SIGN_SIZE, strong: true };
+}
+
+/** About how wide a text of this size is; no usual font is wider by much. */
 export function lettersWidth(text: string, size: number = TEXT_SIZE): number {
   return [...text].length * size * 0.58;
 }

@@ -1,6 +1,6 @@
 /** Shapes as SVG text, coloured by the page's style sheet: each role is a class of its name. */
 import { harmless } from './cells.ts';
-import type { Sheet, Place, Shape } from './sheet.ts';
+import type { Place, Shape, Sheet } from './sheet.ts';
 
 export type SvgOptions = {
   /** Begins the ids of title and description; unique on the page, of letters, digits and hyphens. */
@@ -16,7 +16,7 @@ export type SvgOptions = {
 /**
  * Writes a sheet as one `<svg>` element that scales to the room it is given.
  *
- * Text classes are `t-ROLE`, strokes `s-ROLE`, boxes `b-ROLE`; there is no script, no style and no link in it. All
+ * Text classes are `t-ROLE`, strokes `s-ROLE`, patches `p-ROLE`; there is no script, no style and no link in it. All
  * text is escaped. The same sheet gives the same bytes.
  */
 export function svgText(sheet: Sheet, { id, title, description, className }: SvgOptions): string {
@@ -55,10 +55,8 @@ function shapeText(shape: Shape): string {
       const dash = shape.dash === undefined ? '' : ` stroke-dasharray="${shape.dash.map(number).join(' ')}"`;
       return `<path class="s-${shape.role}" stroke-width="${number(shape.width)}"${dash} d="${pathText(shape.places)}"/>`;
     }
-    case 'box': {
-      const [x, y] = shape.from;
-      return `<rect class="b-${shape.role}" x="${number(x)}" y="${number(y)}" width="${number(shape.to[0] - x)}" height="${number(shape.to[1] - y)}"/>`;
-    }
+    case 'patch':
+      return `<path class="p-${shape.role}" d="${pathText(shape.places)}Z"/>`;
     case 'letters': {
       const anchor = shape.anchor === 'start' ? '' : ` text-anchor="${shape.anchor}"`;
       const strong = shape.strong ? ' font-weight="bold"' : '';
