@@ -2,28 +2,17 @@
 import type { Analysis } from '../app/analysis.ts';
 import { spokenFile } from '../app/standard-input.ts';
 import type { BandLoss } from '../assess/loss-bands.ts';
-import type { LossCheck, LossMethod } from '../assess/loss-check.ts';
+import type { LossCheck } from '../assess/loss-check.ts';
 import type { Excess } from '../assess/loss-excess.ts';
 import { wrapText } from '../plot/cells.ts';
 import { fixedText, frequencyText, lengthText, temperatureText } from '../plot/quantity-text.ts';
 import { CAUTIONS } from '../report/cautions.ts';
+import { LOSS_METHODS, lossVerdictWords, whyNoLoss } from '../report/loss-words.ts';
 import type { TextOptions } from './locate-text.ts';
 import { tableLines } from './table-lines.ts';
 
 /** How many frequencies of the curve the table shows. */
 const CURVE_ROWS = 9;
-
-const METHODS: Readonly<Record<LossMethod, string>> = {
-  'end-echo': 'the echo of the far end, which has passed the run twice',
-  transmission: 'the transmission from end to end; the joints’ own loss is in it',
-  bound: 'what comes back at all: the loss is no more than that',
-  none: 'nothing: the end is not seen',
-};
-
-/** How to get a loss check where this sweep gives none. */
-export const HOW_TO_CHECK =
-  'For the loss itself, sweep once more with the far end open or shorted (a short tells it as well as an open and ' +
-  'radiates nothing), or through from end to end with two ports.';
 
 /** Writes it all; every line at most `columns` wide. */
 export function lossText(analysis: Analysis, check: LossCheck, options: TextOptions): string {
@@ -36,11 +25,11 @@ export function lossText(analysis: Analysis, check: LossCheck, options: TextOpti
   const temperature = temperatureText(line.temperatureC, units);
   const notices = [...options.notices, ...analysis.notices, ...check.notices];
   return [
-    ...wrapText(`${mark} ${name}: ${verdictWords(analysis, check)}`, columns).map((text) =>
+    ...wrapText(`${mark} ${name}: ${lossVerdictWords(solution, check)}`, columns).map((text) =>
       severity === 'sound' ? text : paint(severity, text),
     ),
     ...rows('line   ', `${lengthText(solution.lengthM, units)} to the end (${solution.end}), ${temperature}`),
-    ...rows('read   ', METHODS[check.method]),
+    ...rows('read   ', LOSS_METHODS[check.method]),
     ...rows(
       'limit  ',
       `table at ${line.temperatureKnown ? temperature : `${temperature}, for none was given`}, ` +
@@ -54,21 +43,12 @@ export function lossText(analysis: Analysis, check: LossCheck, options: TextOpti
     ).map((text) => text.trimEnd()),
     ...(check.lossDb === null ? [] : ['', ...curveLines(check)]),
     ...(check.excess.length === 0 ? [] : ['', ...check.excess.flatMap((one) => excessLines(one, columns))]),
-    ...(check.lossDb === null ? ['', ...wrapText(cannotText(analysis), columns)] : []),
+    ...(check.lossDb === null ? ['', ...wrapText(whyNoLoss(solution), columns)] : []),
     ...(notices.length > 0 ? ['', ...notices.flatMap(({ what }) => rows('note   ', what))] : []),
     '',
     ...wrapText(CAUTIONS.short, columns).map((text) => paint('dim', text)),
     '',
   ].join('\n');
-}
-
-function verdictWords({ solution }: Analysis, check: LossCheck): string {
-  const margin = fixedText(Math.abs(check.marginDb ?? 0), 2);
-  const at = frequencyText(check.atHz);
-  if (check.pass === true) return `loss check passes, ${margin} dB to spare at ${at}`;
-  if (check.pass === false) return `loss check fails, ${margin} dB over its limit at ${at}`;
-  if (solution.endsEarly) return 'no loss check: the line stops before its end';
-  return 'no loss check: this end does not tell the loss';
 }
 
 function bandRow(band: BandLoss, check: LossCheck): string[] {
@@ -106,14 +86,6 @@ function curveLines({ frequencyHz, lossDb, sigmaDb, tableLossDb }: LossCheck): s
 function excessLines({ where, what, lossDb, sigmaDb }: Excess, columns: number): string[] {
   const size = `${fixedText(lossDb, 2)}${sigmaDb === null ? '' : ` ± ${fixedText(sigmaDb, 2)}`} dB`;
   return hanging('more   ', `${where}: ${what}, ${size}`, columns);
-}
-
-function cannotText({ solution }: Analysis): string {
-  if (solution.endsEarly) return 'What lies beyond the place where the line stops cannot be checked.';
-  return (
-    `The ${solution.end} takes in most of what reaches it, so what comes back tells its match and the faults on the ` +
-    `way, and of the loss only the most that it can be. ${HOW_TO_CHECK}`
-  );
 }
 
 function hanging(label: string, text: string, columns: number): string[] {
