@@ -285,6 +285,23 @@ const FIGURES: Readonly<Record<SuiteName, readonly Figure[]>> = {
     noAnswer,
   ],
   'off-length': [found(null), kindRight(null), ...COMMON],
+  guide: [
+    found(0.98),
+    found(null, 'found, of those in a tube', (fault) => !fault.atJoint),
+    kindRight(null),
+    {
+      label: 'false findings on sound runs',
+      unit: 'a line',
+      target: { atMost: 0.02 },
+      value: (scores, s) => {
+        const sound = scores.filter((score) => score.variants[s].faults.length === 0);
+        return sound.length === 0
+          ? null
+          : sound.reduce((sum, score) => sum + score.variants[s].false.length, 0) / sound.length;
+      },
+    },
+    ...COMMON,
+  ],
   'lone-echo': [
     {
       label: 'RMS distance error over the Cramér–Rao bound',

@@ -10,6 +10,7 @@ import { createFft, nextPowerOfTwo } from '../../src/numerics/fft.ts';
 import { median } from '../../src/numerics/statistics.ts';
 import { CABLE_FIGURES, type CableId } from '../scenes/cable-figures.ts';
 import { type CableFigures, tableLossDb } from '../scenes/coax-medium.ts';
+import { AS_TYPED, GUIDES, type GuideName, guideLossDb, guideMedium } from '../scenes/guide-medium.ts';
 import type { Scene } from '../scenes/scene.ts';
 import type { Answer, AnsweredFinding } from './answer.ts';
 
@@ -33,9 +34,9 @@ type Peak = { readonly distanceM: number; readonly levelDb: number; readonly ang
 /** Reads a scene with the plain recipe. */
 export function plainRecipe(scene: Scene): Answer {
   const started = performance.now();
-  const sections = describedSections(scene.lineText);
   const { frequencyHz, re, im } = evenSweep(scene.sweepText);
   const centreHz = (frequencyHz[0]! + frequencyHz.at(-1)!) / 2;
+  const sections = describedSections(scene.lineText, centreHz);
   const slowest = Math.min(...sections.map((section) => section.figures.velocityFactor));
   const spanHz = frequencyHz.at(-1)! - frequencyHz[0]!;
   const cellM = (ECHO_CELLS * SPEED_OF_LIGHT_M_S * slowest) / (2 * spanHz);
@@ -64,14 +65,31 @@ export function plainRecipe(scene: Scene): Answer {
   };
 }
 
-/** Sections of a line file; the scenes' own figures for the cables that it names. */
-function describedSections(lineText: string): DescribedSection[] {
+/** Sections of a line file; the scenes' own figures for the cables and guides that it names. */
+function describedSections(lineText: string, centreHz: number): DescribedSection[] {
   type Inline = { z0: number; velocityFactor: number; k1: number; k2: number };
-  const line = JSON.parse(lineText) as { sections: { cable: CableId | Inline; lengthM?: number }[] };
-  return line.sections.map(({ cable, lengthM }) => ({
-    figures: typeof cable === 'string' ? CABLE_FIGURES[cable] : { ...cable, z0Ohm: cable.z0 },
-    lengthM: lengthM ?? null,
+  type Section = { cable: CableId | Inline; lengthM?: number } | { guide: GuideName; lengthM?: number };
+  const line = JSON.parse(lineText) as { sections: Section[] };
+  return line.sections.map((section) => ({
+    figures: 'guide' in section ? guideAtCentre(section.guide, centreHz) : cableFigures(section.cable),
+    lengthM: section.lengthM ?? null,
   }));
+  function cableFigures(cable: CableId | Inline): CableFigures {
+    return typeof cable === 'string' ? CABLE_FIGURES[cable] : { ...cable, z0Ohm: cable.z0 };
+  }
+}
+
+/** A guide as one who knows only its group velocity and loss in the middle of the band takes it. */
+function guideAtCentre(name: GuideName, centreHz: number): CableFigures {
+  const around = Float64Array.of(centreHz * 0.999, centreHz * 1.001);
+  const medium = guideMedium(GUIDES[name], AS_TYPED, 20, around);
+  const delayPerM = (medium.gammaIm[1]! - medium.gammaIm[0]!) / (2 * Math.PI * (around[1]! - around[0]!));
+  return {
+    z0Ohm: 50,
+    velocityFactor: 1 / (delayPerM * SPEED_OF_LIGHT_M_S),
+    k1: 0,
+    k2: guideLossDb(medium, 100)[0]! / (centreHz / 1e6),
+  };
 }
 
 function describedLength(sections: readonly DescribedSection[]): number | null {

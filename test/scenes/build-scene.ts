@@ -16,11 +16,7 @@ import type { Recipe } from './recipe.ts';
 import { jointDistances, type LaidRun, layRun, type TrueRun } from './run.ts';
 import type { Scene, TrueFault, TrueStretch } from './scene.ts';
 import { terminate } from './termination.ts';
-
-/** Port impedance of every scene, Ω. */
-const PORT_OHM = 50;
-
-export type SceneName = { readonly suite: string; readonly seed: number; readonly index: number };
+import { PORT_OHM, type SceneName, touchstoneText } from './touchstone-text.ts';
 
 /** Noise-free, residue-free reflection of a recipe's run at the port. */
 export function trueReflection(recipe: Recipe, draws: Draws): Spectrum {
@@ -127,16 +123,6 @@ function ghosts(recipe: Recipe, reachM: number): number[] {
   for (let i = 0; i < places.length; i++)
     for (let j = i + 1; j < places.length; j++) found.push((2 * places[j]! - places[i]!) % reachM);
   return found;
-}
-
-/** Touchstone 1.1 text; the header says that it is invented. */
-function touchstoneText(name: SceneName, frequencyHz: Float64Array, gamma: Spectrum): string {
-  const rows = Array.from(
-    frequencyHz,
-    (f, k) => `${f} ${gamma.re[k]!.toPrecision(9)} ${gamma.im[k]!.toPrecision(9)}`,
-  );
-  const header = `! invented scene: suite ${name.suite}, seed ${name.seed}, index ${name.index}`;
-  return `${header}\n# Hz S RI R ${PORT_OHM}\n${rows.join('\n')}\n`;
 }
 
 /** The line file: what the crew knows. A line of unknown length names its cable and no more. */

@@ -10,7 +10,10 @@ export type Element =
       readonly impedanceScale: number;
     }
   | { readonly type: 'series'; readonly resistanceOhm: number; readonly inductanceH: number }
-  | { readonly type: 'shunt'; readonly conductanceS: number; readonly capacitanceF: number };
+  | { readonly type: 'shunt'; readonly conductanceS: number; readonly capacitanceF: number }
+  /** In series or across, Ω or S at each frequency. */
+  | { readonly type: 'impedance'; readonly ohm: Spectrum }
+  | { readonly type: 'admittance'; readonly siemens: Spectrum };
 
 /** Complex numbers at each frequency. */
 export type Spectrum = { readonly re: Float64Array; readonly im: Float64Array };
@@ -45,7 +48,9 @@ export function chainToPort(
     if (element.type === 'slab') passSlab(element.medium, element.lengthM, element.impedanceScale, at);
     else if (element.type === 'series')
       passSeries(element.resistanceOhm, element.inductanceH, frequencyHz, at);
-    else passShunt(element.conductanceS, element.capacitanceF, frequencyHz, at);
+    else if (element.type === 'shunt') passShunt(element.conductanceS, element.capacitanceF, frequencyHz, at);
+    else if (element.type === 'impedance') addProduct(element.ohm, at.current, at.voltage);
+    else addProduct(element.siemens, at.voltage, at.current);
   }
   return at;
 }
@@ -123,5 +128,13 @@ function passShunt(conductanceS: number, capacitanceF: number, frequencyHz: Floa
     const v1 = at.voltage.im[k]!;
     at.current.re[k]! += conductanceS * v0 - susceptance * v1;
     at.current.im[k]! += conductanceS * v1 + susceptance * v0;
+  }
+}
+
+/** to += a·b at each frequency. */
+function addProduct(a: Spectrum, b: Spectrum, to: Spectrum) {
+  for (let k = 0; k < to.re.length; k++) {
+    to.re[k]! += a.re[k]! * b.re[k]! - a.im[k]! * b.im[k]!;
+    to.im[k]! += a.re[k]! * b.im[k]! + a.im[k]! * b.re[k]!;
   }
 }

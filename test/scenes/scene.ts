@@ -13,9 +13,9 @@ export type TrueFault = {
     | 'shunt-capacitance'
     | 'open'
     | 'short';
-  /** In ohm, ohm, nH, pF; null for open and short. */
+  /** In ohm, ohm, nH, pF; in a guide relative to its wave impedance at mid-band; null for open and short. */
   readonly value: number | null;
-  readonly unit: 'ohm' | 'nH' | 'pF' | null;
+  readonly unit: 'ohm' | 'nH' | 'pF' | 'z0' | null;
   /** Joint it sits at, counted from 1 (the port); null inside a section. */
   readonly joint: number | null;
   /** RMS over the band as seen from the port, dB, positive. */
@@ -41,11 +41,11 @@ export type SceneTruth = {
   readonly jointReturnLossDb: readonly number[];
   /** Where bounces between a fault and what lies behind it look like echoes, m. */
   readonly ghostsM: readonly number[];
-  readonly plan: PlanName;
+  readonly plan: PlanName | 'guide';
   readonly points: number;
   readonly even: boolean;
   readonly spanHz: number;
-  /** Fourier resolution c·vf/(2·B) in the longest section, m. */
+  /** Fourier resolution c·vf/(2·B) in the longest section, π/(β2 − β1) in a guide, m. */
   readonly resolutionM: number;
   readonly noiseDb: number;
   readonly structuralReturnLossDb: number | null;

@@ -4,6 +4,7 @@ import { CABLE_FIGURES } from './cable-figures.ts';
 import { NO_CONNECTOR } from './connector.ts';
 import { type Draws, seededDraws } from './draws.ts';
 import { LUMPED_KINDS, type LumpedKind } from './fault.ts';
+import { guideScene } from './guide-scene.ts';
 import { NO_RESIDUE } from './instrument.ts';
 import {
   drawCableDistance,
@@ -38,9 +39,15 @@ export const SUITES = {
   'lone-echo': loneEcho,
 } as const satisfies Record<string, Suite>;
 
-export type SuiteName = keyof typeof SUITES;
+export type SuiteName = keyof typeof SUITES | 'guide';
 
-export const SUITE_NAMES = Object.keys(SUITES) as SuiteName[];
+export const SUITE_NAMES: readonly SuiteName[] = [
+  ...(Object.keys(SUITES) as (keyof typeof SUITES)[]),
+  'guide',
+];
+
+/** Share of the guide runs with a fault; the others are sound. */
+const GUIDE_FAULT_SHARE = 2 / 3;
 
 /**
  * One scene of a suite: the same name, seed and index give the same scene, character for character.
@@ -54,6 +61,8 @@ export function drawScene(
   index: number,
   options: { readonly rippleMeasure?: RippleMeasure } = {},
 ): Scene {
+  if (suite === 'guide')
+    return guideScene({ suite, seed, index }, seededDraws(suite, seed, index), GUIDE_FAULT_SHARE);
   const usual = { ...USUAL, rippleMeasure: options.rippleMeasure ?? USUAL.rippleMeasure };
   for (let attempt = 0; ; attempt++) {
     const recipe = SUITES[suite](seededDraws(suite, seed, index, attempt, 'recipe'), usual);
